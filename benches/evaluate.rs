@@ -1,0 +1,2 @@
+//! Speed of one solved point.
+fn main() {}

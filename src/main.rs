@@ -1,0 +1,2 @@
+//! The lossbook command.
+fn main() {}
