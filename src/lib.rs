@@ -1,9 +1,17 @@
 //! lossbook books every watt lost in a step-down rail to one part and one mechanism.
 
 pub mod budget;
+pub mod edges;
 pub mod fit;
+pub mod fitted;
 pub mod grid;
+pub mod heat;
+pub mod infeasible;
 pub mod ledger;
+pub mod loss;
+pub mod model;
+pub mod parts;
 pub mod sheet;
 pub mod stage;
 pub mod units;
+pub mod waveform;
