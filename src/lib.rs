@@ -13,6 +13,8 @@ pub mod loss;
 pub mod model;
 pub mod parts;
 pub mod printable;
+pub mod render;
+pub mod report;
 pub mod sheet;
 pub mod stage;
 pub mod units;
