@@ -137,10 +137,10 @@ mod tests {
 
     #[test]
     fn words_of_others_find_ours() {
-        assert_eq!(ours(Vocabulary::Verb, "Table"), ["tabulate"]);
-        assert_eq!(ours(Vocabulary::Axis, "v-in"), ["input_voltage"]);
-        assert!(ours(Vocabulary::Axis, "table").is_empty());
-        let switching = hint(Vocabulary::Mechanism, "switching", ["overlap"]);
+        assert_eq!(ours(Verb, "Table"), ["tabulate"]);
+        assert_eq!(ours(Axis, "v-in"), ["input_voltage"]);
+        assert!(ours(Axis, "table").is_empty());
+        let switching = hint(Mechanism, "switching", ["overlap"]);
         assert_eq!(switching.as_deref(), Some("it is booked as `overlap` and `output_charge` here"));
     }
 
@@ -156,11 +156,11 @@ mod tests {
         for (word, vocabulary, ours) in OTHER_WORDS {
             for name in *ours {
                 let known = match vocabulary {
-                    Vocabulary::Axis => AxisName::from_name(name).is_some() || *name == "output_voltage",
-                    Vocabulary::Mechanism => ledger::Mechanism::from_name(name).is_some(),
-                    Vocabulary::Slot => ledger::Slot::from_name(name).is_some(),
-                    Vocabulary::Rectifier => ["synchronous", "diode", "linear"].contains(name),
-                    Vocabulary::Verb => true, // the command line has its own test
+                    Axis => AxisName::from_name(name).is_some() || *name == "output_voltage",
+                    Mechanism => ledger::Mechanism::from_name(name).is_some(),
+                    Slot => ledger::Slot::from_name(name).is_some(),
+                    Rectifier => ["synchronous", "diode", "linear"].contains(name),
+                    Verb => true, // the command line has its own test
                 };
                 assert!(known, "{word} -> {name}");
             }
