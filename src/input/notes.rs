@@ -3,6 +3,7 @@
 use super::error::Severity;
 use super::node::Node;
 use super::path::{KeyPath, Trail};
+use crate::sheet::form::{Fault, Faults, Form};
 
 /// What to mark in the file.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -74,9 +75,24 @@ impl Notes {
         self.add(Severity::Warning, trail.path(), Mark::Value, node.scalar(), blame);
     }
 
-    /// A fault at a path.
-    pub fn at_path(&mut self, severity: Severity, path: KeyPath, blame: Blame) {
-        self.add(severity, path, Mark::Value, None, blame);
+    /// An error that marks a value without repeating it.
+    pub fn at_value(&mut self, trail: &Trail<'_>, blame: Blame) {
+        self.add(Severity::Error, trail.path(), Mark::Value, None, blame);
+    }
+
+    /// A doubt that marks a value without repeating it.
+    pub fn doubt(&mut self, trail: &Trail<'_>, blame: Blame) {
+        self.add(Severity::Warning, trail.path(), Mark::Value, None, blame);
+    }
+
+    /// Whatever a form says against itself.
+    pub fn add_faults(&mut self, form: &dyn Form, trail: &Trail<'_>) {
+        let mut faults = Faults::default();
+        form.cross_check(&mut faults);
+        for Fault { path, reason, hint, warning } in faults.0 {
+            let severity = if warning { Severity::Warning } else { Severity::Error };
+            self.add(severity, trail.path().with(&path), Mark::Value, None, Blame { reason, hint });
+        }
     }
 
     /// Number of errors so far.
