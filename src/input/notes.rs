@@ -95,6 +95,22 @@ impl Notes {
         }
     }
 
+    /// What a part leaves open, as warnings.
+    pub fn add_gaps(&mut self, gaps: Faults, trail: &Trail<'_>) {
+        for Fault { path, reason, hint, .. } in gaps.0 {
+            self.add(Severity::Warning, trail.path().with(&path), Mark::Key, None, Blame { reason, hint });
+        }
+    }
+
+    /// Drops the warnings among the notes from a place on.
+    pub fn forget_warnings(&mut self, from: usize) {
+        let mut place = 0;
+        self.list.retain(|note| {
+            place += 1;
+            place <= from || note.severity == Severity::Error
+        });
+    }
+
     /// Number of errors so far.
     pub fn errors(&self) -> usize {
         self.errors

@@ -7,6 +7,7 @@ use saphyr_parser::{Event, Marker, Parser, Span};
 use super::error::{Excerpt, InputError, is_unprintable};
 use super::notes::{Mark, Note};
 use super::path::{KeyPath, Step, write_steps};
+use super::yaml::YamlFault;
 
 /// A stretch of a file that holds whole values.
 #[derive(Clone, Copy, Debug)]
@@ -21,6 +22,21 @@ pub struct Source<'a> {
     pub above: usize,
     /// True when the first two steps of a path are a kind of part and a part.
     pub library: bool,
+}
+
+impl Source<'_> {
+    /// What the second parser says of a text that the first one let pass.
+    pub fn yaml_fault(&self, fault: &YamlFault) -> InputError {
+        let spot = Spot { line: fault.line, start: fault.column.saturating_sub(1), end: fault.column };
+        let line = fault.line.checked_sub(1).and_then(|place| self.text.split('\n').nth(place));
+        let hint = "check the indentation and the quotes near this place";
+        InputError {
+            line: if fault.line == 0 { 0 } else { fault.line + self.first_line - 1 },
+            column: fault.column,
+            excerpt: line.map(|line| excerpt(line, spot)),
+            ..InputError::of_file(self.file, format!("this is no YAML: {}", fault.reason), hint)
+        }
+    }
 }
 
 /// Where something stands in a text: line from 1, columns from 0 in characters; `end` on the same line.

@@ -2,6 +2,7 @@
 
 use super::datum;
 use super::fields::Fields;
+use super::inherit::hand_down;
 use super::nearest::{listed, nearest};
 use super::node::Node;
 use super::notes::{Blame, Notes};
@@ -10,17 +11,24 @@ use super::sample::{key_names, sample};
 use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 
-/// Reads a mapping into a form.
+/// Reads a nested mapping into a form; a source or conditions stated for all of it go to each of its quantities.
 pub fn read_form(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
-    if matches!(node, Node::Map(entries) if !entries.is_empty()) {
-        if let Some(mut fields) = Fields::open(node, trail, "", notes) {
-            read_fields(form, &mut fields, notes);
-            fields.close(|| key_names(form), notes);
-        }
-    } else {
-        // notes what is wrong; the sample is worth its allocations only then
-        let _ = Fields::open(node, trail, &format!("`{}`", sample(form)), notes);
-    }
+    let Some(mut fields) = open(form, node, trail, notes) else { return };
+    read_fields(form, &mut fields, notes);
+    hand_down(form, &mut fields, notes);
+    fields.close(|| key_names(form), notes);
+}
+
+fn open<'n, 't>(
+    form: &mut dyn Form,
+    node: &'n Node,
+    trail: &'t Trail<'t>,
+    notes: &mut Notes,
+) -> Option<Fields<'n, 't>> {
+    // the sample is worth its allocations only when something is wrong
+    let sound = matches!(node, Node::Map(entries) if !entries.is_empty());
+    let like = if sound { String::new() } else { format!("`{}`", sample(form)) };
+    Fields::open(node, trail, &like, notes)
 }
 
 /// Reads the keys of a form out of a mapping that may have other keys too.
@@ -31,7 +39,9 @@ pub fn read_fields(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut
 /// Reads a form that stands alone, then asks it whether its keys agree with one another.
 pub fn read_checked(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
     let before = notes.errors();
-    read_form(form, node, trail, notes);
+    let Some(mut fields) = open(form, node, trail, notes) else { return };
+    read_fields(form, &mut fields, notes);
+    fields.close(|| key_names(form), notes);
     // keys that could not be read are zero, and would be blamed for it
     if notes.errors() == before {
         notes.add_faults(form, trail);
