@@ -1,0 +1,579 @@
+//! The model: from a fitted stage, an operating point and temperatures to every contribution of the ledger.
+
+use crate::edges::{self, GateLoop, NodeCapacitance};
+use crate::fitted::{
+    CONTROLLER, Drive, HIGH, INDUCTOR, Kind, NODES, Nodes, RECTIFIER, Rectifier, SCHOTTKY, Stage, Switched,
+};
+use crate::grid::OperatingPoint;
+use crate::infeasible::Infeasible;
+use crate::ledger::{Account, Ledger};
+use crate::loss::{
+    ac_winding::{self, AcWinding},
+    bias::{self, Bias},
+    conduction::{self, Channel, DeadTimeEnds, Forward},
+    copper::{self, Copper},
+    core::{self, Core},
+    dead_time::{self, DeadTime, HighSideDeadTime},
+    esr::{self, End, Esr},
+    gate_drive::{self, DrivePower, GatePower},
+    ground_current::{self, GroundCurrent},
+    leakage::{self, Leakage},
+    output_charge::{self, OutputCharge},
+    overlap::{self, EdgeConditions, LowSideOverlap, Overlap},
+    pass::{self, Pass},
+    recovery::{self, Recovery},
+    ringing::{self, Ringing},
+    sense::{self, Sense},
+    snubber::{self, Snubber},
+    winding::{self, Winding},
+};
+use crate::parts::controller::Supply;
+use crate::parts::copper::hot_ratio;
+use crate::parts::linear_regulator::LinearRegulator;
+use crate::waveform::{CurrentPath, LightLoadRule, OffPath, Waveform};
+
+/// Smallest distance of the drive voltage to the plateau at the peak current, V (E13).
+pub const LEAST_OVERDRIVE: f64 = 0.3;
+
+/// What does not depend on temperature at one operating point of a switched stage.
+#[derive(Clone, Copy, Debug)]
+pub struct Prepared<'a> {
+    /// The stage.
+    pub stage: &'a Switched,
+    /// V_OUT at the load, V.
+    pub output_voltage: f64,
+    /// Where it runs.
+    pub point: OperatingPoint,
+    /// V_OUT + I R_load, V: what the inductor works against.
+    pub v_out: f64,
+    /// What the gates see.
+    pub drive: Drive,
+    /// L at the load current, H.
+    pub inductance: f64,
+    /// R(T)/R(25 °C) of the board's copper.
+    pub board_ratio: f64,
+    /// Capacitance of the switch node.
+    pub node: NodeCapacitance,
+    /// Q_node at the input voltage, C.
+    pub node_charge: f64,
+    /// E_cap(0), J.
+    pub node_energy: f64,
+    /// Gate-drain charge of the high side at the input voltage, C.
+    pub q_gd: f64,
+    /// High-side gate loop.
+    pub high_gate: GateLoop,
+    /// Low-side gate loop.
+    pub low_gate: GateLoop,
+    /// R_ac(f) - R_dc at 25 °C, not below 0, Ω; `None` without data.
+    pub ac_excess: Option<f64>,
+}
+
+/// Contributions that heat a part, with their terms. A mechanism that the stage does not have is `None`.
+#[derive(Clone, Copy, Debug)]
+#[allow(missing_docs)] // named as the accounts of the ledger
+pub struct Heated {
+    pub waveform: Waveform,
+    pub high_conduction: Channel,
+    pub overlap: Overlap,
+    pub output_charge: OutputCharge,
+    pub recovery: Option<Recovery>,
+    pub high_gate: GatePower,
+    pub rectifier: HeatedRectifier,
+    pub winding: Winding,
+    pub ac_winding: Option<AcWinding>,
+    pub core: Option<Core>,
+    pub ringing: Ringing,
+    pub drive: DrivePower,
+    pub bias: Bias,
+}
+
+/// Contributions of the rectifier and what it adds to the high side.
+#[derive(Clone, Copy, Debug)]
+#[allow(missing_docs)] // named as the accounts of the ledger
+pub enum HeatedRectifier {
+    Synchronous {
+        conduction: Channel,
+        overlap: LowSideOverlap,
+        output_charge: OutputCharge,
+        /// Booked to the low side, or to the Schottky across it.
+        dead_time: DeadTime,
+        gate: GatePower,
+        /// `Some` with a Schottky across the low side; `Some(None)` when its leakage is unknown.
+        schottky: Option<Option<Leakage>>,
+        high_dead_time: HighSideDeadTime,
+    },
+    Diode {
+        conduction: Forward,
+        leakage: Option<Leakage>,
+    },
+}
+
+/// Contributions that heat no part of the heat network.
+#[derive(Clone, Debug)]
+#[allow(missing_docs)] // named as the accounts of the ledger
+pub struct Unheated {
+    pub input_esr: Esr,
+    pub output_esr: Esr,
+    pub copper: Copper,
+    pub sense: Sense,
+    pub snubber: Snubber,
+}
+
+/// Every contribution of a switched stage at one point and one set of temperatures.
+#[derive(Clone, Debug)]
+pub struct Contributions {
+    /// What heats the parts.
+    pub heated: Heated,
+    /// The rest.
+    pub unheated: Unheated,
+}
+
+/// Contributions of a linear stage.
+#[derive(Clone, Copy, Debug)]
+#[allow(missing_docs)] // named as the accounts of the ledger
+pub struct LinearContributions {
+    pub pass: Pass,
+    pub ground_current: GroundCurrent,
+}
+
+impl<'a> Prepared<'a> {
+    /// Everything about a point that temperatures do not change.
+    #[inline]
+    pub fn new(stage: &'a Switched, output_voltage: f64, point: OperatingPoint) -> Self {
+        let v_in = point.input_voltage;
+        let controller = &stage.controller;
+        let drive = stage.drive(v_in, output_voltage);
+        let board_ratio = hot_ratio(stage.board.temperature.unwrap_or(point.ambient));
+        let v_out = output_voltage + point.load * stage.board.load_path * board_ratio;
+        let gate = |v_gate, r_g: f64, driver: &crate::parts::controller::DriverLaw| GateLoop {
+            v_gate,
+            r_on: driver.r_source + r_g,
+            r_off: driver.r_sink + r_g,
+        };
+        let (rectifier, low_gate) = match &stage.rectifier {
+            Rectifier::Synchronous { low_side, schottky } => {
+                let own = low_side.q_oss.unwrap_or_default();
+                let across = schottky.as_ref().and_then(|diode| diode.q_c).unwrap_or_default();
+                (own.plus(across), gate(drive.v_low, low_side.r_g, &controller.low_side))
+            }
+            Rectifier::Diode(diode) => (diode.q_c.unwrap_or_default(), gate(0.0, 0.0, &controller.low_side)),
+        };
+        let node = NodeCapacitance { high_side: stage.high_side.q_oss.unwrap_or_default(), rectifier };
+        let ac = stage.inductor.ac_per_root_hertz;
+        Prepared {
+            stage,
+            output_voltage,
+            point,
+            v_out,
+            drive,
+            inductance: stage.inductor.inductance(point.load),
+            board_ratio,
+            node,
+            node_charge: node.total_charge(v_in),
+            node_energy: node.capacitive_energy(v_in, 0.0),
+            q_gd: stage.high_side.q_gd.charge(v_in),
+            high_gate: gate(drive.v_high, stage.high_side.r_g, &controller.high_side),
+            low_gate,
+            ac_excess: ac.map(|ac| (ac * point.switching_frequency.sqrt() - stage.inductor.dcr).max(0.0)),
+        }
+    }
+
+    /// The path of the inductor current at temperatures.
+    #[inline]
+    pub fn current_path(&self, t: &Nodes) -> CurrentPath {
+        let (stage, point) = (self.stage, &self.point);
+        let board = &stage.board;
+        let r_path = board.low_side_path * self.board_ratio;
+        let off = match &stage.rectifier {
+            Rectifier::Synchronous { low_side, .. } => OffPath::Synchronous {
+                r_channel: self.drive.r_low * low_side.hot_ratio(t[RECTIFIER]),
+                r_path,
+                v_dead: self.dead_time_drop(point.load, t),
+                dead_share: (stage.controller.t_1 + stage.controller.t_2) * point.switching_frequency,
+            },
+            Rectifier::Diode(diode) => {
+                OffPath::Diode { v_f: diode.forward_voltage(point.load, t[RECTIFIER]), r_path }
+            }
+        };
+        CurrentPath {
+            v_in: point.input_voltage,
+            v_out: self.v_out,
+            load: point.load,
+            frequency: point.switching_frequency,
+            inductance: self.inductance,
+            r_high: self.drive.r_high * stage.high_side.hot_ratio(t[HIGH])
+                + board.high_side_path * self.board_ratio,
+            r_series: stage.inductor.dcr * stage.inductor.hot_ratio(t[INDUCTOR])
+                + (board.output_path + board.sense) * self.board_ratio,
+            off,
+        }
+    }
+
+    /// How the rectifier behaves at light load.
+    #[inline]
+    pub fn light_load_rule(&self) -> LightLoadRule {
+        LightLoadRule {
+            blocks: self.stage.blocks,
+            skip_peak: self.stage.skip_peak,
+            t_on_min: self.stage.controller.t_on_min,
+        }
+    }
+
+    /// Drop of whatever carries the dead-time current, V: the Schottky's when one is fitted (E19).
+    #[inline]
+    fn dead_time_drop(&self, current: f64, t: &Nodes) -> f64 {
+        match &self.stage.rectifier {
+            Rectifier::Synchronous { schottky: Some(diode), .. } => {
+                diode.forward_voltage(current, t[SCHOTTKY])
+            }
+            Rectifier::Synchronous { low_side, .. } => low_side.body_diode(current),
+            Rectifier::Diode(_) => 0.0,
+        }
+    }
+
+    /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
+    #[inline]
+    pub fn heated(&self, t: &Nodes) -> Result<Heated, Infeasible> {
+        let (stage, v_in) = (self.stage, self.point.input_voltage);
+        let (controller, high) = (&stage.controller, &stage.high_side);
+        let path = self.current_path(t);
+        let waveform = Waveform::solve(&path, self.light_load_rule())
+            .ok_or(Infeasible::InputTooLow { v_in, v_out: self.v_out })?;
+        let frequency = waveform.frequency;
+        let overdrive = self.drive.v_high - high.plateau(waveform.peak);
+        if overdrive <= LEAST_OVERDRIVE {
+            return Err(Infeasible::DriveTooLow { v_drive: self.drive.v_high, peak: waveform.peak });
+        }
+
+        // high side
+        let i_on = waveform.valley.max(0.0);
+        let durations = edges::edge_durations(high, &self.high_gate, self.q_gd, i_on, waveform.peak);
+        let conditions = EdgeConditions {
+            v_in,
+            i_on,
+            i_off: waveform.peak,
+            node_energy: self.node_energy,
+            surplus_current: high.transconductance * (self.drive.v_high - high.plateau(i_on)),
+            frequency,
+        };
+        let v_node =
+            output_charge::voltage_before_turn_on(&waveform, &self.node, v_in, self.v_out, controller.t_2);
+        let r_high = self.drive.r_high * high.hot_ratio(t[HIGH]);
+        let drivers = [controller.high_side.r_source, controller.high_side.r_sink];
+        let high_gate =
+            gate_drive::gate_power(self.drive.q_high, self.drive.v_high, high.r_g, drivers, frequency);
+
+        // rectifier
+        let law = match &stage.rectifier {
+            Rectifier::Synchronous { low_side, schottky: None } => low_side.recovery.as_ref(),
+            Rectifier::Synchronous { .. } => None,
+            Rectifier::Diode(diode) => diode.recovery.as_ref(),
+        };
+        let switched_off = if waveform.is_continuous() { waveform.valley } else { 0.0 };
+        let rectifier = self.heated_rectifier(&waveform, t);
+        let low_gate = match &rectifier {
+            HeatedRectifier::Synchronous { gate, .. } => *gate,
+            HeatedRectifier::Diode { .. } => GatePower::default(),
+        };
+
+        // inductor
+        let inductor = &stage.inductor;
+        let copper_ratio = inductor.hot_ratio(t[INDUCTOR]);
+        let settled = if waveform.is_continuous() { 0.0 } else { v_node };
+
+        Ok(Heated {
+            waveform,
+            high_conduction: conduction::high_side(&waveform, r_high),
+            overlap: overlap::high_side(&conditions, durations),
+            output_charge: output_charge::high_side(&self.node, v_in, v_node, frequency),
+            recovery: law.map(|law| recovery::recovery(law, v_in, switched_off, frequency)),
+            high_gate,
+            rectifier,
+            winding: winding::winding(&waveform, inductor.dcr * copper_ratio),
+            ac_winding: self
+                .ac_excess
+                .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * copper_ratio)),
+            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n)),
+            ringing: ringing::ringing(&self.node, v_in, settled, frequency),
+            drive: gate_drive::drive_power(&high_gate, &low_gate, self.supply_voltage(), frequency),
+            bias: bias::bias(&waveform, v_in, controller.i_q, controller.i_q_sleep),
+        })
+    }
+
+    #[inline]
+    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes) -> HeatedRectifier {
+        let (stage, v_in) = (self.stage, self.point.input_voltage);
+        let controller = &stage.controller;
+        match &stage.rectifier {
+            Rectifier::Diode(diode) => HeatedRectifier::Diode {
+                conduction: conduction::freewheel_diode(waveform, diode, t[RECTIFIER]),
+                leakage: leakage::leakage(waveform, diode, [v_in, self.v_out], t[RECTIFIER]),
+            },
+            Rectifier::Synchronous { low_side, schottky } => {
+                let (t_1, t_2, frequency) = (controller.t_1, controller.t_2, waveform.frequency);
+                let ends = DeadTimeEnds::of(waveform, t_1, t_2);
+                let resistance = self.drive.r_low * low_side.hot_ratio(t[RECTIFIER]);
+                let reverse = (-waveform.valley).max(0.0);
+                let (overlap, high_dead_time) = if reverse > 0.0 {
+                    let t_fi = edges::current_fall(low_side, self.low_gate.r_off, reverse);
+                    let v_sd = stage.high_side.body_diode(reverse);
+                    (
+                        overlap::low_side(v_in, reverse, t_fi, frequency),
+                        dead_time::high_side(reverse, v_sd, t_2, self.node_charge, frequency),
+                    )
+                } else {
+                    Default::default()
+                };
+                let output_charge = if controller.adaptive {
+                    OutputCharge::default()
+                } else {
+                    output_charge::low_side(&self.node, v_in, waveform.peak * t_1, frequency)
+                };
+                let drop = |current| self.dead_time_drop(current, t);
+                let drivers = [controller.low_side.r_source, controller.low_side.r_sink];
+                HeatedRectifier::Synchronous {
+                    conduction: conduction::low_side(waveform, ends, t_1, t_2, resistance),
+                    overlap,
+                    output_charge,
+                    dead_time: dead_time::rectifier(waveform, ends, [t_1, t_2], self.node_charge, drop),
+                    gate: gate_drive::gate_power(
+                        self.drive.q_low,
+                        self.drive.v_low,
+                        low_side.r_g,
+                        drivers,
+                        frequency,
+                    ),
+                    schottky: schottky
+                        .as_ref()
+                        .map(|diode| leakage::leakage(waveform, diode, [v_in, self.v_out], t[SCHOTTKY])),
+                    high_dead_time,
+                }
+            }
+        }
+    }
+
+    /// V_s: what the gate charge is drawn from (E21), V.
+    #[inline]
+    pub fn supply_voltage(&self) -> f64 {
+        match self.stage.controller.supply {
+            Supply::External(efficiency) => self.stage.controller.v_drive / efficiency,
+            _ if self.stage.drives_from_input(self.output_voltage) => self.point.input_voltage,
+            _ => self.output_voltage,
+        }
+    }
+
+    /// The contributions that heat no part of the heat network.
+    pub fn unheated(&self, waveform: &Waveform) -> Unheated {
+        let (stage, load) = (self.stage, self.point.load);
+        let input_square = waveform.input_capacitor_square(load);
+        let output_square = waveform.output_capacitor_square(load);
+        Unheated {
+            input_esr: esr::esr(&stage.input_bank, End::Input, waveform, input_square),
+            output_esr: esr::esr(&stage.output_bank, End::Output, waveform, output_square),
+            copper: copper::copper(waveform, &stage.board, load, self.board_ratio),
+            sense: sense::sense(waveform, stage.board.sense * self.board_ratio),
+            snubber: snubber::snubber(stage.board.snubber, self.point.input_voltage, waveform.frequency),
+        }
+    }
+
+    /// E8: on-time and off-time limits of continuous mode.
+    pub fn check_times(&self, waveform: &Waveform) -> Result<(), Infeasible> {
+        let controller = &self.stage.controller;
+        if !waveform.is_continuous() {
+            return Ok(());
+        }
+        let (on_time, off_time) =
+            (waveform.duty / waveform.frequency, waveform.off_duty / waveform.frequency);
+        if on_time < controller.t_on_min {
+            return Err(Infeasible::OnTime { on_time, least: controller.t_on_min });
+        }
+        let least = controller.t_off_min.max(controller.t_1 + controller.t_2);
+        if off_time < least {
+            return Err(Infeasible::OffTime { off_time, least });
+        }
+        Ok(())
+    }
+}
+
+impl Heated {
+    /// Watts that heat each node.
+    #[inline]
+    pub fn node_watts(&self) -> Nodes {
+        let mut watts = [0.0; NODES];
+        watts[HIGH] = self.high_conduction.watts
+            + self.overlap.watts
+            + self.output_charge.watts
+            + self.recovery.map_or(0.0, |recovery| recovery.watts)
+            + self.high_gate.watts;
+        match &self.rectifier {
+            HeatedRectifier::Synchronous {
+                conduction,
+                overlap,
+                output_charge,
+                dead_time,
+                gate,
+                schottky,
+                high_dead_time,
+            } => {
+                watts[HIGH] += high_dead_time.watts;
+                watts[RECTIFIER] = conduction.watts + overlap.watts + output_charge.watts + gate.watts;
+                match schottky {
+                    Some(leakage) => {
+                        watts[SCHOTTKY] = dead_time.watts + leakage.map_or(0.0, |leakage| leakage.watts);
+                    }
+                    None => watts[RECTIFIER] += dead_time.watts,
+                }
+            }
+            HeatedRectifier::Diode { conduction, leakage } => {
+                watts[RECTIFIER] = conduction.watts + leakage.map_or(0.0, |leakage| leakage.watts);
+            }
+        }
+        watts[INDUCTOR] = self.winding.watts
+            + self.ac_winding.map_or(0.0, |ac| ac.watts)
+            + self.core.map_or(0.0, |core| core.watts)
+            + self.ringing.watts;
+        watts[CONTROLLER] = self.drive.watts + self.bias.watts;
+        watts
+    }
+}
+
+impl Contributions {
+    /// Books every contribution to its account.
+    pub fn ledger(&self) -> Ledger {
+        use Account as A;
+        let mut ledger = Ledger::default();
+        let heated = &self.heated;
+        ledger.book(A::HighSideConduction, heated.high_conduction.watts);
+        ledger.book(A::HighSideOverlap, heated.overlap.watts);
+        ledger.book(A::HighSideOutputCharge, heated.output_charge.watts);
+        ledger.book(A::HighSideRecovery, heated.recovery.map_or(0.0, |recovery| recovery.watts));
+        ledger.book(A::HighSideGateDrive, heated.high_gate.watts);
+        match &heated.rectifier {
+            HeatedRectifier::Synchronous {
+                conduction,
+                overlap,
+                output_charge,
+                dead_time,
+                gate,
+                schottky,
+                high_dead_time,
+            } => {
+                ledger.book(A::HighSideDeadTime, high_dead_time.watts);
+                ledger.book(A::LowSideConduction, conduction.watts);
+                ledger.book(A::LowSideOverlap, overlap.watts);
+                ledger.book(A::LowSideOutputCharge, output_charge.watts);
+                ledger.book(A::LowSideGateDrive, gate.watts);
+                match schottky {
+                    Some(leakage) => {
+                        ledger.book(A::ParallelSchottkyDeadTime, dead_time.watts);
+                        ledger.book(A::ParallelSchottkyLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
+                    }
+                    None => ledger.book(A::LowSideDeadTime, dead_time.watts),
+                }
+            }
+            HeatedRectifier::Diode { conduction, leakage } => {
+                ledger.book(A::FreewheelDiodeConduction, conduction.watts);
+                ledger.book(A::FreewheelDiodeLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
+            }
+        }
+        ledger.book(A::InductorWinding, heated.winding.watts);
+        ledger.book(A::InductorAcWinding, heated.ac_winding.map_or(0.0, |ac| ac.watts));
+        ledger.book(A::InductorCore, heated.core.map_or(0.0, |core| core.watts));
+        ledger.book(A::InductorRinging, heated.ringing.watts);
+        ledger.book(A::ControllerGateDrive, heated.drive.watts);
+        ledger.book(A::ControllerBias, heated.bias.watts);
+        let unheated = &self.unheated;
+        ledger.book(A::InputCapacitorsEsr, unheated.input_esr.watts);
+        ledger.book(A::OutputCapacitorsEsr, unheated.output_esr.watts);
+        ledger.book(A::BoardCopper, unheated.copper.watts);
+        ledger.book(A::BoardSense, unheated.sense.watts);
+        ledger.book(A::BoardSnubber, unheated.snubber.watts);
+        ledger
+    }
+}
+
+/// Contributions of a linear regulator (E43), or why it cannot run here.
+pub fn linear(
+    regulator: &LinearRegulator,
+    output_voltage: f64,
+    point: &OperatingPoint,
+) -> Result<LinearContributions, Infeasible> {
+    let (v_in, load) = (point.input_voltage, point.load);
+    let (headroom, needed) = (v_in - output_voltage, regulator.dropout(load));
+    if headroom < needed || headroom < 0.0 {
+        return Err(Infeasible::DropOut { headroom, needed });
+    }
+    Ok(LinearContributions {
+        pass: pass::pass(v_in, output_voltage, load),
+        ground_current: ground_current::ground_current(v_in, regulator.ground_current(load)),
+    })
+}
+
+impl LinearContributions {
+    /// Books both contributions.
+    pub fn ledger(&self) -> Ledger {
+        let mut ledger = Ledger::default();
+        ledger.book(Account::RegulatorPass, self.pass.watts);
+        ledger.book(Account::RegulatorGroundCurrent, self.ground_current.watts);
+        ledger
+    }
+}
+
+/// A solved point: waveform, temperatures and ledger.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Solved {
+    /// Where.
+    pub point: OperatingPoint,
+    /// V_OUT, V.
+    pub output_voltage: f64,
+    /// Currents and duties; a linear stage has none.
+    pub waveform: Option<Waveform>,
+    /// Temperature of each slot that has one, °C.
+    pub temperatures: Temperatures,
+    /// Watts of every account.
+    pub ledger: Ledger,
+}
+
+/// Temperatures by slot, °C; `None` for slots without a temperature of their own.
+pub type Temperatures = [Option<f64>; crate::ledger::SLOTS];
+
+impl Solved {
+    /// V_OUT I_OUT, W.
+    pub fn output_power(&self) -> f64 {
+        self.output_voltage * self.point.load
+    }
+
+    /// Loss: the sum of the ledger, W.
+    pub fn loss(&self) -> f64 {
+        self.ledger.loss()
+    }
+
+    /// Output power plus loss, W (E60).
+    pub fn input_power(&self) -> f64 {
+        self.output_power() + self.loss()
+    }
+
+    /// Output over input power; undefined without load.
+    pub fn efficiency(&self) -> Option<f64> {
+        let (output, input) = (self.output_power(), self.input_power());
+        (output > 0.0).then(|| output / input)
+    }
+
+    /// The hottest slot and its temperature, °C.
+    pub fn hottest(&self) -> Option<(crate::ledger::Slot, f64)> {
+        let known = crate::ledger::ALL_SLOTS
+            .into_iter()
+            .filter_map(|slot| self.temperatures[slot.index()].map(|temperature| (slot, temperature)));
+        known.max_by(|a, b| a.1.total_cmp(&b.1))
+    }
+}
+
+/// Evaluates a stage at a point: temperatures and losses together (E50).
+pub fn evaluate(stage: &Stage, point: OperatingPoint) -> Result<Solved, Infeasible> {
+    match &stage.kind {
+        Kind::Linear(regulator) => crate::heat::settle_linear(regulator, stage.output_voltage, point),
+        Kind::Switched(switched) => {
+            crate::heat::settle(&Prepared::new(switched, stage.output_voltage, point))
+        }
+    }
+}
