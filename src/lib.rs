@@ -2,12 +2,14 @@
 
 pub mod budget;
 pub mod edges;
+pub mod files;
 pub mod fit;
 pub mod fitted;
 pub mod grid;
 pub mod heat;
 pub mod hints;
 pub mod infeasible;
+pub mod input;
 pub mod ledger;
 pub mod loss;
 pub mod model;
