@@ -2,16 +2,22 @@
 
 pub mod budget;
 pub mod edges;
+pub mod files;
 pub mod fit;
 pub mod fitted;
 pub mod grid;
 pub mod heat;
+pub mod hints;
 pub mod infeasible;
+pub mod input;
 pub mod ledger;
 pub mod loss;
 pub mod model;
 pub mod near;
 pub mod parts;
+pub mod printable;
+pub mod render;
+pub mod report;
 pub mod sheet;
 pub mod stage;
 pub mod sweep;

@@ -1,0 +1,71 @@
+//! The keys of one mapping: taken one by one, and whatever nobody took is an unknown key.
+
+use super::nearest::{listed, nearest};
+use super::node::{Entries, Node};
+use super::notes::{Blame, Notes};
+use super::path::Trail;
+
+/// A mapping that is being read.
+#[derive(Debug)]
+pub struct Fields<'n, 't> {
+    entries: &'n Entries,
+    taken: Vec<bool>,
+    /// Where the mapping stands.
+    pub trail: &'t Trail<'t>,
+}
+
+impl<'n, 't> Fields<'n, 't> {
+    /// Opens a mapping; notes a fault and gives `None` when it is none, or empty. `like` shows what it should be.
+    pub fn open(node: &'n Node, trail: &'t Trail<'t>, like: &str, notes: &mut Notes) -> Option<Self> {
+        match node {
+            Node::Map(entries) if !entries.is_empty() => {
+                Some(Fields { entries, taken: vec![false; entries.len()], trail })
+            }
+            Node::Map(_) | Node::Null => {
+                notes.value_error(trail, node, Blame::new("is empty; a mapping is expected", format!("write {like}")));
+                None
+            }
+            other => {
+                let reason = format!("{} stands here; a mapping is expected", other.words());
+                notes.value_error(trail, other, Blame::new(reason, format!("write {like}")));
+                None
+            }
+        }
+    }
+
+    /// The value of a key, which counts as known from now on.
+    pub fn take(&mut self, name: &str) -> Option<&'n Node> {
+        let place = self.entries.iter().position(|(key, _)| &**key == name)?;
+        self.taken[place] = true;
+        Some(&self.entries[place].1)
+    }
+
+    /// True when the mapping has a key; it does not count as known for that.
+    pub fn has(&self, name: &str) -> bool {
+        self.entries.iter().any(|(key, _)| &**key == name)
+    }
+
+    /// Keys that nobody took.
+    pub fn untaken(&self) -> impl Iterator<Item = (&'n str, &'n Node)> + '_ {
+        let entries = self.entries.iter().zip(&self.taken);
+        entries.filter(|(_, taken)| !**taken).map(|((key, node), _)| (&**key, node))
+    }
+
+    /// Notes every key that nobody took, with the nearest of the known ones.
+    pub fn close<'k>(self, known: impl FnOnce() -> Vec<&'k str>, notes: &mut Notes) {
+        if self.taken.iter().all(|taken| *taken) {
+            return;
+        }
+        let known = known();
+        for (key, node) in self.untaken() {
+            let decimal = *node == Node::Null && key.starts_with(|c: char| c.is_ascii_digit());
+            let hint = match nearest(key, known.iter().copied()) {
+                _ if decimal => "decimals take a point, not a comma".to_string(),
+                Some(near) if self.has(near) => format!("`{near}` is there already; take this one out"),
+                Some(near) => format!("did you mean `{near}`?"),
+                None => format!("the keys here are {}", listed(known.iter().copied())),
+            };
+            notes.key_error(&self.trail.key(key), Blame::new("unknown key", hint));
+        }
+    }
+}

@@ -1,0 +1,57 @@
+//! Files in, validated types out.
+pub mod datum;
+pub mod error;
+pub mod fields;
+pub mod gaps;
+pub mod inherit;
+pub mod kind;
+pub mod library;
+pub mod nearest;
+pub mod node;
+pub mod notes;
+pub mod outline;
+pub mod parallel;
+pub mod part_file;
+pub mod path;
+pub mod place;
+pub mod quantity;
+pub mod reader;
+pub mod sample;
+pub mod show;
+pub mod units;
+pub mod yaml;
+
+use std::path::PathBuf;
+
+use crate::budget::{InputFile, Library};
+pub use error::{InputError, InputErrors, Severity, Warning};
+
+/// A library with its warnings and the files it was read from.
+pub type LoadedLibrary = (Library, Vec<Warning>, Vec<InputFile>);
+
+/// Reads folders of parts, or single files of parts.
+///
+/// # Errors
+/// Every error of every file.
+pub fn load_library(paths: &[PathBuf]) -> Result<LoadedLibrary, InputErrors> {
+    let loaded = library::load(paths, &part_file::Attention::Everyone);
+    let (errors, warnings) = library::split(loaded.faults);
+    if errors.is_empty() { Ok((loaded.library, warnings, loaded.inputs)) } else { Err(InputErrors(errors)) }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn example_library_loads() {
+        let root = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("parts");
+        match load_library(&[root]) {
+            Ok((library, warnings, inputs)) => {
+                println!("{} {} {}", library.mosfets.len(), inputs.len(), warnings.len());
+                for warning in warnings { println!("{warning}"); }
+            }
+            Err(errors) => panic!("{errors}"),
+        }
+    }
+}

@@ -1,0 +1,136 @@
+//! Faults as the readers find them: by key path. Their lines and columns are looked up afterwards ([`super::place`]).
+
+use super::error::Severity;
+use super::node::Node;
+use super::path::{KeyPath, Trail};
+use crate::sheet::form::{Fault, Faults, Form};
+
+/// What to mark in the file.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Mark {
+    /// The key, or the first line of a list's item.
+    Key,
+    /// The value, when it stands on one line; else its key.
+    Value,
+}
+
+/// A fault without its line.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Note {
+    /// Error or warning.
+    pub severity: Severity,
+    /// Where.
+    pub path: KeyPath,
+    /// What to mark there.
+    pub mark: Mark,
+    /// Single value as written.
+    pub value: Option<String>,
+    /// What is wrong.
+    pub reason: String,
+    /// The way out.
+    pub hint: String,
+}
+
+/// Most notes of one severity that are kept; a file that is wrong all over need not be listed in full.
+pub const MOST: usize = 1000;
+
+/// Collects faults; nobody stops at the first.
+#[derive(Debug, Default)]
+pub struct Notes {
+    /// Kept notes in the order found.
+    pub list: Vec<Note>,
+    errors: usize,
+    warnings: usize,
+}
+
+/// Reason and way out of a fault.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Blame {
+    /// What is wrong.
+    pub reason: String,
+    /// The way out.
+    pub hint: String,
+}
+
+impl Blame {
+    /// Both texts.
+    pub fn new(reason: impl Into<String>, hint: impl Into<String>) -> Self {
+        Blame { reason: reason.into(), hint: hint.into() }
+    }
+}
+
+impl Notes {
+    /// An error about a key: missing, unknown, in the wrong place.
+    pub fn key_error(&mut self, trail: &Trail<'_>, blame: Blame) {
+        self.add(Severity::Error, trail.path(), Mark::Key, None, blame);
+    }
+
+    /// An error about a value.
+    pub fn value_error(&mut self, trail: &Trail<'_>, node: &Node, blame: Blame) {
+        self.add(Severity::Error, trail.path(), Mark::Value, node.scalar(), blame);
+    }
+
+    /// A doubt about a value.
+    pub fn value_warning(&mut self, trail: &Trail<'_>, node: &Node, blame: Blame) {
+        self.add(Severity::Warning, trail.path(), Mark::Value, node.scalar(), blame);
+    }
+
+    /// An error that marks a value without repeating it.
+    pub fn at_value(&mut self, trail: &Trail<'_>, blame: Blame) {
+        self.add(Severity::Error, trail.path(), Mark::Value, None, blame);
+    }
+
+    /// A doubt that marks a value without repeating it.
+    pub fn doubt(&mut self, trail: &Trail<'_>, blame: Blame) {
+        self.add(Severity::Warning, trail.path(), Mark::Value, None, blame);
+    }
+
+    /// Whatever a form says against itself.
+    pub fn add_faults(&mut self, form: &dyn Form, trail: &Trail<'_>) {
+        let mut faults = Faults::default();
+        form.cross_check(&mut faults);
+        for Fault { path, reason, hint, warning } in faults.0 {
+            let severity = if warning { Severity::Warning } else { Severity::Error };
+            self.add(severity, trail.path().with(&path), Mark::Value, None, Blame { reason, hint });
+        }
+    }
+
+    /// What a part leaves open, as warnings.
+    pub fn add_gaps(&mut self, gaps: Faults, trail: &Trail<'_>) {
+        for Fault { path, reason, hint, .. } in gaps.0 {
+            self.add(Severity::Warning, trail.path().with(&path), Mark::Key, None, Blame { reason, hint });
+        }
+    }
+
+    /// Drops the warnings among the notes from a place on.
+    pub fn forget_warnings(&mut self, from: usize) {
+        let mut place = 0;
+        self.list.retain(|note| {
+            place += 1;
+            place <= from || note.severity == Severity::Error
+        });
+    }
+
+    /// Number of errors so far.
+    pub fn errors(&self) -> usize {
+        self.errors
+    }
+
+    fn add(
+        &mut self,
+        severity: Severity,
+        path: KeyPath,
+        mark: Mark,
+        value: Option<String>,
+        Blame { reason, hint }: Blame,
+    ) {
+        let count = match severity {
+            Severity::Error => &mut self.errors,
+            Severity::Warning => &mut self.warnings,
+        };
+        *count += 1;
+        if *count <= MOST {
+            self.list.push(Note { severity, path, mark, value, reason, hint });
+        }
+    }
+}
