@@ -29,6 +29,15 @@ impl Severity {
             Severity::Critical => "critical",
         }
     }
+
+    /// Mark beside a number.
+    pub const fn mark(self) -> &'static str {
+        match self {
+            Severity::Note => "*",
+            Severity::Warning => "!",
+            Severity::Critical => "!!",
+        }
+    }
 }
 
 /// One finding on a slot of a stage.
@@ -188,17 +197,18 @@ fn of_switched(stage: &SwitchedSheet, notes: &mut Vec<Finding>) {
         if sheet.q_rr.as_ref().is_some_and(|q_rr| q_rr.exponent.is_none()) {
             note("recovery_exponent_assumed", slot, "no exponent of q_rr: 0.5 assumed".into());
         }
-        no_thermal_resistance_text(sheet.r_th_ja.as_ref()).into_iter().for_each(|text| note("at_ambient", slot, text));
+        no_thermal_resistance_text(sheet.r_th_ja.as_ref())
+            .into_iter()
+            .for_each(|text| note("at_ambient", slot, text));
     };
     mosfet(Slot::HighSide, &stage.high_side.sheet);
-    let mut diode = None;
-    match &stage.rectifier {
+    let diode = match &stage.rectifier {
         RectifierSheet::Synchronous { low_side, parallel_schottky } => {
             mosfet(Slot::LowSide, &low_side.sheet);
-            diode = parallel_schottky.as_ref().map(|placed| (Slot::ParallelSchottky, placed));
+            parallel_schottky.as_ref().map(|placed| (Slot::ParallelSchottky, placed))
         }
-        RectifierSheet::Diode { freewheel_diode } => diode = Some((Slot::FreewheelDiode, freewheel_diode)),
-    }
+        RectifierSheet::Diode { freewheel_diode } => Some((Slot::FreewheelDiode, freewheel_diode)),
+    };
     if let Some((slot, placed)) = diode {
         let sheet = &placed.sheet;
         if sheet.v_f.len() < 2 {
@@ -206,12 +216,18 @@ fn of_switched(stage: &SwitchedSheet, notes: &mut Vec<Finding>) {
         }
         let temperatures = |first: &f64| sheet.i_r.iter().any(|point| point.t_j.value != *first);
         if sheet.i_r.first().is_some_and(|point| !temperatures(&point.t_j.value)) {
-            note("leakage_slope_assumed", slot, "i_r at one temperature only: doubling per 10 K assumed".into());
+            note(
+                "leakage_slope_assumed",
+                slot,
+                "i_r at one temperature only: doubling per 10 K assumed".into(),
+            );
         }
         if sheet.q_rr.as_ref().is_some_and(|q_rr| q_rr.exponent.is_none()) {
             note("recovery_exponent_assumed", slot, "no exponent of q_rr: 0.5 assumed".into());
         }
-        no_thermal_resistance_text(sheet.r_th_ja.as_ref()).into_iter().for_each(|text| note("at_ambient", slot, text));
+        no_thermal_resistance_text(sheet.r_th_ja.as_ref())
+            .into_iter()
+            .for_each(|text| note("at_ambient", slot, text));
     }
     inductor(&stage.inductor.sheet, &mut note);
     let controller = &stage.controller.sheet;

@@ -1,8 +1,12 @@
 //! lossbook books every watt lost in a step-down rail to one part and one mechanism.
 
 pub mod budget;
+pub mod candidate;
+pub mod compare;
+pub mod crossover;
 pub mod edges;
 pub mod files;
+pub mod findings;
 pub mod fit;
 pub mod fitted;
 pub mod grid;
@@ -11,13 +15,17 @@ pub mod hints;
 pub mod infeasible;
 pub mod input;
 pub mod ledger;
+pub mod loads;
 pub mod loss;
 pub mod model;
 pub mod near;
 pub mod parts;
 pub mod printable;
+pub mod ratings;
+pub mod record;
 pub mod render;
 pub mod report;
+pub mod requirements;
 pub mod sheet;
 pub mod stage;
 pub mod sweep;

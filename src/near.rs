@@ -21,8 +21,10 @@ impl NearPower {
         let d = x * self.inverse - 1.0;
         if d.abs() < CLOSE {
             // binomial series
-            let tail = (p - 3.0) * 0.25 * d * (1.0 + (p - 4.0) * 0.2 * d * (1.0 + (p - 5.0) * (1.0 / 6.0) * d));
-            let series = p * d * (1.0 + (p - 1.0) * 0.5 * d * (1.0 + (p - 2.0) * (1.0 / 3.0) * d * (1.0 + tail)));
+            let tail =
+                (p - 3.0) * 0.25 * d * (1.0 + (p - 4.0) * 0.2 * d * (1.0 + (p - 5.0) * (1.0 / 6.0) * d));
+            let series =
+                p * d * (1.0 + (p - 1.0) * 0.5 * d * (1.0 + (p - 2.0) * (1.0 / 3.0) * d * (1.0 + tail)));
             return self.value + self.value * series;
         }
         self.anchor(x, p)

@@ -6,8 +6,10 @@ use crate::fitted::{Kind, Stage};
 use crate::ledger::Slot;
 use crate::loss::esr::{self, End};
 use crate::model::{Prepared, Solved};
+use crate::near::Memory;
 use crate::parts::capacitor::Bank;
-use crate::report::number::{quantity, temperature};
+use crate::printable::printable;
+use crate::report::number::quantity;
 use crate::sheet::{CapacitorSheet, Datum, DiodeSheet, InductorSheet, MosfetSheet};
 use crate::stage::{Circuit, Placed, RectifierSheet, StageSheet, SwitchedSheet};
 use crate::units::Dimension as D;
@@ -86,13 +88,17 @@ impl Checker<'_> {
         let (Some(t), Some(limit)) = (solved.temperatures[slot.index()], limit) else { return };
         let margin = limit.value - t;
         if margin < 0.0 {
-            let text = format!("{} is above {key} {}", temperature(t), temperature(limit.value));
+            let text = format!(
+                "{} is above {key} {}",
+                quantity(t, D::Temperature),
+                quantity(limit.value, D::Temperature)
+            );
             self.findings.push(Finding::new(Severity::Critical, "junction_rating", slot, text));
         } else if margin < self.derating.junction_margin {
             let text = format!(
                 "{} leaves {margin:.1} K to {key} {}, less than {:.0} K",
-                temperature(t),
-                temperature(limit.value),
+                quantity(t, D::Temperature),
+                quantity(limit.value, D::Temperature),
                 self.derating.junction_margin
             );
             self.findings.push(Finding::new(Severity::Warning, "junction_margin", slot, text));
@@ -146,7 +152,9 @@ pub fn temperature_limits(sheet: &StageSheet) -> Vec<(Slot, f64)> {
             match &stage.rectifier {
                 RectifierSheet::Synchronous { low_side, parallel_schottky } => {
                     limits.push((Slot::LowSide, low_side.sheet.t_j_max.value));
-                    limits.extend(parallel_schottky.iter().map(|d| (Slot::ParallelSchottky, d.sheet.t_j_max.value)));
+                    limits.extend(
+                        parallel_schottky.iter().map(|d| (Slot::ParallelSchottky, d.sheet.t_j_max.value)),
+                    );
                 }
                 RectifierSheet::Diode { freewheel_diode } => {
                     limits.push((Slot::FreewheelDiode, freewheel_diode.sheet.t_j_max.value));
@@ -186,7 +194,13 @@ fn switched_stage(
     inductor(checker, &sheet.inductor, waveform, solved);
     let ends = [
         (Slot::InputCapacitors, &sheet.input_capacitors, &prepared.stage.input_bank, End::Input, v_in),
-        (Slot::OutputCapacitors, &sheet.output_capacitors, &prepared.stage.output_bank, End::Output, prepared.v_out),
+        (
+            Slot::OutputCapacitors,
+            &sheet.output_capacitors,
+            &prepared.stage.output_bank,
+            End::Output,
+            prepared.v_out,
+        ),
     ];
     for (slot, placed, bank, end, voltage) in ends {
         let mean_square = match end {
@@ -204,14 +218,20 @@ fn switched_stage(
     }
     if waveform.mode == Mode::PulseSkipping && prepared.stage.skip_peak > 0.0 {
         let temperatures = crate::heat::nodes_of(prepared, solved);
-        let ripple = Waveform::continuous(&prepared.current_path(&temperatures)).map_or(0.0, |w| w.ripple());
+        let ripple = Waveform::continuous(&prepared.current_path(&temperatures, &mut Memory::default()))
+            .map_or(0.0, |w| w.ripple());
         if prepared.stage.skip_peak > ripple {
             let text = format!(
                 "the stated peak {} is above the ripple {}: the border to continuous mode is abrupt",
                 quantity(prepared.stage.skip_peak, D::Current),
                 quantity(ripple, D::Current)
             );
-            checker.findings.push(Finding::new(Severity::Note, "skip_peak_above_ripple", Slot::Controller, text));
+            checker.findings.push(Finding::new(
+                Severity::Note,
+                "skip_peak_above_ripple",
+                Slot::Controller,
+                text,
+            ));
         }
     }
 }
@@ -314,13 +334,13 @@ fn capacitors(
     rms_each: &[f64],
 ) {
     for (placed, rms) in bank.iter().zip(rms_each) {
-        let what = format!("{}: voltage", crate::report::number::printable(&placed.name));
+        let what = format!("{}: voltage", printable(&placed.name));
         checker.voltage(slot, &what, "v_max", voltage, &placed.sheet.v_max);
         if let Some(limit) = &placed.sheet.i_rms_max {
             checker.rating(&Rating {
                 slot,
                 kinds: ["ripple_current_rating", "ripple_current_derating"],
-                what: &format!("{}: ripple current", crate::report::number::printable(&placed.name)),
+                what: &format!("{}: ripple current", printable(&placed.name)),
                 key: "i_rms_max",
                 stress: *rms,
                 limit: limit.value,

@@ -3,7 +3,9 @@
 use serde::Serialize;
 use serde::ser::{SerializeMap, SerializeSeq, Serializer};
 
+use crate::budget::Limit;
 use crate::candidate::Candidate;
+use crate::compare::Comparison;
 use crate::findings::{Finding, NotModelled};
 use crate::fitted::Kind;
 use crate::grid::OperatingPoint;
@@ -69,7 +71,11 @@ impl Serialize for Record<'_> {
     }
 }
 
-fn solved_entries<M: SerializeMap>(map: &mut M, candidate: &Candidate<'_>, detail: &Detail) -> Result<(), M::Error> {
+fn solved_entries<M: SerializeMap>(
+    map: &mut M,
+    candidate: &Candidate<'_>,
+    detail: &Detail,
+) -> Result<(), M::Error> {
     let solved = &detail.solved;
     match &solved.waveform {
         None => map.serialize_entry("mode", "linear")?,
@@ -191,9 +197,9 @@ struct Temperatures<'a>(&'a Solved);
 
 impl Serialize for Temperatures<'_> {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
-        let known = ALL_SLOTS
-            .iter()
-            .filter_map(|slot| self.0.temperatures[slot.index()].map(|temperature| (slot.name(), temperature)));
+        let known = ALL_SLOTS.iter().filter_map(|slot| {
+            self.0.temperatures[slot.index()].map(|temperature| (slot.name(), temperature))
+        });
         serializer.collect_map(known)
     }
 }
@@ -203,5 +209,56 @@ struct AllFindings<'a>(&'a [Finding], &'a [Finding]);
 impl Serialize for AllFindings<'_> {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         serializer.collect_seq(self.0.iter().chain(self.1))
+    }
+}
+
+/// What became of the requirements, stage by stage.
+pub struct Judgements<'a>(pub &'a Comparison<'a>);
+
+#[derive(Serialize)]
+struct JudgementEntry<'a> {
+    stage: &'a str,
+    requirement: &'static str,
+    limit: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    input_voltage: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    load: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    ambient: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    switching_frequency: Option<f64>,
+    met: bool,
+    value: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    reason: Option<String>,
+}
+
+impl Serialize for Judgements<'_> {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+        let stages = self.0.candidates.iter().zip(&self.0.judgements);
+        serializer.collect_seq(stages.flat_map(|(candidate, judgements)| {
+            judgements.iter().map(move |judgement| {
+                let (requirement, limit) = match judgement.requirement.limit {
+                    Limit::EfficiencyMin(limit) => ("efficiency_min", limit),
+                    Limit::JunctionMarginMin(limit) => ("junction_margin_min", limit),
+                    Limit::LossMax(limit) => ("loss_max", limit),
+                };
+                let at = &judgement.requirement.at;
+                let outcome = judgement.decisive.as_ref().map(|(_, outcome)| outcome);
+                JudgementEntry {
+                    stage: candidate.name(),
+                    requirement,
+                    limit,
+                    input_voltage: at.input_voltage,
+                    load: at.load,
+                    ambient: at.ambient,
+                    switching_frequency: at.switching_frequency,
+                    met: judgement.met,
+                    value: outcome.and_then(|outcome| outcome.as_ref().ok().copied()),
+                    reason: outcome.and_then(|outcome| outcome.as_ref().err().map(ToString::to_string)),
+                }
+            })
+        }))
     }
 }

@@ -43,7 +43,8 @@ fn judge_one(candidate: &Candidate<'_>, requirement: &Requirement, watch: &Watch
                 Ok(solved) => value(candidate, &requirement.limit, &solved).map(Ok),
             };
             if let Some(value) = value {
-                let spare = value.as_ref().map_or(f64::NEG_INFINITY, |value| spare(&requirement.limit, *value));
+                let spare =
+                    value.as_ref().map_or(f64::NEG_INFINITY, |value| spare(&requirement.limit, *value));
                 if worst.as_ref().is_none_or(|(least, ..)| spare < *least) {
                     worst = Some((spare, point, value));
                 }
@@ -73,7 +74,9 @@ fn judge_one(candidate: &Candidate<'_>, requirement: &Requirement, watch: &Watch
 fn value(candidate: &Candidate<'_>, limit: &Limit, solved: &Solved) -> Option<f64> {
     match limit {
         Limit::EfficiencyMin(_) => solved.efficiency(),
-        Limit::JunctionMarginMin(_) => ratings::junction_margin(candidate.sheet, solved).map(|(_, margin)| margin),
+        Limit::JunctionMarginMin(_) => {
+            ratings::junction_margin(candidate.sheet, solved).map(|(_, margin)| margin)
+        }
         Limit::LossMax(_) => Some(solved.loss()),
     }
 }

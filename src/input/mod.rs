@@ -49,7 +49,9 @@ mod tests {
         match load_library(&[root]) {
             Ok((library, warnings, inputs)) => {
                 println!("{} {} {}", library.mosfets.len(), inputs.len(), warnings.len());
-                for warning in warnings { println!("{warning}"); }
+                for warning in warnings {
+                    println!("{warning}");
+                }
             }
             Err(errors) => panic!("{errors}"),
         }
