@@ -1,6 +1,8 @@
 //! lossbook books every watt lost in a step-down rail to one part and one mechanism.
 
+pub mod answer;
 pub mod budget;
+pub mod compare;
 pub mod edges;
 pub mod files;
 pub mod fit;
@@ -19,5 +21,7 @@ pub mod render;
 pub mod report;
 pub mod sheet;
 pub mod stage;
+pub mod sweep;
+pub mod tabulate;
 pub mod units;
 pub mod waveform;
