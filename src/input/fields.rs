@@ -40,6 +40,31 @@ impl<'n, 't> Fields<'n, 't> {
         Some(&self.entries[place].1)
     }
 
+    /// The value of a key that must be there; notes a fault when it is not.
+    pub fn require(&mut self, name: &str, example: &str, notes: &mut Notes) -> Option<&'n Node> {
+        let found = self.take(name);
+        if found.is_none() {
+            self.missing(name, &format!("add `{name}: {example}`"), notes);
+        }
+        found
+    }
+
+    /// Notes that a key is missing.
+    pub fn missing(&self, name: &str, hint: &str, notes: &mut Notes) {
+        notes.key_error(self.trail, Blame::new(format!("`{name}` is missing"), hint));
+    }
+
+    /// A mapping without keys.
+    pub fn empty() -> Self {
+        const NONE: &Entries = &Vec::new();
+        Fields { entries: NONE, taken: Vec::new(), trail: &Trail::TOP }
+    }
+
+    /// The value of a key without counting it as known.
+    pub fn peek(&self, name: &str) -> Option<&'n Node> {
+        self.entries.iter().find(|(key, _)| &**key == name).map(|(_, node)| node)
+    }
+
     /// True when the mapping has a key; it does not count as known for that.
     pub fn has(&self, name: &str) -> bool {
         self.entries.iter().any(|(key, _)| &**key == name)

@@ -1,4 +1,9 @@
 //! Files in, validated types out.
+pub mod budget;
+pub mod budget_grid;
+pub mod budget_keys;
+pub mod budget_stages;
+pub mod budget_terms;
 pub mod datum;
 pub mod error;
 pub mod fields;
@@ -14,16 +19,19 @@ pub mod parallel;
 pub mod part_file;
 pub mod path;
 pub mod place;
+pub mod probe;
 pub mod quantity;
 pub mod reader;
 pub mod sample;
+pub mod shelf;
+pub mod shortlist;
 pub mod show;
 pub mod units;
 pub mod yaml;
 
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 
-use crate::budget::{InputFile, Library};
+use crate::budget::{Budget, InputFile, Library};
 pub use error::{InputError, InputErrors, Severity, Warning};
 
 /// A library with its warnings and the files it was read from.
@@ -39,6 +47,19 @@ pub fn load_library(paths: &[PathBuf]) -> Result<LoadedLibrary, InputErrors> {
     if errors.is_empty() { Ok((loaded.library, warnings, loaded.inputs)) } else { Err(InputErrors(errors)) }
 }
 
+/// Reads a budget with the library that it names.
+///
+/// # Errors
+/// Every error of every file.
+pub fn load_budget(path: &Path) -> Result<(Budget, Vec<Warning>), InputErrors> {
+    let (budget, faults) = budget::load(path);
+    let (errors, warnings) = library::split(faults);
+    match budget {
+        Some(budget) if errors.is_empty() => Ok((budget, warnings)),
+        _ => Err(InputErrors(errors)),
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -52,6 +73,19 @@ mod tests {
                 for warning in warnings { println!("{warning}"); }
             }
             Err(errors) => panic!("{errors}"),
+        }
+    }
+
+    #[test]
+    fn example_budgets_load() {
+        let root = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("budgets");
+        for path in crate::files::list_yaml(&root).expect("examples") {
+            match load_budget(&path) {
+                Ok((budget, warnings)) => {
+                    println!("{} {} {} {:?}", budget.name, budget.grid.len(), warnings.len(), budget.headline);
+                }
+                Err(errors) => panic!("{errors}"),
+            }
         }
     }
 }
