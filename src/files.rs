@@ -148,9 +148,9 @@ pub fn list_yaml(folder: &Path) -> Result<Vec<PathBuf>, FileFault> {
     for entry in fs::read_dir(folder)? {
         let path = entry?.path();
         let hidden = path.file_name().is_some_and(|name| name.as_encoded_bytes().starts_with(b"."));
-        let yaml = path.extension().is_some_and(|ending| {
-            ending.eq_ignore_ascii_case("yaml") || ending.eq_ignore_ascii_case("yml")
-        });
+        let yaml = path
+            .extension()
+            .is_some_and(|ending| ending.eq_ignore_ascii_case("yaml") || ending.eq_ignore_ascii_case("yml"));
         // a link that leads nowhere stays in: reading it will say so
         let skipped = fs::metadata(&path).is_ok_and(|about| !about.is_file());
         if yaml && !hidden && !skipped {
@@ -225,10 +225,7 @@ mod tests {
         let read = read_text(&path).expect("readable");
         assert_eq!(read.text, "a: 1\nb: 2\n");
         // FIPS 180-4, the one-block example "abc"
-        assert_eq!(
-            sha256_hex(b"abc"),
-            "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"
-        );
+        assert_eq!(sha256_hex(b"abc"), "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad");
         assert_ne!(read.sha256, sha256_hex(read.text.as_bytes()));
     }
 

@@ -16,8 +16,12 @@ pub(crate) fn ask_for_a_report() {
 
 fn request(info: &PanicHookInfo<'_>) -> String {
     let payload = info.payload();
-    let what = payload.downcast_ref::<&str>().copied().or_else(|| payload.downcast_ref::<String>().map(String::as_str));
-    let place = info.location().map_or_else(String::new, |place| format!(" ({}:{})", place.file(), place.line()));
+    let what = payload
+        .downcast_ref::<&str>()
+        .copied()
+        .or_else(|| payload.downcast_ref::<String>().map(String::as_str));
+    let place =
+        info.location().map_or_else(String::new, |place| format!(" ({}:{})", place.file(), place.line()));
     format!(
         "error: lossbook {} has a bug: {}{place}\n  hint: please report these lines with the command and the files that led here",
         env!("CARGO_PKG_VERSION"),

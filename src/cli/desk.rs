@@ -15,7 +15,12 @@ use super::progress::Progress;
 use super::{Exit, Failure, interrupt, terminal};
 
 /// Writes an answer in the format asked for; the exit code says whether requirements are met.
-pub(crate) fn give(answer: &dyn Answer, writing: &Writing, common: &Common, watch: &Arc<Watch>) -> Result<Exit, Failure> {
+pub(crate) fn give(
+    answer: &dyn Answer,
+    writing: &Writing,
+    common: &Common,
+    watch: &Arc<Watch>,
+) -> Result<Exit, Failure> {
     let file = writing.output.as_deref().filter(|path| *path != Path::new("-"));
     let streams = matches!(writing.format, Format::Csv | Format::Json);
     // a bar between rows on the same terminal would be worse than none

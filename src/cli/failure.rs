@@ -7,7 +7,6 @@ use std::process::ExitCode;
 use lossbook::files::FileFault;
 use lossbook::input::InputErrors;
 use lossbook::printable::printable;
-use lossbook::render::Faults;
 
 use super::terminal;
 
@@ -86,7 +85,7 @@ impl Failure {
                 // a closed pipe is no one to tell
                 let _ = error.print();
             }
-            Failure::Input(errors) => terminal::say(&self::drawn(errors)),
+            Failure::Input(errors) => terminal::say(&errors.to_string()),
             Failure::Asked { problem, hint } => say(problem, hint),
             Failure::Output { file, fault } => {
                 let place = match file {
@@ -97,10 +96,6 @@ impl Failure {
             }
         }
     }
-}
-
-fn drawn(errors: &InputErrors) -> String {
-    Faults { width: terminal::stderr_width(), colour: terminal::stderr_colour() }.draw(&errors.0)
 }
 
 fn say(problem: &str, hint: &str) {

@@ -11,7 +11,14 @@ use super::Failure;
 #[derive(Args, Debug)]
 pub(crate) struct Common {
     /// Colour in text: by default when standard output is a terminal and NO_COLOR is not set.
-    #[arg(long, global = true, value_name = "WHEN", default_value = "auto", alias = "color", hide_default_value = true)]
+    #[arg(
+        long,
+        global = true,
+        value_name = "WHEN",
+        default_value = "auto",
+        alias = "color",
+        hide_default_value = true
+    )]
     pub(crate) colour: Colour,
 
     /// Threads for sweeps: by default one a core. Results are the same with any number.

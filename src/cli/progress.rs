@@ -34,7 +34,9 @@ impl Progress {
                 return;
             }
             let bar = ProgressBar::with_draw_target(Some(0), ProgressDrawTarget::stderr());
-            if let Ok(style) = ProgressStyle::with_template("{bar:30} {percent} % of {len} points, {eta} left") {
+            if let Ok(style) =
+                ProgressStyle::with_template("{bar:30} {percent} % of {len} points, {eta} left")
+            {
                 bar.set_style(style);
             }
             while !seen.load(Ordering::Relaxed) {

@@ -56,7 +56,8 @@ impl Options {
         let budget = self.subject.load()?;
         let wants_rating = |loads: &Vec<Load>| loads.iter().any(|load| matches!(load, Load::OfRated(_)));
         if budget.rated_load.is_none() && self.loads.as_ref().is_some_and(wants_rating) {
-            let hint = "add `rated_load: 10 A` to the budget, or give the loads as currents: --loads 500mA,2A";
+            let hint =
+                "add `rated_load: 10 A` to the budget, or give the loads as currents: --loads 500mA,2A";
             return Err(Failure::asked("loads in percent need the rated load", hint));
         }
         let request = Request {

@@ -48,7 +48,11 @@ fn verb_hint(word: &str) -> String {
         [ours, ..] if known.contains(ours) => {
             return format!("it is called `{ours}` here; see `lossbook {ours} --help`");
         }
-        [ours, ..] => return format!("it is called `{ours}` here, which this version does not have; see `lossbook --help`"),
+        [ours, ..] => {
+            return format!(
+                "it is called `{ours}` here, which this version does not have; see `lossbook --help`"
+            );
+        }
     }
     match hints::nearest(word, known) {
         Some(near) => format!("did you mean `lossbook {near}`?"),

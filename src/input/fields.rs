@@ -22,7 +22,11 @@ impl<'n, 't> Fields<'n, 't> {
                 Some(Fields { entries, taken: vec![false; entries.len()], trail })
             }
             Node::Map(_) | Node::Null => {
-                notes.value_error(trail, node, Blame::new("is empty; a mapping is expected", format!("write {like}")));
+                notes.value_error(
+                    trail,
+                    node,
+                    Blame::new("is empty; a mapping is expected", format!("write {like}")),
+                );
                 None
             }
             other => {

@@ -134,7 +134,9 @@ impl PartKind {
             PartKind::Diode => library.diodes.get(name).map(|found| wrap(found, AnySheet::Diode)),
             PartKind::Inductor => library.inductors.get(name).map(|found| wrap(found, AnySheet::Inductor)),
             PartKind::Capacitor => library.capacitors.get(name).map(|found| wrap(found, AnySheet::Capacitor)),
-            PartKind::Controller => library.controllers.get(name).map(|found| wrap(found, AnySheet::Controller)),
+            PartKind::Controller => {
+                library.controllers.get(name).map(|found| wrap(found, AnySheet::Controller))
+            }
             PartKind::LinearRegulator => {
                 library.linear_regulators.get(name).map(|found| wrap(found, AnySheet::LinearRegulator))
             }

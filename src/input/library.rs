@@ -10,7 +10,7 @@ use super::notes::{Blame, MOST, Notes};
 use super::part_file::{self, Attention, PartFile, ReadPart};
 use super::path::Trail;
 use super::place::{Source, resolve};
-use super::{ outline, parallel};
+use super::{outline, parallel};
 use crate::budget::{InputFile, Library};
 use crate::files;
 
@@ -92,8 +92,12 @@ fn list(paths: &[PathBuf], faults: &mut Vec<InputError>) -> Vec<PathBuf> {
 
 /// The same name in two files, with both places; the files are read once more for them.
 fn doubled_part(kind: PartKind, name: &str, first: &Path, second: &Path) -> Option<InputError> {
-    let reason = format!("a second {} of this name", kind.words().split_once(' ').map_or("part", |words| words.1));
-    let hint = format!("rename one of them, or take it out ({} has it too)", printable(&first.display().to_string()));
+    let reason =
+        format!("a second {} of this name", kind.words().split_once(' ').map_or("part", |words| words.1));
+    let hint = format!(
+        "rename one of them, or take it out ({} has it too)",
+        printable(&first.display().to_string())
+    );
     let mut error = locate(second, kind, name, Blame::new(reason, hint))?;
     if let Some(other) = locate(first, kind, name, Blame::new("", "")) {
         error.other = Some(Box::new(OtherPlace {

@@ -70,7 +70,9 @@ mod tests {
         match load_library(&[root]) {
             Ok((library, warnings, inputs)) => {
                 println!("{} {} {}", library.mosfets.len(), inputs.len(), warnings.len());
-                for warning in warnings { println!("{warning}"); }
+                for warning in warnings {
+                    println!("{warning}");
+                }
             }
             Err(errors) => panic!("{errors}"),
         }
@@ -82,7 +84,13 @@ mod tests {
         for path in crate::files::list_yaml(&root).expect("examples") {
             match load_budget(&path) {
                 Ok((budget, warnings)) => {
-                    println!("{} {} {} {:?}", budget.name, budget.grid.len(), warnings.len(), budget.headline);
+                    println!(
+                        "{} {} {} {:?}",
+                        budget.name,
+                        budget.grid.len(),
+                        warnings.len(),
+                        budget.headline
+                    );
                 }
                 Err(errors) => panic!("{errors}"),
             }

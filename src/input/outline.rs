@@ -219,7 +219,10 @@ impl<'t> Guard<'t> {
     fn doubled(&mut self, key: &str, first: Spot, second: Spot) {
         let mut fault = self.located(
             second,
-            Blame::new(format!("the key `{}` stands here a second time", printable(key)), "keep one of the two"),
+            Blame::new(
+                format!("the key `{}` stands here a second time", printable(key)),
+                "keep one of the two",
+            ),
         );
         fault.other = Some(Box::new(OtherPlace {
             label: "given here first".into(),
@@ -232,7 +235,11 @@ impl<'t> Guard<'t> {
     }
 
     fn reference(&mut self, spot: Spot) {
-        self.fault(spot, "anchors and aliases (`&`, `*`) are not read", "write the value out, or put it in quotes");
+        self.fault(
+            spot,
+            "anchors and aliases (`&`, `*`) are not read",
+            "write the value out, or put it in quotes",
+        );
     }
 
     fn tag(&mut self, spot: Spot) {
@@ -337,9 +344,7 @@ mod tests {
     fn faults(text: &str) -> Vec<String> {
         match guard(Path::new("x"), text) {
             Ok(_) => Vec::new(),
-            Err(faults) => {
-                faults.iter().map(|f| format!("{}:{} {}", f.line, f.column, f.reason)).collect()
-            }
+            Err(faults) => faults.iter().map(|f| format!("{}:{} {}", f.line, f.column, f.reason)).collect(),
         }
     }
 

@@ -209,9 +209,8 @@ impl Finder<'_> {
                 (Some(Step::Item(frame.next - 1)), here, frame.active.clone())
             }
         };
-        let on_path = |index: &usize| {
-            step.is_none() || self.notes[*index].path.0.get(depth - 1) == step.as_ref()
-        };
+        let on_path =
+            |index: &usize| step.is_none() || self.notes[*index].path.0.get(depth - 1) == step.as_ref();
         let active: Vec<usize> = candidates.into_iter().filter(on_path).collect();
         for index in &active {
             if step.is_some() || self.above == 0 {
