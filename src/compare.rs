@@ -1,7 +1,11 @@
 //! Compare: the stages of a budget side by side, where one overtakes another, and which one to take.
 
+use std::cell::OnceCell;
+use std::io::{self, Write};
+
 use serde::ser::{Serialize, SerializeMap, Serializer};
 
+use crate::answer::Answer;
 use crate::budget::Budget;
 use crate::candidate::Candidate;
 use crate::crossover::{self, Crossover};
@@ -12,6 +16,63 @@ use crate::model::Solved;
 use crate::record::Record;
 use crate::requirements::{self, Judgement};
 use crate::sweep::{self, Watch};
+
+/// What is asked.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct Request {
+    /// The stage whose requirements decide the exit code; any stage when absent.
+    pub stage: Option<String>,
+}
+
+/// Compares the stages of a budget.
+pub fn answer<'a>(budget: &'a Budget, request: &'a Request, watch: &'a Watch) -> impl Answer + 'a {
+    Question { budget, request, watch, met: OnceCell::new() }
+}
+
+struct Question<'a> {
+    budget: &'a Budget,
+    request: &'a Request,
+    watch: &'a Watch,
+    met: OnceCell<bool>,
+}
+
+impl Question<'_> {
+    /// Compares, remembers whether the requirements are met, and hands the comparison on.
+    fn with<T>(&self, render: impl FnOnce(&Comparison<'_>) -> T) -> T {
+        let candidates = Candidate::all(self.budget);
+        let comparison = Comparison::of(self.budget, &candidates, self.watch);
+        let named = self.request.stage.as_ref();
+        let stage = named.and_then(|name| candidates.iter().position(|candidate| candidate.name() == name));
+        self.met.get_or_init(|| comparison.requirements_met(stage));
+        render(&comparison)
+    }
+}
+
+impl Answer for Question<'_> {
+    fn document(&self) -> crate::report::Document {
+        self.with(crate::report::comparison::document)
+    }
+
+    fn json(&self, out: &mut dyn Write) -> io::Result<()> {
+        self.with(|comparison| serde_json::to_writer_pretty(&mut *out, comparison))?;
+        writeln!(out)
+    }
+
+    fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
+        self.with(|comparison| {
+            let sheet = crate::columns::Columns::of(comparison.candidates);
+            let mut bytes = sheet.header();
+            for record in &comparison.headline {
+                sheet.row(record, &mut bytes);
+            }
+            out.write_all(&bytes)
+        })
+    }
+
+    fn met(&self) -> bool {
+        *self.met.get_or_init(|| self.with(|comparison| comparison.requirements_met(None)))
+    }
+}
 
 /// The relative width of the model's account of overlap and output charge: against a transient solution of the switching
 /// cell it reads 0.87 to 1.17 times the truth (E17).

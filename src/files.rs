@@ -8,6 +8,9 @@ use std::path::{Path, PathBuf};
 use sha2::{Digest, Sha256};
 use thiserror::Error;
 
+mod draft;
+pub use draft::Draft;
+
 /// Largest file that is read, in bytes.
 pub const SIZE_CAP: u64 = 64 * 1024 * 1024;
 
@@ -190,51 +193,20 @@ pub fn join(base: &Path, relative: &Path) -> PathBuf {
     if same { tidy } else { joined }
 }
 
-/// Writes a file whole or not at all: into a temporary file beside it, to disk, then under its name.
-///
-/// A device or a pipe, which cannot be replaced, is written directly.
+/// Removes a file if it is there.
+pub fn remove(path: &Path) {
+    // nothing can be done, and nothing is lost, when it has gone already
+    let _ = fs::remove_file(path);
+}
+
+/// Writes a file whole or not at all: see [`Draft`].
 ///
 /// # Errors
 /// When the folder does not exist or cannot be written, or the disk is full; the old file is then untouched.
 pub fn write_whole(path: &Path, bytes: &[u8]) -> Result<(), FileFault> {
-    // behind a link it is the link's goal that is replaced
-    let goal = fs::canonicalize(path).unwrap_or_else(|_| path.to_path_buf());
-    match fs::metadata(&goal) {
-        Ok(about) if about.is_dir() => return Err(FileFault::IsFolder),
-        Ok(about) if !about.is_file() => {
-            let mut device = fs::OpenOptions::new().write(true).open(&goal)?;
-            device.write_all(bytes)?;
-            return Ok(device.flush()?);
-        }
-        _ => {}
-    }
-    let folder = match goal.parent() {
-        Some(parent) if !parent.as_os_str().is_empty() => parent,
-        _ => Path::new("."),
-    };
-    let mut beside = temporary_in(folder)?;
-    beside.write_all(bytes)?;
-    if let Ok(old) = fs::metadata(&goal) {
-        beside.as_file().set_permissions(old.permissions())?;
-    }
-    beside.as_file().sync_all()?;
-    beside.persist(&goal).map_err(|error| error.error)?;
-    #[cfg(unix)]
-    File::open(folder)?.sync_all()?;
-    Ok(())
-}
-
-/// A temporary file that, once kept, has the rights of any new file.
-fn temporary_in(folder: &Path) -> io::Result<tempfile::NamedTempFile> {
-    let mut builder = tempfile::Builder::new();
-    #[cfg(unix)]
-    {
-        use std::os::unix::fs::PermissionsExt;
-        builder.permissions(fs::Permissions::from_mode(0o666));
-        return builder.prefix(".lossbook-").tempfile_in(folder);
-    }
-    #[cfg(not(unix))]
-    builder.prefix(".lossbook-").tempfile_in(folder)
+    let mut draft = Draft::begin(path)?;
+    draft.write_all(bytes)?;
+    draft.finish()
 }
 
 #[cfg(test)]

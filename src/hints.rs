@@ -13,9 +13,13 @@ pub enum Vocabulary {
     Slot,
     /// Values of `rectifier:`, the kind of a stage.
     Rectifier,
+    /// Options of the command line, with their value where it goes with them.
+    Option,
+    /// Values of options.
+    Value,
 }
 
-use Vocabulary::{Axis, Mechanism, Rectifier, Slot, Verb};
+use Vocabulary::{Axis, Mechanism, Option as Switch, Rectifier, Slot, Value, Verb};
 
 /// Word, what it was meant to name, and our words for it.
 const OTHER_WORDS: &[(&str, Vocabulary, &[&str])] = &[
@@ -87,6 +91,40 @@ const OTHER_WORDS: &[(&str, Vocabulary, &[&str])] = &[
     ("nonsynchronous", Rectifier, &["diode"]),
     ("asynchronous", Rectifier, &["diode"]),
     ("ldo", Rectifier, &["linear"]),
+    ("json", Switch, &["format json"]),
+    ("csv", Switch, &["format csv"]),
+    ("markdown", Switch, &["format markdown"]),
+    ("md", Switch, &["format markdown"]),
+    ("out", Switch, &["output"]),
+    ("file", Switch, &["output"]),
+    ("all", Switch, &["full"]),
+    ("long", Switch, &["full"]),
+    ("verbose", Switch, &["full"]),
+    ("by", Switch, &["split"]),
+    ("jobs", Switch, &["threads"]),
+    ("slot", Value, &["part"]),
+    ("component", Value, &["part"]),
+    ("parts", Value, &["part"]),
+    ("mechanisms", Value, &["mechanism"]),
+    ("cause", Value, &["mechanism"]),
+    ("switching", Value, &["mechanism"]),
+    ("mosfet", Value, &["mosfets"]),
+    ("fets", Value, &["mosfets"]),
+    ("transistors", Value, &["mosfets"]),
+    ("diode", Value, &["diodes"]),
+    ("schottky", Value, &["diodes"]),
+    ("inductor", Value, &["inductors"]),
+    ("chokes", Value, &["inductors"]),
+    ("coils", Value, &["inductors"]),
+    ("capacitor", Value, &["capacitors"]),
+    ("controller", Value, &["controllers"]),
+    ("drivers", Value, &["controllers"]),
+    ("ldo", Value, &["linear_regulators"]),
+    ("ldos", Value, &["linear_regulators"]),
+    ("linear", Value, &["linear_regulators"]),
+    ("regulators", Value, &["linear_regulators"]),
+    ("budgets", Value, &["budget"]),
+    ("rail", Value, &["budget"]),
 ];
 
 /// Our words for a word used elsewhere; empty when none is known. Case, spaces and hyphens do not matter.
@@ -124,7 +162,7 @@ pub fn hint<'a>(
         [one] => Some(format!("it is called `{one}` here")),
         many => {
             let names: Vec<String> = many.iter().map(|name| format!("`{name}`")).collect();
-            Some(format!("it is booked as {} here", names.join(" and ")))
+            Some(format!("it is called {} here", names.join(" and ")))
         }
     }
 }
@@ -141,7 +179,7 @@ mod tests {
         assert_eq!(ours(Axis, "v-in"), ["input_voltage"]);
         assert!(ours(Axis, "table").is_empty());
         let switching = hint(Mechanism, "switching", ["overlap"]);
-        assert_eq!(switching.as_deref(), Some("it is booked as `overlap` and `output_charge` here"));
+        assert_eq!(switching.as_deref(), Some("it is called `overlap` and `output_charge` here"));
     }
 
     #[test]
@@ -160,7 +198,7 @@ mod tests {
                     Mechanism => ledger::Mechanism::from_name(name).is_some(),
                     Slot => ledger::Slot::from_name(name).is_some(),
                     Rectifier => ["synchronous", "diode", "linear"].contains(name),
-                    Verb => true, // the command line has its own test
+                    Verb | Switch | Value => true, // words of the command line, which has its own tests
                 };
                 assert!(known, "{word} -> {name}");
             }

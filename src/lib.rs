@@ -1,7 +1,10 @@
 //! lossbook books every watt lost in a step-down rail to one part and one mechanism.
 
+pub mod answer;
+pub mod average;
 pub mod budget;
 pub mod candidate;
+pub mod columns;
 pub mod compare;
 pub mod crossover;
 pub mod edges;
@@ -29,6 +32,7 @@ pub mod requirements;
 pub mod sheet;
 pub mod stage;
 pub mod sweep;
+pub mod tabulate;
 pub mod units;
 pub mod values;
 pub mod waveform;

@@ -84,7 +84,13 @@ mod tests {
         for path in crate::files::list_yaml(&root).expect("examples") {
             match load_budget(&path) {
                 Ok((budget, warnings)) => {
-                    println!("{} {} {} {:?}", budget.name, budget.grid.len(), warnings.len(), budget.headline);
+                    println!(
+                        "{} {} {} {:?}",
+                        budget.name,
+                        budget.grid.len(),
+                        warnings.len(),
+                        budget.headline
+                    );
                 }
                 Err(errors) => panic!("{errors}"),
             }

@@ -5,7 +5,7 @@ use crate::ledger::ALL_SLOTS;
 use crate::report::{Cell, Column, Table, caption, words};
 
 /// One column a stage: output power, loss by slot, and their sum, the input power.
-pub fn table(comparison: &Comparison<'_>) -> Table {
+pub(super) fn table(comparison: &Comparison<'_>) -> Table {
     let mut columns = vec![Column::text("booked to")];
     columns.extend(comparison.candidates.iter().map(|candidate| Column::quantity(candidate.name())));
     let at = words::point(&comparison.budget.headline);

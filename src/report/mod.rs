@@ -26,6 +26,7 @@ mod layout;
 pub mod needs;
 pub mod number;
 mod table;
+pub mod tables;
 pub mod verdict;
 pub mod words;
 
