@@ -1,6 +1,6 @@
 //! Heat (E50, E51): loss and temperature settle together.
 
-use crate::fitted::{HIGH, INDUCTOR, NODES, Nodes, RECTIFIER, Rectifier, SCHOTTKY, slot_of};
+use crate::fitted::{CONTROLLER, HIGH, INDUCTOR, NODES, Nodes, RECTIFIER, Rectifier, SCHOTTKY, slot_of};
 use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
@@ -8,6 +8,7 @@ use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledg
 use crate::near::Memory;
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::linear_regulator::LinearRegulator;
+use crate::waveform::Waveform;
 
 /// Largest movement of any temperature at which the loop ends, K.
 pub const SETTLED: f64 = 1e-6;
@@ -24,21 +25,22 @@ const SUSPECT: f64 = 0.4;
 ///
 /// Newton steps with estimated slopes, then secants; when that does not settle, or ends where the thermal loop gain is
 /// suspicious, plain passes from ambient upwards decide.
-#[inline]
+#[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut search = Search::from_ambient(prepared.point.ambient);
     let mut near = Memory::default();
     for _ in 0..QUICK_PASSES {
-        let heated = prepared.heated(&search.t, &mut near)?;
+        let waveform = prepared.waveform(&search.t, &mut near)?;
+        let heated = prepared.heated(waveform, &search.t, &mut near);
         let image = image(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
             }
-            prepared.check_times(&heated.waveform)?;
+            prepared.check_times(&waveform)?;
             return Ok(solved(prepared, &search.t, &heated));
         }
-        if search.is_fresh() {
+        if search.is_fresh {
             search.slopes = estimated_slopes(prepared, &heated, &search.t);
         }
         if !search.step(&image) {
@@ -51,63 +53,67 @@ pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
 /// State of the quick search for the settled temperatures.
 struct Search {
     t: Nodes,
-    /// Temperatures and image of the pass before.
-    before: Option<(Nodes, Nodes)>,
     /// d(image)/dT of each node along the last step.
     slopes: Nodes,
+    /// Temperatures of the pass before.
+    t_before: Nodes,
+    /// Image of the pass before.
+    image_before: Nodes,
+    /// True until the first step.
+    is_fresh: bool,
 }
 
 impl Search {
-    #[inline]
+    #[inline(always)]
     fn from_ambient(ambient: f64) -> Self {
-        Search { t: [ambient; NODES], before: None, slopes: [0.0; NODES] }
+        let (t, none) = ([ambient; NODES], [0.0; NODES]);
+        Search { t, slopes: none, t_before: t, image_before: t, is_fresh: true }
     }
 
-    #[inline]
-    fn is_fresh(&self) -> bool {
-        self.before.is_none()
-    }
-
-    #[inline]
+    #[inline(always)]
     fn is_settled(&self, image: &Nodes) -> bool {
-        self.t.iter().zip(image).all(|(t, image)| (image - t).abs() <= SETTLED)
+        let movements = self.t.iter().zip(image).map(|(t, image)| (image - t).abs());
+        // a movement that is no number does not count as settled
+        movements.fold(true, |settled, movement| settled & (movement <= SETTLED))
     }
 
     /// True when the slopes leave no doubt that the loop gain is below 1.
-    #[inline]
+    #[inline(always)]
     fn is_trusted(&self) -> bool {
         self.slopes.iter().map(|slope| slope.abs()).sum::<f64>() < SUSPECT
     }
 
     /// Moves every node to where its line meets; false when the search should give up.
-    #[inline]
+    #[inline(always)]
     fn step(&mut self, image: &Nodes) -> bool {
-        if let Some((t_before, image_before)) = &self.before {
-            for node in 0..NODES {
-                let step = self.t[node] - t_before[node];
-                if step.abs() > 1e-3 * SETTLED {
-                    self.slopes[node] = (image[node] - image_before[node]) / step;
-                }
-            }
-        }
-        self.before = Some((self.t, *image));
         let mut sound = true;
-        for ((t, image), slope) in self.t.iter_mut().zip(image).zip(&self.slopes) {
-            *t += (image - *t) / (1.0 - slope);
-            sound &= slope.abs() < STEEP && *t < HOTTEST;
+        for node in 0..NODES {
+            let (t, image) = (self.t[node], image[node]);
+            let step = t - self.t_before[node];
+            if step.abs() > 1e-3 * SETTLED {
+                self.slopes[node] = (image - self.image_before[node]) / step;
+            }
+            let slope = self.slopes[node];
+            self.t_before[node] = t;
+            self.image_before[node] = image;
+            self.t[node] = t + (image - t) / (1.0 - slope);
+            sound &= (slope.abs() < STEEP) & (self.t[node] < HOTTEST);
         }
+        self.is_fresh = false;
         sound
     }
 }
 
 /// The ledger at temperatures that are given, not settled: "what if everything stayed at 25 °C".
+#[inline(never)]
 pub fn at_temperatures(prepared: &Prepared<'_>, temperatures: &Nodes) -> Result<Solved, Infeasible> {
-    let heated = prepared.heated(temperatures, &mut Memory::default())?;
-    prepared.check_times(&heated.waveform)?;
-    Ok(solved(prepared, temperatures, &heated))
+    let mut near = Memory::default();
+    let waveform = prepared.waveform(temperatures, &mut near)?;
+    prepared.check_times(&waveform)?;
+    Ok(solved(prepared, temperatures, &prepared.heated(waveform, temperatures, &mut near)))
 }
 
-#[inline]
+#[inline(always)]
 fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: &Heated) -> Solved {
     let waveform = heated.waveform;
     let unheated = prepared.unheated(&waveform);
@@ -120,18 +126,11 @@ fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: &Heated) -> Sol
     }
 }
 
+#[inline(always)]
 fn by_slot(prepared: &Prepared<'_>, temperatures: &Nodes) -> Temperatures {
     let mut slots = [None; SLOTS];
-    let synchronous = prepared.stage.is_synchronous();
-    let has_schottky = matches!(&prepared.stage.rectifier, Rectifier::Synchronous { schottky: Some(_), .. });
-    for (node, temperature) in temperatures.iter().enumerate() {
-        let slot = slot_of(node, synchronous);
-        let exists = match slot {
-            Slot::ParallelSchottky => has_schottky,
-            Slot::Controller => prepared.stage.heat.to_ambient[node].is_some(),
-            _ => true,
-        };
-        if exists {
+    for (slot, temperature) in prepared.stage.heat.slots.iter().zip(temperatures) {
+        if let Some(slot) = slot {
             slots[slot.index()] = Some(*temperature);
         }
     }
@@ -146,30 +145,35 @@ pub fn nodes_of(prepared: &Prepared<'_>, solved: &Solved) -> Nodes {
 }
 
 /// T_a + R_th P/n + sum of K P of other slots, for every node (E50).
-#[inline]
+#[inline(always)]
 fn image(prepared: &Prepared<'_>, heated: &Heated) -> Nodes {
     let heat = &prepared.stage.heat;
     let watts = heated.node_watts();
     let mut image = [prepared.point.ambient; NODES];
     for node in 0..NODES {
-        if let Some(r_th) = heat.to_ambient[node] {
-            image[node] += r_th * watts[node];
-        }
+        image[node] += heat.resistance[node] * watts[node];
     }
     if !heat.coupling.is_empty() {
-        let synchronous = prepared.stage.is_synchronous();
-        for (node, heating, k) in &heat.coupling {
-            let source = (0..NODES).find(|node| slot_of(*node, synchronous) == *heating);
-            image[*node] +=
-                k * source.map_or_else(|| unheated_watts(prepared, heated, *heating), |n| watts[n]);
-        }
+        return coupled(prepared, heated.waveform, watts, image);
+    }
+    image
+}
+
+/// The image with K P of the other slots.
+#[inline(never)]
+fn coupled(prepared: &Prepared<'_>, waveform: Waveform, watts: Nodes, mut image: Nodes) -> Nodes {
+    let heat = &prepared.stage.heat;
+    for (node, heating, k) in &heat.coupling {
+        let source = heat.slots.iter().position(|slot| *slot == Some(*heating));
+        image[*node] +=
+            k * source.map_or_else(|| unheated_watts(prepared, &waveform, *heating), |source| watts[source]);
     }
     image
 }
 
 /// Watts of a slot that has no temperature of its own but warms others.
-fn unheated_watts(prepared: &Prepared<'_>, heated: &Heated, slot: Slot) -> f64 {
-    let unheated = prepared.unheated(&heated.waveform);
+fn unheated_watts(prepared: &Prepared<'_>, waveform: &Waveform, slot: Slot) -> f64 {
+    let unheated = prepared.unheated(waveform);
     match slot {
         Slot::InputCapacitors => unheated.input_esr.watts,
         Slot::OutputCapacitors => unheated.output_esr.watts,
@@ -178,8 +182,15 @@ fn unheated_watts(prepared: &Prepared<'_>, heated: &Heated, slot: Slot) -> f64 {
     }
 }
 
+/// The image of temperatures, outside the quick search.
+#[inline(never)]
+fn image_at(prepared: &Prepared<'_>, t: &Nodes, near: &mut Memory) -> Result<Nodes, Infeasible> {
+    let waveform = prepared.waveform(t, near)?;
+    Ok(image(prepared, &prepared.heated(waveform, t, near)))
+}
+
 /// Main part of d(image)/dT of each node: conduction grows with the resistance, leakage exponentially.
-#[inline]
+#[inline(always)]
 fn estimated_slopes(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Nodes {
     let stage = prepared.stage;
     let mut slopes: Nodes = [0.0; NODES];
@@ -197,8 +208,7 @@ fn estimated_slopes(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Node
         }
         (HeatedRectifier::Diode { leakage, conduction }, Rectifier::Diode(diode)) => {
             let mean = 0.5 * (heated.waveform.valley + heated.waveform.peak);
-            let drift =
-                diode.forward_voltage(mean, t[RECTIFIER] + 1.0) - diode.forward_voltage(mean, t[RECTIFIER]);
+            let drift = diode.forward_drift(mean);
             let growth = diode.leakage.map_or(0.0, |law| law.per_kelvin);
             slopes[RECTIFIER] =
                 conduction.share * mean * drift + leakage.map_or(0.0, |leakage| leakage.watts) * growth;
@@ -208,7 +218,7 @@ fn estimated_slopes(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Node
     let copper = heated.winding.watts + heated.ac_winding.map_or(0.0, |ac| ac.watts);
     slopes[INDUCTOR] = copper * PER_KELVIN / (1.0 + PER_KELVIN * (t[INDUCTOR] - 20.0));
     for node in 0..NODES {
-        slopes[node] *= stage.heat.to_ambient[node].unwrap_or(0.0);
+        slopes[node] *= stage.heat.resistance[node];
     }
     slopes
 }
@@ -225,8 +235,7 @@ fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut near = Memory::default();
     let mut last_sign = [0.0; NODES];
     for _ in 0..CAREFUL_PASSES {
-        let heated = prepared.heated(&t, &mut near)?;
-        let image = image(prepared, &heated);
+        let image = image_at(prepared, &t, &mut near)?;
         let mut difference = [0.0; NODES];
         for node in 0..NODES {
             difference[node] = image[node] - t[node];
@@ -236,8 +245,7 @@ fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
             if gain >= 1.0 {
                 return Err(unstable(prepared, &t, gain));
             }
-            prepared.check_times(&heated.waveform)?;
-            return Ok(solved(prepared, &t, &heated));
+            return at_temperatures(prepared, &t);
         }
         // a difference that changes sign is a swing: halve the steps
         let swings = (0..NODES).any(|node| difference[node] * last_sign[node] < 0.0);
@@ -269,14 +277,16 @@ const GAIN_STEP: f64 = 1e-3;
 /// Thermal loop gain (E51): spectral radius of d(image)/dT by central differences.
 pub fn loop_gain(prepared: &Prepared<'_>, t: &Nodes) -> Result<f64, Infeasible> {
     let mut jacobian = [[0.0; NODES]; NODES];
+    let mut near = Memory::default();
     for column in 0..NODES {
-        if prepared.stage.heat.to_ambient[column].is_none() {
+        // no loss depends on the temperature of the controller
+        if column == CONTROLLER || prepared.stage.heat.to_ambient[column].is_none() {
             continue;
         }
-        let side = |sign: f64| {
+        let mut side = |sign: f64| {
             let mut moved = *t;
             moved[column] += sign * GAIN_STEP;
-            prepared.heated(&moved, &mut Memory::default()).map(|heated| image(prepared, &heated))
+            image_at(prepared, &moved, &mut near)
         };
         let (above, below) = (side(1.0)?, side(-1.0)?);
         for row in 0..NODES {
