@@ -5,13 +5,17 @@ use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
 use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
+use crate::loss::leakage::Leakage;
 use crate::near::Memory;
 use crate::parts::copper::PER_KELVIN;
+use crate::parts::diode::Diode;
 use crate::parts::linear_regulator::LinearRegulator;
 use crate::waveform::Waveform;
 
 /// Largest movement of any temperature at which the loop ends, K.
 pub const SETTLED: f64 = 1e-6;
+/// Nodes whose temperatures move losses: the first ones. That of the controller, the last one, follows.
+const MUTUAL: usize = CONTROLLER;
 /// Passes after which the quick search gives way to the careful one.
 const QUICK_PASSES: usize = 12;
 /// Passes after which the careful search gives up.
@@ -23,27 +27,27 @@ const SUSPECT: f64 = 0.4;
 
 /// Temperatures, losses and ledger of a switched stage at a point.
 ///
-/// Newton steps with estimated slopes, then secants; when that does not settle, or ends where the thermal loop gain is
-/// suspicious, plain passes from ambient upwards decide.
+/// Newton steps with estimated slopes; when they do not settle, or end where the thermal loop gain is suspicious, plain
+/// passes from ambient upwards decide.
 #[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut search = Search::from_ambient(prepared.point.ambient);
     let mut near = Memory::default();
     for _ in 0..QUICK_PASSES {
-        let waveform = prepared.waveform(&search.t, &mut near)?;
-        let heated = prepared.heated(waveform, &search.t, &mut near);
+        let hot = prepared.hot(&search.t);
+        let waveform = prepared.waveform(&search.t, &hot)?;
+        let heated = prepared.heated(waveform, &search.t, &hot, &mut near);
         let image = image(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
             }
             prepared.check_times(&waveform)?;
+            search.t[CONTROLLER] = image[CONTROLLER];
             return Ok(solved(prepared, &search.t, &heated));
         }
-        if search.is_fresh {
-            search.slopes = estimated_slopes(prepared, &heated, &search.t);
-        }
-        if !search.step(&image) {
+        let growth = Growth::of(prepared, &heated, &search.t);
+        if !search.step(&image, &growth, &prepared.stage.heat.resistance) {
             break;
         }
     }
@@ -51,14 +55,19 @@ pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
 }
 
 /// State of the quick search for the settled temperatures.
+///
+/// The slope of an image has two parts: the node's own loss grows with its own temperature, and the conduction of all
+/// nodes moves the duty and thereby every loss. The first is known; the second is read off the last step.
 struct Search {
     t: Nodes,
-    /// d(image)/dT of each node along the last step.
-    slopes: Nodes,
     /// Temperatures of the pass before.
-    t_before: Nodes,
+    t_before: [f64; MUTUAL],
     /// Image of the pass before.
-    image_before: Nodes,
+    image_before: [f64; MUTUAL],
+    /// d(image)/dT of each node by its own temperature, in the pass before.
+    slopes: [f64; MUTUAL],
+    /// Shift of each image with the growth of all conduction that moves the duty, K/W.
+    common: [f64; MUTUAL],
     /// True until the first step.
     is_fresh: bool,
 }
@@ -66,15 +75,21 @@ struct Search {
 impl Search {
     #[inline(always)]
     fn from_ambient(ambient: f64) -> Self {
-        let (t, none) = ([ambient; NODES], [0.0; NODES]);
-        Search { t, slopes: none, t_before: t, image_before: t, is_fresh: true }
+        let none = [0.0; MUTUAL];
+        Search {
+            t: [ambient; NODES],
+            t_before: none,
+            image_before: none,
+            slopes: none,
+            common: none,
+            is_fresh: true,
+        }
     }
 
     #[inline(always)]
     fn is_settled(&self, image: &Nodes) -> bool {
-        let movements = self.t.iter().zip(image).map(|(t, image)| (image - t).abs());
         // a movement that is no number does not count as settled
-        movements.fold(true, |settled, movement| settled & (movement <= SETTLED))
+        (0..MUTUAL).fold(true, |settled, node| settled & ((image[node] - self.t[node]).abs() <= SETTLED))
     }
 
     /// True when the slopes leave no doubt that the loop gain is below 1.
@@ -83,34 +98,114 @@ impl Search {
         self.slopes.iter().map(|slope| slope.abs()).sum::<f64>() < SUSPECT
     }
 
-    /// Moves every node to where its line meets; false when the search should give up.
+    /// Moves every node to where the images meet the temperatures; false when the search should give up.
     #[inline(always)]
-    fn step(&mut self, image: &Nodes) -> bool {
-        let mut sound = true;
-        for node in 0..NODES {
-            let (t, image) = (self.t[node], image[node]);
-            let step = t - self.t_before[node];
-            if step.abs() > 1e-3 * SETTLED {
-                self.slopes[node] = (image - self.image_before[node]) / step;
-            }
-            let slope = self.slopes[node];
-            self.t_before[node] = t;
-            self.image_before[node] = image;
-            self.t[node] = t + (image - t) / (1.0 - slope);
-            sound &= (slope.abs() < STEEP) & (self.t[node] < HOTTEST);
+    fn step(&mut self, image: &Nodes, growth: &Growth, resistance: &Nodes) -> bool {
+        let mut slopes = [0.0; MUTUAL];
+        for node in 0..MUTUAL {
+            slopes[node] = resistance[node] * (growth.conduction[node] + growth.leakage[node]);
         }
-        self.is_fresh = false;
+        if !self.is_fresh {
+            self.read_common(image, growth, &slopes);
+        }
+        // (1 - slope) d - common Σ growth d = image - t for the movements d of all nodes, the sum over what moves the duty
+        let (mut own, mut free, mut feedback) = ([0.0; MUTUAL], 0.0, 0.0);
+        for node in 0..MUTUAL {
+            own[node] = 1.0 / (1.0 - slopes[node]);
+            free += growth.duty[node] * own[node] * (image[node] - self.t[node]);
+            feedback += growth.duty[node] * own[node] * self.common[node];
+        }
+        let shift = free / (1.0 - feedback);
+        let mut sound = feedback.abs() < STEEP;
+        self.t_before.copy_from_slice(&self.t[..MUTUAL]);
+        for node in 0..MUTUAL {
+            self.t[node] += own[node] * (image[node] - self.t[node] + self.common[node] * shift);
+            sound &= (slopes[node].abs() < STEEP) & (self.t[node] < HOTTEST);
+        }
+        self.image_before.copy_from_slice(&image[..MUTUAL]);
+        (self.slopes, self.is_fresh) = (slopes, false);
         sound
+    }
+
+    /// What the slopes leave unexplained of the last step goes to the growth of all conduction.
+    #[inline(always)]
+    fn read_common(&mut self, image: &Nodes, growth: &Growth, slopes: &[f64; MUTUAL]) {
+        let (mut left, mut shift, mut size) = ([0.0; MUTUAL], 0.0, 0.0);
+        for node in 0..MUTUAL {
+            let moved = self.t[node] - self.t_before[node];
+            let own = 0.5 * (slopes[node] + self.slopes[node]) * moved;
+            left[node] = image[node] - self.image_before[node] - own;
+            shift += growth.duty[node] * moved;
+            size += growth.duty[node].abs() * moved.abs();
+        }
+        // parts that grow and parts that shrink may cancel: then the duty has hardly moved
+        if shift.abs() > 0.1 * size {
+            let per_shift = 1.0 / shift;
+            self.common = left.map(|left| left * per_shift);
+        }
+    }
+}
+
+/// Growth of the loss of each node with its own temperature, W/K.
+struct Growth {
+    /// Resistances and forward voltages.
+    conduction: [f64; MUTUAL],
+    /// That part of them that moves the duty.
+    duty: [f64; MUTUAL],
+    /// Leakage grows exponentially.
+    leakage: [f64; MUTUAL],
+}
+
+impl Growth {
+    /// Main parts of dP/dT at temperatures.
+    #[inline(always)]
+    fn of(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Self {
+        let stage = prepared.stage;
+        let (mut conduction, mut leakage) = ([0.0; MUTUAL], [0.0; MUTUAL]);
+        let of_channel = |watts: f64, exponent: f64, t_j: f64| watts * exponent / (t_j + 273.15);
+        let of_leakage = |leakage: &Option<Leakage>, diode: &Diode| match (leakage, &diode.leakage) {
+            (Some(leakage), Some(law)) => leakage.watts * law.per_kelvin,
+            _ => 0.0,
+        };
+        conduction[HIGH] =
+            of_channel(heated.high_conduction.watts, stage.high_side.hot_exponent, t[HIGH]);
+        match (&heated.rectifier, &stage.rectifier) {
+            (
+                HeatedRectifier::Synchronous { conduction: channel, schottky: leaking, .. },
+                Rectifier::Synchronous { low_side, schottky },
+            ) => {
+                conduction[RECTIFIER] = of_channel(channel.watts, low_side.hot_exponent, t[RECTIFIER]);
+                if let (Some(leaking), Some(diode)) = (leaking, schottky) {
+                    leakage[SCHOTTKY] = of_leakage(leaking, diode);
+                }
+            }
+            (HeatedRectifier::Diode { conduction: forward, leakage: leaking }, Rectifier::Diode(diode)) => {
+                let mean = 0.5 * (heated.waveform.valley + heated.waveform.peak);
+                conduction[RECTIFIER] = forward.share * mean * diode.forward_drift(mean);
+                leakage[RECTIFIER] = of_leakage(leaking, diode);
+            }
+            _ => {}
+        }
+        let copper = heated.winding.watts + heated.ac_winding.map_or(0.0, |ac| ac.watts);
+        conduction[INDUCTOR] = copper * PER_KELVIN / (1.0 + PER_KELVIN * (t[INDUCTOR] - 20.0));
+        // in discontinuous mode the pulses know no resistance
+        let duty = match heated.rectifier {
+            _ if heated.waveform.is_continuous() => conduction,
+            HeatedRectifier::Diode { .. } => [0.0, conduction[RECTIFIER], 0.0, 0.0],
+            HeatedRectifier::Synchronous { .. } => [0.0; MUTUAL],
+        };
+        Growth { conduction, duty, leakage }
     }
 }
 
 /// The ledger at temperatures that are given, not settled: "what if everything stayed at 25 °C".
 #[inline(never)]
 pub fn at_temperatures(prepared: &Prepared<'_>, temperatures: &Nodes) -> Result<Solved, Infeasible> {
-    let mut near = Memory::default();
-    let waveform = prepared.waveform(temperatures, &mut near)?;
+    let hot = prepared.hot(temperatures);
+    let waveform = prepared.waveform(temperatures, &hot)?;
     prepared.check_times(&waveform)?;
-    Ok(solved(prepared, temperatures, &prepared.heated(waveform, temperatures, &mut near)))
+    let heated = prepared.heated(waveform, temperatures, &hot, &mut Memory::default());
+    Ok(solved(prepared, temperatures, &heated))
 }
 
 #[inline(always)]
@@ -185,42 +280,9 @@ fn unheated_watts(prepared: &Prepared<'_>, waveform: &Waveform, slot: Slot) -> f
 /// The image of temperatures, outside the quick search.
 #[inline(never)]
 fn image_at(prepared: &Prepared<'_>, t: &Nodes, near: &mut Memory) -> Result<Nodes, Infeasible> {
-    let waveform = prepared.waveform(t, near)?;
-    Ok(image(prepared, &prepared.heated(waveform, t, near)))
-}
-
-/// Main part of d(image)/dT of each node: conduction grows with the resistance, leakage exponentially.
-#[inline(always)]
-fn estimated_slopes(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Nodes {
-    let stage = prepared.stage;
-    let mut slopes: Nodes = [0.0; NODES];
-    let relative = |exponent: f64, t_j: f64| exponent / (t_j + 273.15);
-    slopes[HIGH] = heated.high_conduction.watts * relative(stage.high_side.hot_exponent, t[HIGH]);
-    match (&heated.rectifier, &stage.rectifier) {
-        (
-            HeatedRectifier::Synchronous { conduction, schottky, .. },
-            Rectifier::Synchronous { low_side, schottky: diode },
-        ) => {
-            slopes[RECTIFIER] = conduction.watts * relative(low_side.hot_exponent, t[RECTIFIER]);
-            if let (Some(Some(leakage)), Some(diode)) = (schottky, diode) {
-                slopes[SCHOTTKY] = leakage.watts * diode.leakage.map_or(0.0, |law| law.per_kelvin);
-            }
-        }
-        (HeatedRectifier::Diode { leakage, conduction }, Rectifier::Diode(diode)) => {
-            let mean = 0.5 * (heated.waveform.valley + heated.waveform.peak);
-            let drift = diode.forward_drift(mean);
-            let growth = diode.leakage.map_or(0.0, |law| law.per_kelvin);
-            slopes[RECTIFIER] =
-                conduction.share * mean * drift + leakage.map_or(0.0, |leakage| leakage.watts) * growth;
-        }
-        _ => {}
-    }
-    let copper = heated.winding.watts + heated.ac_winding.map_or(0.0, |ac| ac.watts);
-    slopes[INDUCTOR] = copper * PER_KELVIN / (1.0 + PER_KELVIN * (t[INDUCTOR] - 20.0));
-    for node in 0..NODES {
-        slopes[node] *= stage.heat.resistance[node];
-    }
-    slopes
+    let hot = prepared.hot(t);
+    let waveform = prepared.waveform(t, &hot)?;
+    Ok(image(prepared, &prepared.heated(waveform, t, &hot, near)))
 }
 
 fn largest(values: &Nodes) -> f64 {

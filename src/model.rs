@@ -73,6 +73,15 @@ pub struct Prepared<'a> {
     pub ac_excess: Option<f64>,
 }
 
+/// Resistances at their temperatures over those at 25 °C.
+#[derive(Clone, Copy, Debug)]
+#[allow(missing_docs)] // named as the parts
+pub struct HotRatios {
+    pub high_side: f64,
+    pub low_side: f64,
+    pub winding: f64,
+}
+
 /// Contributions that heat a part, with their terms. A mechanism that the stage does not have is `None`.
 #[derive(Clone, Copy, Debug)]
 #[allow(missing_docs)] // named as the accounts of the ledger
@@ -181,13 +190,31 @@ impl<'a> Prepared<'a> {
 
     /// The path of the inductor current at temperatures.
     #[inline(always)]
-    pub fn current_path(&self, t: &Nodes, near: &mut Memory) -> CurrentPath {
+    pub fn current_path(&self, t: &Nodes) -> CurrentPath {
+        self.path(t, &self.hot(t))
+    }
+
+    /// How much the resistances have grown at temperatures.
+    #[inline(always)]
+    pub fn hot(&self, t: &Nodes) -> HotRatios {
+        HotRatios {
+            high_side: self.stage.high_side.hot_ratio(t[HIGH]),
+            low_side: match &self.stage.rectifier {
+                Rectifier::Synchronous { low_side, .. } => low_side.hot_ratio(t[RECTIFIER]),
+                Rectifier::Diode(_) => 1.0,
+            },
+            winding: self.stage.inductor.hot_ratio(t[INDUCTOR]),
+        }
+    }
+
+    #[inline(always)]
+    fn path(&self, t: &Nodes, hot: &HotRatios) -> CurrentPath {
         let (stage, point) = (self.stage, &self.point);
         let board = &stage.board;
         let r_path = board.low_side_path * self.board_ratio;
         let off = match &stage.rectifier {
-            Rectifier::Synchronous { low_side, .. } => OffPath::Synchronous {
-                r_channel: self.drive.r_low * low_side.hot_ratio(t[RECTIFIER], &mut near.low_ratio),
+            Rectifier::Synchronous { .. } => OffPath::Synchronous {
+                r_channel: self.drive.r_low * hot.low_side,
                 r_path,
                 v_dead: self.dead_time_drop(point.load, t),
                 dead_share: (stage.controller.t_1 + stage.controller.t_2) * point.switching_frequency,
@@ -203,9 +230,8 @@ impl<'a> Prepared<'a> {
             frequency: point.switching_frequency,
             inductance: self.inductance,
             ripple_per_volt: self.ripple_per_volt,
-            r_high: self.drive.r_high * stage.high_side.hot_ratio(t[HIGH], &mut near.high_ratio)
-                + board.high_side_path * self.board_ratio,
-            r_series: stage.inductor.dcr * stage.inductor.hot_ratio(t[INDUCTOR])
+            r_high: self.drive.r_high * hot.high_side + board.high_side_path * self.board_ratio,
+            r_series: stage.inductor.dcr * hot.winding
                 + (board.output_path + board.sense) * self.board_ratio,
             off,
         }
@@ -235,9 +261,8 @@ impl<'a> Prepared<'a> {
 
     /// Currents and duties at temperatures; fails where no waveform or no gate drive exists.
     #[inline(always)]
-    pub fn waveform(&self, t: &Nodes, near: &mut Memory) -> Result<Waveform, Infeasible> {
-        let path = self.current_path(t, near);
-        let Some(waveform) = Waveform::solve(&path, self.light_load_rule()) else {
+    pub fn waveform(&self, t: &Nodes, hot: &HotRatios) -> Result<Waveform, Infeasible> {
+        let Some(waveform) = Waveform::solve(&self.path(t, hot), self.light_load_rule()) else {
             return Err(Infeasible::InputTooLow { v_in: self.point.input_voltage, v_out: self.v_out });
         };
         let overdrive = self.drive.v_high - self.stage.high_side.plateau(waveform.peak);
@@ -249,7 +274,7 @@ impl<'a> Prepared<'a> {
 
     /// What heats the parts at temperatures with the waveform that belongs to them.
     #[inline(always)]
-    pub fn heated(&self, waveform: Waveform, t: &Nodes, near: &mut Memory) -> Heated {
+    pub fn heated(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios, near: &mut Memory) -> Heated {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let (controller, high) = (&stage.controller, &stage.high_side);
         let frequency = waveform.frequency;
@@ -274,7 +299,7 @@ impl<'a> Prepared<'a> {
         );
         let met =
             if v_node > 0.0 { self.node.capacitive_energy(v_in, v_node) } else { self.node_energy };
-        let r_high = self.drive.r_high * high.hot_ratio(t[HIGH], &mut near.high_ratio);
+        let r_high = self.drive.r_high * hot.high_side;
         let high_gate = gate_drive::gate_power(self.drive.q_high, &self.drive.high_gate, frequency);
 
         // rectifier
@@ -284,7 +309,7 @@ impl<'a> Prepared<'a> {
             Rectifier::Diode(diode) => diode.recovery.as_ref(),
         };
         let switched_off = if waveform.is_continuous() { waveform.valley } else { 0.0 };
-        let rectifier = self.heated_rectifier(&waveform, t, near);
+        let rectifier = self.heated_rectifier(&waveform, t, hot, near);
         let low_gate = match &rectifier {
             HeatedRectifier::Synchronous { gate, .. } => *gate,
             HeatedRectifier::Diode { .. } => GatePower::default(),
@@ -292,7 +317,6 @@ impl<'a> Prepared<'a> {
 
         // inductor
         let inductor = &stage.inductor;
-        let copper_ratio = inductor.hot_ratio(t[INDUCTOR]);
         let ringing = if waveform.is_continuous() {
             Ringing::default()
         } else {
@@ -307,10 +331,10 @@ impl<'a> Prepared<'a> {
             recovery: law.map(|law| recovery::recovery(law, v_in, switched_off, frequency)),
             high_gate,
             rectifier,
-            winding: winding::winding(&waveform, inductor.dcr * copper_ratio),
+            winding: winding::winding(&waveform, inductor.dcr * hot.winding),
             ac_winding: self
                 .ac_excess
-                .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * copper_ratio)),
+                .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * hot.winding)),
             core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n, &mut near.core)),
             ringing,
             drive: gate_drive::drive_power(&high_gate, &low_gate, self.v_supply, frequency),
@@ -319,7 +343,13 @@ impl<'a> Prepared<'a> {
     }
 
     #[inline(always)]
-    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes, near: &mut Memory) -> HeatedRectifier {
+    fn heated_rectifier(
+        &self,
+        waveform: &Waveform,
+        t: &Nodes,
+        hot: &HotRatios,
+        near: &mut Memory,
+    ) -> HeatedRectifier {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let controller = &stage.controller;
         match &stage.rectifier {
@@ -330,7 +360,7 @@ impl<'a> Prepared<'a> {
             Rectifier::Synchronous { low_side, schottky } => {
                 let (t_1, t_2, frequency) = (controller.t_1, controller.t_2, waveform.frequency);
                 let ends = DeadTimeEnds::of(waveform, t_1, t_2);
-                let resistance = self.drive.r_low * low_side.hot_ratio(t[RECTIFIER], &mut near.low_ratio);
+                let resistance = self.drive.r_low * hot.low_side;
                 let reverse = (-waveform.valley).max(0.0);
                 let (overlap, high_dead_time) = if reverse > 0.0 {
                     let t_fi = edges::current_fall(

@@ -108,10 +108,6 @@ impl NearExponential {
 /// What one point remembers from pass to pass.
 #[derive(Clone, Copy, Debug, Default)]
 pub struct Memory {
-    /// R(T)/R(25 °C) of the high side.
-    pub high_ratio: NearPower,
-    /// R(T)/R(25 °C) of the low side.
-    pub low_ratio: NearPower,
     /// Logarithm of the current rise.
     pub current_rise: NearLogarithm,
     /// Logarithm of the current fall.

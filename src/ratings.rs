@@ -6,7 +6,6 @@ use crate::fitted::{Kind, Stage};
 use crate::ledger::Slot;
 use crate::loss::esr::{self, End};
 use crate::model::{Prepared, Solved};
-use crate::near::Memory;
 use crate::parts::capacitor::Bank;
 use crate::printable::printable;
 use crate::report::number::quantity;
@@ -218,7 +217,7 @@ fn switched_stage(
     }
     if waveform.mode == Mode::PulseSkipping && prepared.stage.skip_peak > 0.0 {
         let temperatures = crate::heat::nodes_of(prepared, solved);
-        let ripple = Waveform::continuous(&prepared.current_path(&temperatures, &mut Memory::default()))
+        let ripple = Waveform::continuous(&prepared.current_path(&temperatures))
             .map_or(0.0, |w| w.ripple());
         if prepared.stage.skip_peak > ripple {
             let text = format!(

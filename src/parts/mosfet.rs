@@ -1,14 +1,11 @@
 //! MOSFET: the curves of the model, for n devices in parallel.
 
-use crate::near::{NearPower, Power};
 use crate::parts::curve::Curve;
+use crate::parts::hot::{COLD_KELVIN, HotLaw};
 use crate::parts::junction::JunctionCharge;
 use crate::sheet::edge_times::EdgeTimes;
 use crate::sheet::mosfet::{MosfetSheet, Recovery};
 use crate::stage::Placed;
-
-/// 25 °C in K, the reference of on-resistances.
-const COLD_KELVIN: f64 = 298.15;
 
 /// n MOSFETs in parallel with the curves read from their data sheet.
 #[derive(Clone, Debug, PartialEq)]
@@ -21,8 +18,8 @@ pub struct Mosfet {
     pub on_resistance: OnResistance,
     /// Exponent p of R(T) = R_25 (T/298.15 K)^p (E11).
     pub hot_exponent: f64,
-    /// That power.
-    hot: Power,
+    /// The law with this exponent.
+    hot: HotLaw,
     /// Threshold voltage, V.
     pub v_th: f64,
     /// 1/V_th, 1/V.
@@ -68,7 +65,7 @@ impl Mosfet {
             share: 1.0 / n,
             on_resistance: OnResistance::fit(sheet),
             hot_exponent: hot_exponent(sheet),
-            hot: Power::of(hot_exponent(sheet)),
+            hot: HotLaw::of(hot_exponent(sheet)),
             v_th,
             per_threshold: 1.0 / v_th,
             transconductance: n * i_test / (v_pl - v_th),
@@ -88,8 +85,8 @@ impl Mosfet {
 
     /// R(T_j)/R(25 °C) (E11).
     #[inline(always)]
-    pub fn hot_ratio(&self, t_j: f64, near: &mut NearPower) -> f64 {
-        near.at((t_j + 273.15) * (1.0 / COLD_KELVIN), &self.hot)
+    pub fn hot_ratio(&self, t_j: f64) -> f64 {
+        self.hot.at(t_j)
     }
 
     /// Plateau voltage at a drain current of all devices (E13), V.
