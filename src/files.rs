@@ -231,9 +231,7 @@ fn temporary_in(folder: &Path) -> io::Result<tempfile::NamedTempFile> {
     {
         use std::os::unix::fs::PermissionsExt;
         builder.permissions(fs::Permissions::from_mode(0o666));
-        return builder.prefix(".lossbook-").tempfile_in(folder);
     }
-    #[cfg(not(unix))]
     builder.prefix(".lossbook-").tempfile_in(folder)
 }
 

@@ -8,7 +8,7 @@ use super::budget_grid::{self, MOST_POINTS, RatedLoad, value};
 use super::budget_keys as keys;
 use super::error::InputError;
 use super::fields::Fields;
-use super::kind::{ALL_KINDS, PartKind};
+use super::kind::PartKind;
 use super::library::{self, Loaded};
 use super::node::Node;
 use super::notes::{Blame, Notes};
@@ -382,9 +382,4 @@ impl Loaded {
         };
         !self.inputs.is_empty() && !faults.iter().any(unread)
     }
-}
-
-/// True for a key at the top of a library file; used for telling the two sorts of file apart.
-pub fn is_part_kind(key: &str) -> bool {
-    ALL_KINDS.iter().any(|kind| kind.key() == key)
 }

@@ -99,7 +99,7 @@ fn names(path: &KeyPath, library: bool) -> (String, String) {
 }
 
 /// Characters of a long line that are kept before and after the mark.
-const CONTEXT: usize = 80;
+const CONTEXT: usize = 400;
 
 /// A line with a mark; control characters replaced, long lines cut around the mark.
 pub fn excerpt(line: &str, spot: Spot) -> Excerpt {
@@ -268,9 +268,9 @@ mod tests {
 
     #[test]
     fn long_lines_are_cut_around_the_mark() {
-        let line = format!("{}µµ{}", "x".repeat(500), "y".repeat(500));
-        let cut = excerpt(&line, Spot { line: 1, start: 500, end: 502 });
+        let line = format!("{}µµ{}", "x".repeat(5000), "y".repeat(5000));
+        let cut = excerpt(&line, Spot { line: 1, start: 5000, end: 5002 });
         assert_eq!(&cut.text[cut.start..cut.end], "µµ");
-        assert!(cut.text.chars().count() < 300);
+        assert!(cut.text.chars().count() < 1500);
     }
 }

@@ -110,6 +110,15 @@ impl Form for ControllerSheet {
                 "it lies below v_drive, often 0.1 to 0.5 V",
             );
         }
+        if let DriveSupply::External(external) = &self.drive_supply
+            && external.efficiency.value > 1.0
+        {
+            faults.error(
+                "drive_supply.external.efficiency",
+                "is above 100 %",
+                "no supply gives more than it takes",
+            );
+        }
         if let Some(sleep) = &self.i_q_sleep
             && sleep.value > self.i_q.value
         {

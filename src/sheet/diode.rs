@@ -1,6 +1,6 @@
 //! Diode: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE, VoltagePoint};
+use super::common::{Descriptive, PRICE, VoltagePoint, distinct};
 use super::datum::Datum;
 use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use super::mosfet::Recovery;
@@ -82,6 +82,9 @@ impl Form for DiodeSheet {
                 "is the temperature of the first list",
                 "give two different temperatures",
             );
+        }
+        for (index, curve) in self.v_f.iter().enumerate() {
+            distinct(&format!("v_f[{index}].points"), "i", curve.points.iter().map(|point| point.i.value), faults);
         }
         if self.q_c.is_some() && self.c_j.is_some() {
             faults.error("c_j", "q_c and c_j are both given", "keep q_c, the better of the two");

@@ -1,6 +1,6 @@
 //! Inductor: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE};
+use super::common::{Descriptive, PRICE, distinct};
 use super::datum::Datum;
 use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use crate::units::Dimension as D;
@@ -100,6 +100,10 @@ impl Form for InductorSheet {
                 );
             }
             _ => {}
+        }
+        distinct("inductance_curve", "i", self.inductance_curve.iter().map(|point| point.i.value), faults);
+        if self.saturation.as_ref().is_some_and(|saturation| saturation.drop.value >= 1.0) {
+            faults.error("saturation.drop", "leaves no inductance", "give the drop as printed, often 20 % or 30 %");
         }
         if self.temperature_rise.is_none() && self.r_th.is_none() {
             faults.error(

@@ -1,8 +1,8 @@
 //! Linear regulator: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE};
+use super::common::{Descriptive, PRICE, distinct};
 use super::datum::Datum;
-use super::form::{Form, Key, KeyVisitor, Need};
+use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use crate::units::Dimension as D;
 
 /// A linear regulator as its data sheet states it.
@@ -49,6 +49,11 @@ impl Form for LinearRegulatorSheet {
         v.optional(&R_TH_JA, &mut self.r_th_ja);
         v.required(&T_J_MAX, &mut self.t_j_max);
         v.optional(&PRICE, &mut self.price);
+    }
+
+    fn cross_check(&self, faults: &mut Faults) {
+        distinct("dropout", "i", self.dropout.iter().map(|point| point.i.value), faults);
+        distinct("i_gnd", "i", self.i_gnd.iter().map(|point| point.i.value), faults);
     }
 }
 

@@ -1,6 +1,6 @@
 //! MOSFET: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE, VoltagePoint};
+use super::common::{Descriptive, PRICE, VoltagePoint, distinct};
 use super::datum::Datum;
 use super::edge_times::{EDGE_TIMES, EdgeTimes};
 use super::form::{Faults, Form, Key, KeyVisitor, Need};
@@ -171,6 +171,10 @@ impl Form for MosfetSheet {
                 );
             }
         }
+        let v_gs = |point: &Datum| point.condition("v_gs").unwrap_or(f64::NAN);
+        distinct("r_ds_on", "v_gs", self.r_ds_on.iter().map(v_gs), faults);
+        distinct("q_g", "v_gs", self.q_g.iter().map(v_gs), faults);
+        distinct("v_sd", "i", self.v_sd.iter().map(|point| point.i.value), faults);
         let given = [&self.q_gs2, &self.q_g_th, &self.q_sw].iter().filter(|datum| datum.is_some()).count();
         if given > 1 {
             faults.error("q_gs2", "q_gs2, q_g_th and q_sw say the same thing", "keep one of them");
