@@ -8,6 +8,9 @@ use std::path::{Path, PathBuf};
 use sha2::{Digest, Sha256};
 use thiserror::Error;
 
+mod draft;
+pub use draft::Draft;
+
 /// Largest file that is read, in bytes.
 pub const SIZE_CAP: u64 = 64 * 1024 * 1024;
 
@@ -145,9 +148,9 @@ pub fn list_yaml(folder: &Path) -> Result<Vec<PathBuf>, FileFault> {
     for entry in fs::read_dir(folder)? {
         let path = entry?.path();
         let hidden = path.file_name().is_some_and(|name| name.as_encoded_bytes().starts_with(b"."));
-        let yaml = path.extension().is_some_and(|ending| {
-            ending.eq_ignore_ascii_case("yaml") || ending.eq_ignore_ascii_case("yml")
-        });
+        let yaml = path
+            .extension()
+            .is_some_and(|ending| ending.eq_ignore_ascii_case("yaml") || ending.eq_ignore_ascii_case("yml"));
         // a link that leads nowhere stays in: reading it will say so
         let skipped = fs::metadata(&path).is_ok_and(|about| !about.is_file());
         if yaml && !hidden && !skipped {
@@ -190,49 +193,20 @@ pub fn join(base: &Path, relative: &Path) -> PathBuf {
     if same { tidy } else { joined }
 }
 
-/// Writes a file whole or not at all: into a temporary file beside it, to disk, then under its name.
-///
-/// A device or a pipe, which cannot be replaced, is written directly.
+/// Removes a file if it is there.
+pub fn remove(path: &Path) {
+    // nothing can be done, and nothing is lost, when it has gone already
+    let _ = fs::remove_file(path);
+}
+
+/// Writes a file whole or not at all: see [`Draft`].
 ///
 /// # Errors
 /// When the folder does not exist or cannot be written, or the disk is full; the old file is then untouched.
 pub fn write_whole(path: &Path, bytes: &[u8]) -> Result<(), FileFault> {
-    // behind a link it is the link's goal that is replaced
-    let goal = fs::canonicalize(path).unwrap_or_else(|_| path.to_path_buf());
-    match fs::metadata(&goal) {
-        Ok(about) if about.is_dir() => return Err(FileFault::IsFolder),
-        Ok(about) if !about.is_file() => {
-            let mut device = fs::OpenOptions::new().write(true).open(&goal)?;
-            device.write_all(bytes)?;
-            return Ok(device.flush()?);
-        }
-        _ => {}
-    }
-    let folder = match goal.parent() {
-        Some(parent) if !parent.as_os_str().is_empty() => parent,
-        _ => Path::new("."),
-    };
-    let mut beside = temporary_in(folder)?;
-    beside.write_all(bytes)?;
-    if let Ok(old) = fs::metadata(&goal) {
-        beside.as_file().set_permissions(old.permissions())?;
-    }
-    beside.as_file().sync_all()?;
-    beside.persist(&goal).map_err(|error| error.error)?;
-    #[cfg(unix)]
-    File::open(folder)?.sync_all()?;
-    Ok(())
-}
-
-/// A temporary file that, once kept, has the rights of any new file.
-fn temporary_in(folder: &Path) -> io::Result<tempfile::NamedTempFile> {
-    let mut builder = tempfile::Builder::new();
-    #[cfg(unix)]
-    {
-        use std::os::unix::fs::PermissionsExt;
-        builder.permissions(fs::Permissions::from_mode(0o666));
-    }
-    builder.prefix(".lossbook-").tempfile_in(folder)
+    let mut draft = Draft::begin(path)?;
+    draft.write_all(bytes)?;
+    draft.finish()
 }
 
 #[cfg(test)]
@@ -251,10 +225,7 @@ mod tests {
         let read = read_text(&path).expect("readable");
         assert_eq!(read.text, "a: 1\nb: 2\n");
         // FIPS 180-4, the one-block example "abc"
-        assert_eq!(
-            sha256_hex(b"abc"),
-            "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"
-        );
+        assert_eq!(sha256_hex(b"abc"), "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad");
         assert_ne!(read.sha256, sha256_hex(read.text.as_bytes()));
     }
 

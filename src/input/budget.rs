@@ -60,7 +60,11 @@ pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
 }
 
 /// Reads the text of a budget that has passed the guard.
-pub fn load_text(path: &Path, file: &files::TextFile, outline: &Outline) -> (Option<Budget>, Vec<InputError>) {
+pub fn load_text(
+    path: &Path,
+    file: &files::TextFile,
+    outline: &Outline,
+) -> (Option<Budget>, Vec<InputError>) {
     let source = Source { file: path, text: &file.text, first_line: 1, above: 0, library: false };
     if !is_budget(outline) {
         return (None, vec![no_budget(path, outline)]);
@@ -81,9 +85,11 @@ pub fn load_text(path: &Path, file: &files::TextFile, outline: &Outline) -> (Opt
 fn no_budget(path: &Path, outline: &Outline) -> InputError {
     let parts = outline.top.iter().any(|(key, _)| PartKind::from_key(key).is_some());
     let (reason, hint) = match (outline.top.is_empty(), parts) {
-        (true, _) => ("holds nothing", "a budget begins with `budget:` and its title"),
-        (_, true) => ("is a library of parts, not a budget", "name a budget; it names its parts with `parts:`"),
-        _ => ("is no budget: none of its keys is known", "a budget begins with `budget:` and its title"),
+        (true, _) => ("the file holds nothing", "a budget begins with `budget:` and its title"),
+        (_, true) => {
+            ("the file is a library of parts, not a budget", "name a budget; it names its parts with `parts:`")
+        }
+        _ => ("the file is no budget: none of its keys is known", "a budget begins with `budget:` and its title"),
     };
     InputError::of_file(path, reason, hint)
 }
@@ -108,7 +114,9 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
     }
 
     fn library(&mut self, file: &Path, node: &Node) -> Loaded {
-        let Some(parts) = self.fields.require("parts", "../parts", self.notes) else { return Loaded::default() };
+        let Some(parts) = self.fields.require("parts", "../parts", self.notes) else {
+            return Loaded::default();
+        };
         let folder = file.parent().unwrap_or(Path::new(""));
         let mut paths: Vec<PathBuf> = Vec::new();
         let trail = self.fields.trail.key("parts");
@@ -153,21 +161,19 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             budget_grid::grid(node, rated, trail, notes)
         });
         let folders: Vec<String> = folders_of(&loaded.inputs);
-        let shelf = Shelf {
-            library: &loaded.library,
-            broken: &loaded.broken,
-            complete,
-            folders: folders.join(", "),
-        };
+        let shelf =
+            Shelf { library: &loaded.library, broken: &loaded.broken, complete, folders: folders.join(", ") };
         let stages = self.required("stages", "the candidates", |node, trail, notes| {
             Some(budget_stages::read(node, &shelf, trail, notes))
         });
         let stages = stages.unwrap_or_default();
-        let headline = self.required("headline", "{input_voltage: 24 V, load: 6 A, ambient: 60 °C}", |n, t, notes| {
-            headline(n, rated, t, notes)
-        });
+        let headline =
+            self.required("headline", "{input_voltage: 24 V, load: 6 A, ambient: 60 °C}", |n, t, notes| {
+                headline(n, rated, t, notes)
+            });
         let frequency = self.frequency(&stages, grid.as_ref());
-        let requirements = self.optional("requirements", |n, t, notes| terms::requirements(n, rated, t, notes));
+        let requirements =
+            self.optional("requirements", |n, t, notes| terms::requirements(n, rated, t, notes));
         let board = self.optional("board", terms::board);
         let profile = self.optional("profile", |n, t, notes| terms::profile(n, rated, t, notes));
         let battery = self.optional("battery", terms::battery).flatten();
@@ -316,7 +322,10 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             let sizes: Vec<String> =
                 grid.axes.iter().map(|(name, values)| format!("{} {}", name.name(), values.len())).collect();
             let blame = Blame::new(
-                format!("the stages have {points} points in all, more than {MOST_POINTS} ({})", sizes.join(", ")),
+                format!(
+                    "the stages have {points} points in all, more than {MOST_POINTS} ({})",
+                    sizes.join(", ")
+                ),
                 "take fewer points on an axis",
             );
             self.notes.key_error(&Trail::TOP.key("grid"), blame);
@@ -329,7 +338,8 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             _ => Vec::new(),
         };
         let context = shortlist::Context { shelf, names: &names, stages };
-        self.optional("shortlist", |node, trail, notes| shortlist::read(node, context, trail, notes)).flatten()
+        self.optional("shortlist", |node, trail, notes| shortlist::read(node, context, trail, notes))
+            .flatten()
     }
 }
 
@@ -377,9 +387,8 @@ fn folders_of(inputs: &[InputFile]) -> Vec<String> {
 impl Loaded {
     /// False when a part may be missing because its file could not be read.
     fn is_complete(&self, faults: &[InputError]) -> bool {
-        let unread = |fault: &InputError| {
-            fault.severity == super::error::Severity::Error && fault.part.is_empty()
-        };
+        let unread =
+            |fault: &InputError| fault.severity == super::error::Severity::Error && fault.part.is_empty();
         !self.inputs.is_empty() && !faults.iter().any(unread)
     }
 }

@@ -71,7 +71,11 @@ pub fn axis(
         Node::List(items) => {
             if items.is_empty() {
                 let example = of_axis(name).example;
-                notes.value_error(trail, node, Blame::new("is an empty list", format!("write a value, such as {example}")));
+                notes.value_error(
+                    trail,
+                    node,
+                    Blame::new("is an empty list", format!("write a value, such as {example}")),
+                );
                 return None;
             }
             let before = notes.errors();
@@ -80,7 +84,11 @@ pub fn axis(
                 let trail = trail.item(index);
                 let Some(value) = coordinate((name, rated), item, &trail, notes) else { continue };
                 if values.contains(&value) {
-                    notes.value_warning(&trail, item, Blame::new("stands twice in the list", "take one of the two out"));
+                    notes.value_warning(
+                        &trail,
+                        item,
+                        Blame::new("stands twice in the list", "take one of the two out"),
+                    );
                 }
                 values.push(value);
             }
@@ -90,12 +98,7 @@ pub fn axis(
     }
 }
 
-fn range(
-    axis: (AxisName, RatedLoad),
-    node: &Node,
-    trail: &Trail<'_>,
-    notes: &mut Notes,
-) -> Option<Axis> {
+fn range(axis: (AxisName, RatedLoad), node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<Axis> {
     let example = of_axis(axis.0).example;
     let like = format!("`{{from: {example}, to: {example}, points: 5}}`");
     let mut fields = Fields::open(node, trail, &like, notes)?;
@@ -120,7 +123,10 @@ fn range(
             "swap them; for a single value write just the value",
         )
     } else if log && from <= 0.0 {
-        Blame::new("even ratios cannot start at zero or below", "start above zero, or write `spacing: linear`")
+        Blame::new(
+            "even ratios cannot start at zero or below",
+            "start above zero, or write `spacing: linear`",
+        )
     } else {
         return Some(Axis::Range { from, to, points, log });
     };

@@ -11,13 +11,14 @@ pub(crate) const RATED_LOAD: Key =
 
 pub(crate) const INPUT_VOLTAGE: Key =
     Key::new("input_voltage", D::Voltage, "input voltage").sane(0.8, 500.0).example("24 V");
-pub(crate) const LOAD: Key =
-    Key::new("load", D::Current, "load current, or a percentage of rated_load").zero().sane(1e-7, 1e3).example("6 A");
+pub(crate) const LOAD: Key = Key::new("load", D::Current, "load current, or a percentage of rated_load")
+    .zero()
+    .sane(1e-7, 1e3)
+    .example("6 A");
 pub(crate) const AMBIENT: Key =
     Key::new("ambient", D::Temperature, "air around the rail").signed().sane(-60.0, 150.0).example("60 °C");
-pub(crate) const SWITCHING_FREQUENCY: Key = Key::new("switching_frequency", D::Frequency, "switching frequency")
-    .sane(1e4, 2e7)
-    .example("400 kHz");
+pub(crate) const SWITCHING_FREQUENCY: Key =
+    Key::new("switching_frequency", D::Frequency, "switching frequency").sane(1e4, 2e7).example("400 kHz");
 
 pub(crate) const SHARE: Key = Key::new("share", D::Ratio, "share of time").example("70 %");
 pub(crate) const BATTERY_ENERGY: Key =

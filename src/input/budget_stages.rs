@@ -59,7 +59,10 @@ pub fn read(node: &Node, shelf: &Shelf<'_>, trail: &Trail<'_>, notes: &mut Notes
     for (name, node) in entries {
         let trail = trail.key(name);
         if name.trim().is_empty() || printable(name) != **name {
-            notes.key_error(&trail, Blame::new("is no usable name of a stage", "use letters, digits and dashes"));
+            notes.key_error(
+                &trail,
+                Blame::new("is no usable name of a stage", "use letters, digits and dashes"),
+            );
         }
         let Some(fields) = Fields::open(node, &trail, "`rectifier: synchronous` and its parts", notes) else {
             continue;
@@ -79,7 +82,11 @@ struct StageReader<'a, 'n, 't> {
 impl StageReader<'_, '_, '_> {
     fn read(mut self, name: &str) -> Option<StageSheet> {
         let Some(node) = self.fields.take("rectifier") else {
-            self.fields.missing("rectifier", "add `rectifier: synchronous`, or `diode`, or `linear`", self.notes);
+            self.fields.missing(
+                "rectifier",
+                "add `rectifier: synchronous`, or `diode`, or `linear`",
+                self.notes,
+            );
             return None;
         };
         let rectifier = word(node, &RECTIFIERS, &self.fields.trail.key("rectifier"), self.notes)?;
@@ -146,7 +153,8 @@ impl StageReader<'_, '_, '_> {
             None => None,
             Some(node) => {
                 let trail = self.fields.trail.key(name);
-                let placed = self.shelf.place((PartKind::Diode, &library.diodes), node, &trail, self.notes)?;
+                let placed =
+                    self.shelf.place((PartKind::Diode, &library.diodes), node, &trail, self.notes)?;
                 if placed.sheet.q_rr.is_some() {
                     let blame = Blame::new(
                         format!("{} has q_rr, so it is no Schottky diode", printable(&placed.name)),
@@ -170,7 +178,9 @@ impl StageReader<'_, '_, '_> {
     fn bank(&mut self, slot: Slot) -> Option<Vec<Placed<CapacitorSheet>>> {
         let name = slot.name();
         let Some(node) = self.fields.take(name) else {
-            let hint = format!("add `{name}: [{{part: name, count: 4}}]`, or `{name}: []` to leave them out of the model");
+            let hint = format!(
+                "add `{name}: [{{part: name, count: 4}}]`, or `{name}: []` to leave them out of the model"
+            );
             self.fields.missing(name, &hint, self.notes);
             return None;
         };
@@ -179,7 +189,8 @@ impl StageReader<'_, '_, '_> {
         let Node::List(items) = node else {
             return self.shelf.place(kind, node, &trail, self.notes).map(|placed| vec![placed]);
         };
-        let place = |(index, item): (usize, &Node)| self.shelf.place(kind, item, &trail.item(index), self.notes);
+        let place =
+            |(index, item): (usize, &Node)| self.shelf.place(kind, item, &trail.item(index), self.notes);
         // every item is read before any failure counts
         let placed: Vec<Option<_>> = items.iter().enumerate().map(place).collect();
         placed.into_iter().collect()

@@ -24,7 +24,11 @@ fn each<'n>(
 ) {
     match node {
         Node::List(items) if items.is_empty() => {
-            notes.value_error(trail, node, Blame::new("is an empty list", "add an entry, or take the key out"));
+            notes.value_error(
+                trail,
+                node,
+                Blame::new("is an empty list", "add an entry, or take the key out"),
+            );
         }
         Node::List(items) => {
             for (index, item) in items.iter().enumerate() {
@@ -143,15 +147,22 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
         keys::derated("saturation"),
         keys::derated("ripple_current"),
     ];
-    const MARGIN: Key =
-        Key::new("junction_margin", crate::units::Dimension::TemperatureDifference, "distance to a junction rating")
-            .zero()
-            .example("25 K");
+    const MARGIN: Key = Key::new(
+        "junction_margin",
+        crate::units::Dimension::TemperatureDifference,
+        "distance to a junction rating",
+    )
+    .zero()
+    .example("25 K");
     let mut derating = Derating::default();
     let like = "`{voltage: 80 %, junction_margin: 25 K}`";
     let Some(mut fields) = Fields::open(node, trail, like, notes) else { return derating };
-    let slots =
-        [&mut derating.voltage, &mut derating.gate_voltage, &mut derating.saturation, &mut derating.ripple_current];
+    let slots = [
+        &mut derating.voltage,
+        &mut derating.gate_voltage,
+        &mut derating.saturation,
+        &mut derating.ripple_current,
+    ];
     for (key, slot) in RATIOS.iter().zip(slots) {
         let Some(node) = fields.take(key.name) else { continue };
         let trail = trail.key(key.name);
@@ -175,7 +186,8 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
 /// Copper, sense, snubber and heat from slot to slot.
 pub fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
     let (mut sheet, mut coupling) = (BoardSheet::default(), Vec::new());
-    let Some(mut fields) = Fields::open(node, trail, "`{high_side_path: 0.5 mΩ, input_path: 2 mΩ}`", notes) else {
+    let Some(mut fields) = Fields::open(node, trail, "`{high_side_path: 0.5 mΩ, input_path: 2 mΩ}`", notes)
+    else {
         return (sheet, coupling);
     };
     read_fields(&mut sheet, &mut fields, notes);
@@ -204,14 +216,17 @@ fn couplings(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Vec<Coupling>
     for (heated, row) in rows {
         let trail = trail.key(heated);
         let heated = slot(heated, &WARM, &trail, notes);
-        let (Some(_), Node::Map(cells)) = (Fields::open(row, &trail, "`{low_side: 6 K/W}`", notes), row) else {
+        let (Some(_), Node::Map(cells)) = (Fields::open(row, &trail, "`{low_side: 6 K/W}`", notes), row)
+        else {
             continue;
         };
         for (heating, node) in cells {
             let trail = trail.key(heating);
             let heating = slot(heating, &ALL_SLOTS, &trail, notes);
             let resistance = value(node, &keys::COUPLING, &trail, notes);
-            let (Some(heated), Some(heating), Some(resistance)) = (heated, heating, resistance) else { continue };
+            let (Some(heated), Some(heating), Some(resistance)) = (heated, heating, resistance) else {
+                continue;
+            };
             if heated == heating {
                 let blame = Blame::new("a slot heats itself through its own r_th_ja", "take it out");
                 notes.key_error(&trail, blame);

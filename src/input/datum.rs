@@ -54,7 +54,8 @@ pub fn from_fields(fields: &mut Fields<'_, '_>, key: &'static Key, notes: &mut N
     if let Some(node) = fields.take("source") {
         datum.source = node.scalar().filter(|text| !text.is_empty()).map(Into::into);
         if matches!(node, Node::List(_) | Node::Map(_)) {
-            let blame = Blame::new(format!("{} stands here; text is expected", node.words()), "write `source: p. 4`");
+            let blame =
+                Blame::new(format!("{} stands here; text is expected", node.words()), "write `source: p. 4`");
             notes.value_error(&fields.trail.key("source"), node, blame);
         }
     }
@@ -63,7 +64,8 @@ pub fn from_fields(fields: &mut Fields<'_, '_>, key: &'static Key, notes: &mut N
         return None;
     }
     let Some(typical) = datum.typical() else {
-        let blame = Blame::new("has none of typ, min and max", format!("write `{}: {}`", key.name, example(key)));
+        let blame =
+            Blame::new("has none of typ, min and max", format!("write `{}: {}`", key.name, example(key)));
         notes.key_error(fields.trail, blame);
         return None;
     };
@@ -80,7 +82,8 @@ pub fn from_fields(fields: &mut Fields<'_, '_>, key: &'static Key, notes: &mut N
             (_, None) => "min",
         };
         let reason = format!("has no typ: {stand_in} stands for it");
-        notes.doubt(fields.trail, Blame::new(reason, "add typ when the data sheet or a measurement gives it"));
+        notes
+            .doubt(fields.trail, Blame::new(reason, "add typ when the data sheet or a measurement gives it"));
     }
     Some(datum)
 }
@@ -123,14 +126,20 @@ pub fn bounded(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> 
 }
 
 fn in_order(datum: &Datum, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<()> {
-    let pairs =
-        [("min", datum.min, "typ", datum.typ), ("typ", datum.typ, "max", datum.max), ("min", datum.min, "max", datum.max)];
+    let pairs = [
+        ("min", datum.min, "typ", datum.typ),
+        ("typ", datum.typ, "max", datum.max),
+        ("min", datum.min, "max", datum.max),
+    ];
     for (low, a, high, b) in pairs {
         if let (Some(a), Some(b)) = (a, b)
             && a > b
         {
             let (a, b) = (engineering(a, key.dimension), engineering(b, key.dimension));
-            let blame = Blame::new(format!("{high} ({b}) is below {low} ({a})"), "check the prefixes; the order is min, typ, max");
+            let blame = Blame::new(
+                format!("{high} ({b}) is below {low} ({a})"),
+                "check the prefixes; the order is min, typ, max",
+            );
             notes.at_value(&trail.key(high), blame);
             return None;
         }
@@ -154,7 +163,9 @@ fn deviation(node: &Node, typical: f64, key: &Key, trail: &Trail<'_>, notes: &mu
     let percent = matches!(node, Node::Text(text) if text.ends_with('%'));
     let result = match key.dimension {
         Dimension::Temperature => quantity::read(node, Expected::of(Dimension::TemperatureDifference)),
-        _ if percent => quantity::read(node, Expected::of(Dimension::Ratio)).map(|share| share * typical.abs()),
+        _ if percent => {
+            quantity::read(node, Expected::of(Dimension::Ratio)).map(|share| share * typical.abs())
+        }
         dimension => quantity::read(node, Expected::like(dimension, "5 %")),
     };
     let blame = match result {

@@ -149,7 +149,8 @@ pub fn printable(text: &str) -> String {
 
 /// Control characters, line separators and marks that turn the direction of writing.
 pub(crate) fn is_unprintable(c: char) -> bool {
-    c.is_control() || matches!(c, '\u{200B}'..='\u{200F}' | '\u{2028}'..='\u{202E}' | '\u{2066}'..='\u{2069}' | '\u{FEFF}')
+    c.is_control()
+        || matches!(c, '\u{200B}'..='\u{200F}' | '\u{2028}'..='\u{202E}' | '\u{2066}'..='\u{2069}' | '\u{FEFF}')
 }
 
 /// At most sixty characters of a value.
@@ -172,7 +173,11 @@ mod tests {
             path: "q_gd".into(),
             part: "demo\u{1b}[31m".into(),
             value: Some("2.1 V".into()),
-            ..InputError::of_file(Path::new("parts/a.yaml"), "V is a voltage, a charge is expected", "write nC")
+            ..InputError::of_file(
+                Path::new("parts/a.yaml"),
+                "V is a voltage, a charge is expected",
+                "write nC",
+            )
         };
         assert_eq!(
             error.to_string(),

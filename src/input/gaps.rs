@@ -14,7 +14,11 @@ fn source(descriptive: &Descriptive, gaps: &mut Faults) {
 
 fn at_ambient(r_th: Option<&Datum>, gaps: &mut Faults) {
     if r_th.is_none() {
-        gaps.warn("", "gives no r_th_ja: the part stays at ambient temperature", "add `r_th_ja` on your board");
+        gaps.warn(
+            "",
+            "gives no r_th_ja: the part stays at ambient temperature",
+            "add `r_th_ja` on your board",
+        );
     }
 }
 
@@ -22,7 +26,11 @@ fn at_ambient(r_th: Option<&Datum>, gaps: &mut Faults) {
 pub fn mosfet(sheet: &MosfetSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
     if sheet.r_ds_on_hot.is_none() {
-        gaps.warn("", "gives no r_ds_on_hot: 1.5 at 125 °C is assumed", "add `r_ds_on_hot: {t_j: 150 °C, ratio: 1.7}`");
+        gaps.warn(
+            "",
+            "gives no r_ds_on_hot: 1.5 at 125 °C is assumed",
+            "add `r_ds_on_hot: {t_j: 150 °C, ratio: 1.7}`",
+        );
     }
     if sheet.q_gs2_is_estimated() {
         gaps.warn(
@@ -68,7 +76,11 @@ pub fn inductor(sheet: &InductorSheet, gaps: &mut Faults) {
         gaps.warn("", "gives no core data: core loss is not modelled", "add `core` or `core_loss`");
     }
     if sheet.r_ac.is_none() {
-        gaps.warn("", "gives no r_ac: AC winding loss is not modelled", "add `r_ac: {frequency: 500 kHz, r: 60 mΩ}`");
+        gaps.warn(
+            "",
+            "gives no r_ac: AC winding loss is not modelled",
+            "add `r_ac: {frequency: 500 kHz, r: 60 mΩ}`",
+        );
     }
 }
 

@@ -65,6 +65,18 @@ impl PartKind {
         }
     }
 
+    /// In prose, several: "MOSFETs".
+    pub const fn plural(self) -> &'static str {
+        match self {
+            PartKind::Mosfet => "MOSFETs",
+            PartKind::Diode => "diodes",
+            PartKind::Inductor => "inductors",
+            PartKind::Capacitor => "capacitors",
+            PartKind::Controller => "controllers",
+            PartKind::LinearRegulator => "linear regulators",
+        }
+    }
+
     /// The kind of a key.
     pub fn from_key(key: &str) -> Option<PartKind> {
         ALL_KINDS.into_iter().find(|kind| kind.key() == key)
@@ -134,7 +146,9 @@ impl PartKind {
             PartKind::Diode => library.diodes.get(name).map(|found| wrap(found, AnySheet::Diode)),
             PartKind::Inductor => library.inductors.get(name).map(|found| wrap(found, AnySheet::Inductor)),
             PartKind::Capacitor => library.capacitors.get(name).map(|found| wrap(found, AnySheet::Capacitor)),
-            PartKind::Controller => library.controllers.get(name).map(|found| wrap(found, AnySheet::Controller)),
+            PartKind::Controller => {
+                library.controllers.get(name).map(|found| wrap(found, AnySheet::Controller))
+            }
             PartKind::LinearRegulator => {
                 library.linear_regulators.get(name).map(|found| wrap(found, AnySheet::LinearRegulator))
             }

@@ -10,7 +10,7 @@ use super::notes::{Blame, MOST, Notes};
 use super::part_file::{self, Attention, PartFile, ReadPart};
 use super::path::Trail;
 use super::place::{Source, resolve};
-use super::{ outline, parallel};
+use super::{outline, parallel};
 use crate::budget::{InputFile, Library};
 use crate::files;
 
@@ -57,9 +57,9 @@ pub fn load(paths: &[PathBuf], attention: &Attention) -> Loaded {
     for ((kind, name), first, second) in doubled.into_iter().take(MOST) {
         loaded.faults.extend(doubled_part(kind, &name, &files[first], &files[second]));
     }
-    if origin.is_empty() && loaded.faults.is_empty() {
-        let path = paths.first().map_or(Path::new("."), PathBuf::as_path);
-        loaded.faults.push(InputError::of_file(path, "holds no parts", "add parts to its files"));
+    let nobody_complained = loaded.faults.iter().all(|fault| fault.severity == Severity::Warning);
+    if let Some(path) = paths.first().filter(|_| origin.is_empty() && nobody_complained) {
+        loaded.faults.push(InputError::of_file(path, "there are no parts", "add parts to its files"));
     }
     loaded
 }
@@ -72,7 +72,7 @@ fn list(paths: &[PathBuf], faults: &mut Vec<InputError>) -> Vec<PathBuf> {
             match files::list_yaml(path) {
                 Ok(found) if found.is_empty() => {
                     let hint = "put *.yaml files with parts into it, or name another folder";
-                    faults.push(InputError::of_file(path, "holds no *.yaml files", hint));
+                    faults.push(InputError::of_file(path, "the folder holds no *.yaml files", hint));
                     continue;
                 }
                 Ok(found) => found,
@@ -92,8 +92,12 @@ fn list(paths: &[PathBuf], faults: &mut Vec<InputError>) -> Vec<PathBuf> {
 
 /// The same name in two files, with both places; the files are read once more for them.
 fn doubled_part(kind: PartKind, name: &str, first: &Path, second: &Path) -> Option<InputError> {
-    let reason = format!("a second {} of this name", kind.words().split_once(' ').map_or("part", |words| words.1));
-    let hint = format!("rename one of them, or take it out ({} has it too)", printable(&first.display().to_string()));
+    let reason =
+        format!("a second {} of this name", kind.words().split_once(' ').map_or("part", |words| words.1));
+    let hint = format!(
+        "rename one of them, or take it out ({} has it too)",
+        printable(&first.display().to_string())
+    );
     let mut error = locate(second, kind, name, Blame::new(reason, hint))?;
     if let Some(other) = locate(first, kind, name, Blame::new("", "")) {
         error.other = Some(Box::new(OtherPlace {

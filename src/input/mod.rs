@@ -28,6 +28,7 @@ pub mod sample;
 pub mod shelf;
 pub mod shortlist;
 pub mod show;
+pub mod template;
 pub mod units;
 pub mod yaml;
 
@@ -35,6 +36,7 @@ use std::path::{Path, PathBuf};
 
 use crate::budget::{Budget, InputFile, Library};
 pub use check::{Checked, check_path};
+pub use template::{TEMPLATES, template};
 pub use error::{InputError, InputErrors, Severity, Warning};
 
 /// A library with its warnings and the files it was read from.
@@ -73,7 +75,9 @@ mod tests {
         match load_library(&[root]) {
             Ok((library, warnings, inputs)) => {
                 println!("{} {} {}", library.mosfets.len(), inputs.len(), warnings.len());
-                for warning in warnings { println!("{warning}"); }
+                for warning in warnings {
+                    println!("{warning}");
+                }
             }
             Err(errors) => panic!("{errors}"),
         }
@@ -85,7 +89,13 @@ mod tests {
         for path in crate::files::list_yaml(&root).expect("examples") {
             match load_budget(&path) {
                 Ok((budget, warnings)) => {
-                    println!("{} {} {} {:?}", budget.name, budget.grid.len(), warnings.len(), budget.headline);
+                    println!(
+                        "{} {} {} {:?}",
+                        budget.name,
+                        budget.grid.len(),
+                        warnings.len(),
+                        budget.headline
+                    );
                 }
                 Err(errors) => panic!("{errors}"),
             }

@@ -219,7 +219,10 @@ impl<'t> Guard<'t> {
     fn doubled(&mut self, key: &str, first: Spot, second: Spot) {
         let mut fault = self.located(
             second,
-            Blame::new(format!("the key `{}` stands here a second time", printable(key)), "keep one of the two"),
+            Blame::new(
+                format!("the key `{}` stands here a second time", printable(key)),
+                "keep one of the two",
+            ),
         );
         fault.other = Some(Box::new(OtherPlace {
             label: "given here first".into(),
@@ -232,7 +235,11 @@ impl<'t> Guard<'t> {
     }
 
     fn reference(&mut self, spot: Spot) {
-        self.fault(spot, "anchors and aliases (`&`, `*`) are not read", "write the value out, or put it in quotes");
+        self.fault(
+            spot,
+            "anchors and aliases (`&`, `*`) are not read",
+            "write the value out, or put it in quotes",
+        );
     }
 
     fn tag(&mut self, spot: Spot) {
@@ -255,14 +262,20 @@ impl<'t> Guard<'t> {
             self.too_deep(spot);
         } else if error.info().contains("anchor") {
             self.reference(spot);
-        } else if let Some(open) = self.stack.iter().rev().find(|frame| frame.flow) {
+        } else if let Some(open) = self.unclosed(error.info()) {
             let (bracket, pair) = if open.mapping { ('{', '}') } else { ('[', ']') };
             let spot = Spot { line: open.start.line(), start: open.start.col(), end: open.start.col() + 1 };
-            let reason = format!("the `{bracket}` opened here is not closed properly ({})", error.info());
-            self.fault(spot, reason, format!("add the `{pair}`, and a comma between items"));
+            let hint = format!("add the `{pair}`, and a comma between items");
+            self.fault(spot, format!("the `{bracket}` opened here is not closed properly"), hint);
         } else {
             self.fault(spot, format!("this is no YAML: {}", error.info()), hint_for(error.info()));
         }
+    }
+
+    /// The innermost open bracket, when a complaint is about its end.
+    fn unclosed(&self, info: &str) -> Option<&Frame<'t>> {
+        let about_end = ["flow", "node content", "end of stream"].iter().any(|words| info.contains(words));
+        self.stack.last().filter(|frame| frame.flow && about_end)
     }
 
     fn fault(&mut self, spot: Spot, reason: impl Into<String>, hint: impl Into<String>) {
@@ -337,9 +350,7 @@ mod tests {
     fn faults(text: &str) -> Vec<String> {
         match guard(Path::new("x"), text) {
             Ok(_) => Vec::new(),
-            Err(faults) => {
-                faults.iter().map(|f| format!("{}:{} {}", f.line, f.column, f.reason)).collect()
-            }
+            Err(faults) => faults.iter().map(|f| format!("{}:{} {}", f.line, f.column, f.reason)).collect(),
         }
     }
 

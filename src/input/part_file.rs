@@ -102,11 +102,11 @@ fn top_faults(path: &Path, text: &str, outline: &Outline) -> Vec<InputError> {
     let kinds = || ALL_KINDS.iter().map(|kind| kind.key());
     if outline.top.is_empty() {
         let hint = format!("a library file has one of the keys {} at its top", listed(kinds()));
-        return vec![InputError::of_file(path, "holds no parts", hint)];
+        return vec![InputError::of_file(path, "the file holds no parts", hint)];
     }
     if is_budget(outline) {
         let hint = "name it on the command line; `parts:` names folders of parts only";
-        return vec![InputError::of_file(path, "is a budget, not a library of parts", hint)];
+        return vec![InputError::of_file(path, "the file is a budget, not a library of parts", hint)];
     }
     let mut notes = Notes::default();
     for (key, _) in outline.top.iter().filter(|(key, _)| PartKind::from_key(key).is_none()) {
@@ -163,7 +163,11 @@ fn read_kind(
         Node::Null => notes.doubt(&trail, Blame::new("holds no parts", "add parts below it, or take it out")),
         other => {
             let reason = format!("{} stands here; a mapping from names to parts is expected", other.words());
-            notes.value_error(&trail, other, Blame::new(reason, "write `name:` and the keys of the part below"));
+            notes.value_error(
+                &trail,
+                other,
+                Blame::new(reason, "write `name:` and the keys of the part below"),
+            );
         }
     }
 }
@@ -177,7 +181,8 @@ fn read_part(
     let trail = trail.key(name);
     let (errors, kept) = (notes.errors(), notes.list.len());
     if name.trim() != name || name.is_empty() || name == "all" || printable(name) != name {
-        let blame = Blame::new("is no usable name of a part", "use letters, digits and dashes; `all` is taken");
+        let blame =
+            Blame::new("is no usable name of a part", "use letters, digits and dashes; `all` is taken");
         notes.key_error(&trail, blame);
     }
     let sheet = kind.read(node, &trail, notes);

@@ -146,7 +146,10 @@ mod tests {
     fn paths_lead_to_keys_and_values() {
         let mut empty = InductorSheet::default();
         assert_eq!(Probe::key(&mut empty, "core.volume").map(|key| key.name), Some("volume"));
-        assert_eq!(Probe::key(&mut InductorSheet::default(), "inductance_curve.i").map(|key| key.name), Some("i"));
+        assert_eq!(
+            Probe::key(&mut InductorSheet::default(), "inductance_curve.i").map(|key| key.name),
+            Some("i")
+        );
         assert!(Probe::key(&mut InductorSheet::default(), "core").is_none());
         assert!(Probe::key(&mut InductorSheet::default(), "cores.volume").is_none());
         let mut mosfet =

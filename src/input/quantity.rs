@@ -110,8 +110,12 @@ fn unit_words(dimension: Dimension) -> &'static str {
 
 fn kelvin_hint(expected: Dimension, found: Dimension) -> &'static str {
     match (expected, found) {
-        (Dimension::Temperature, Dimension::TemperatureDifference) => "; temperatures are in °C, differences in K",
-        (Dimension::TemperatureDifference, Dimension::Temperature) => "; differences are in K, temperatures in °C",
+        (Dimension::Temperature, Dimension::TemperatureDifference) => {
+            "; temperatures are in °C, differences in K"
+        }
+        (Dimension::TemperatureDifference, Dimension::Temperature) => {
+            "; differences are in K, temperatures in °C"
+        }
         (Dimension::Temperature, Dimension::Charge) => "; C alone is the coulomb",
         _ => "",
     }
@@ -172,7 +176,10 @@ fn unknown_unit(unit: &str, expected: Expected<'_>) -> Blame {
 
 fn nearest_unit<'a>(unit: &str, known: impl Iterator<Item = &'a str> + Clone) -> Option<&'a str> {
     let spelt = unit.to_lowercase().replace(['µ', 'μ'], "u");
-    known.clone().find(|candidate| candidate.to_lowercase().replace('µ', "u") == spelt).or_else(|| nearest(unit, known))
+    known
+        .clone()
+        .find(|candidate| candidate.to_lowercase().replace('µ', "u") == spelt)
+        .or_else(|| nearest(unit, known))
 }
 
 /// The number at the start of a text and what follows it.
@@ -279,8 +286,14 @@ mod tests {
             fault("0.9", D::Ratio),
             "a percentage needs its unit; write 0.9 %, or 90 % if 0.9 is a fraction"
         );
-        assert_eq!(fault("400 khz", D::Frequency), "khz is no known unit; a frequency is expected; did you mean kHz?");
-        assert_eq!(fault("1,5 mΩ", D::Resistance), "a comma stands in the number; decimals take a point: 1.5 mΩ; thousands are not grouped");
+        assert_eq!(
+            fault("400 khz", D::Frequency),
+            "khz is no known unit; a frequency is expected; did you mean kHz?"
+        );
+        assert_eq!(
+            fault("1,5 mΩ", D::Resistance),
+            "a comma stands in the number; decimals take a point: 1.5 mΩ; thousands are not grouped"
+        );
         assert!(fault("60 C", D::Temperature).contains("C alone is the coulomb"));
         assert!(fault("40 °C", D::TemperatureDifference).contains("differences are in K"));
         assert!(fault("4 V", D::Number).contains("a plain number is expected"));

@@ -32,12 +32,23 @@ pub struct Shelf<'a> {
 
 impl Shelf<'_> {
     /// The name of a part of a kind as the library keeps it; a fault is noted when there is none.
-    pub fn name(&self, kind: PartKind, node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<Arc<str>> {
+    pub fn name(
+        &self,
+        kind: PartKind,
+        node: &Node,
+        trail: &Trail<'_>,
+        notes: &mut Notes,
+    ) -> Option<Arc<str>> {
         let name = match node {
             Node::Text(_) | Node::Int(_) | Node::Float(_) => node.scalar().unwrap_or_default(),
             other => {
-                let reason = format!("{} stands here; the name of {} is expected", other.words(), kind.words());
-                notes.value_error(trail, other, Blame::new(reason, "write the name, or `{part: name, count: 2}`"));
+                let reason =
+                    format!("{} stands here; the name of {} is expected", other.words(), kind.words());
+                notes.value_error(
+                    trail,
+                    other,
+                    Blame::new(reason, "write the name, or `{part: name, count: 2}`"),
+                );
                 return None;
             }
         };
@@ -68,7 +79,7 @@ impl Shelf<'_> {
             None => format!("add it under `{}`; ", kind.key()),
         };
         hint.push_str(&format!("(searched: {})", self.folders));
-        Blame::new(format!("no part is named `{shown}` among the {}", kind.key().replace('_', " ")), hint)
+        Blame::new(format!("no part is named `{shown}` among the {}", kind.plural()), hint)
     }
 
     /// A part with its count: `name` or `{part: name, count: 2}`.

@@ -55,7 +55,8 @@ pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut No
         } else if Slot::from_name(key).is_some() {
             fields.take(key);
             let reason = format!("does not belong to a {} stage", stage.rectifier_name());
-            let hint = format!("the slots of `{}` are {}", stage.name, listed(own.iter().map(|slot| slot.name())));
+            let hint =
+                format!("the slots of `{}` are {}", stage.name, listed(own.iter().map(|slot| slot.name())));
             notes.key_error(&trail, Blame::new(reason, hint));
         }
     }
@@ -67,7 +68,10 @@ pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut No
         }
         shortlist.switching_frequency = budget_grid::axis((axis, RatedLoad::Absent), node, &trail, notes);
     }
-    fields.close(|| ["stage", axis.name()].into_iter().chain(own.iter().map(|slot| slot.name())).collect(), notes);
+    fields.close(
+        || ["stage", axis.name()].into_iter().chain(own.iter().map(|slot| slot.name())).collect(),
+        notes,
+    );
     Some(shortlist)
 }
 
@@ -102,7 +106,11 @@ fn candidates(
                 let trail = trail.item(index);
                 let Some(name) = shelf.name(kind, item, &trail, notes) else { continue };
                 if names.contains(&name) {
-                    notes.value_warning(&trail, item, Blame::new("stands twice in the list", "take one of the two out"));
+                    notes.value_warning(
+                        &trail,
+                        item,
+                        Blame::new("stands twice in the list", "take one of the two out"),
+                    );
                 } else {
                     names.push(name);
                 }
@@ -115,7 +123,7 @@ fn candidates(
         single => vec![shelf.name(kind, single, trail, notes)?],
     };
     if names.is_empty() && shelf.complete && matches!(node, Node::Text(_)) {
-        let reason = format!("the library has no {}", kind.key().replace('_', " "));
+        let reason = format!("the library has no {}", kind.plural());
         notes.value_error(trail, node, Blame::new(reason, "add some, or take the slot out of the shortlist"));
     }
     Some(names)
@@ -158,10 +166,11 @@ fn filtered(
             })
         })
     };
-    let names: Vec<Arc<str>> = kind.names(shelf.library).into_iter().filter(|name| passes(name)).cloned().collect();
+    let names: Vec<Arc<str>> =
+        kind.names(shelf.library).into_iter().filter(|name| passes(name)).cloned().collect();
     if names.is_empty() && shelf.complete {
         let blame = Blame::new(
-            format!("none of the {} passes", kind.key().replace('_', " ")),
+            format!("none of the {} passes", kind.plural()),
             "loosen the limits; a part that lacks a value does not pass",
         );
         notes.at_value(trail, blame);

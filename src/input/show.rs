@@ -16,7 +16,8 @@ pub fn engineering(value: f64, dimension: Dimension) -> String {
             format!("{} {unit}", digits(value))
         }
         _ => {
-            let prefixes = [(1e9, "G"), (1e6, "M"), (1e3, "k"), (1.0, ""), (1e-3, "m"), (1e-6, "µ"), (1e-9, "n")];
+            let prefixes =
+                [(1e9, "G"), (1e6, "M"), (1e3, "k"), (1.0, ""), (1e-3, "m"), (1e-6, "µ"), (1e-9, "n")];
             let fits = |(scale, _): &&(f64, &str)| value.abs() >= 0.999_999 * scale;
             let (scale, prefix) = match value {
                 0.0 => (1.0, ""),

@@ -1,0 +1,79 @@
+//! Where answers are written: to standard output, or to a file whole or not at all.
+
+use std::io::{self, BufWriter, IsTerminal, Write};
+use std::path::Path;
+use std::sync::Arc;
+
+use lossbook::answer::Answer;
+use lossbook::files::{Draft, FileFault};
+use lossbook::render::{Markdown, Render, Text};
+use lossbook::report::Document;
+use lossbook::sweep::Watch;
+
+use super::options::{Common, Format, Writing};
+use super::progress::Progress;
+use super::{Exit, Failure, interrupt, terminal};
+
+/// Writes an answer in the format asked for; the exit code says whether requirements are met.
+pub(crate) fn give(
+    answer: &dyn Answer,
+    writing: &Writing,
+    common: &Common,
+    watch: &Arc<Watch>,
+) -> Result<Exit, Failure> {
+    let file = writing.output.as_deref().filter(|path| *path != Path::new("-"));
+    let streams = matches!(writing.format, Format::Csv | Format::Json);
+    // a bar between rows on the same terminal would be worse than none
+    let progress = (!streams || file.is_some() || !io::stdout().is_terminal()).then(|| Progress::of(watch));
+    to(file, |out| match writing.format {
+        Format::Csv => answer.csv(out),
+        Format::Json => answer.json(out),
+        Format::Text | Format::Markdown => {
+            let document = answer.document();
+            drop(progress);
+            render(&document, writing, common).render(&document, out)
+        }
+    })?;
+    Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+}
+
+/// Writes a document as text.
+pub(crate) fn give_text(document: &Document, common: &Common) -> Result<(), Failure> {
+    to(None, |out| text(common, None).render(document, out))
+}
+
+fn render(_: &Document, writing: &Writing, common: &Common) -> Box<dyn Render> {
+    match writing.format {
+        Format::Markdown => Box::new(Markdown),
+        _ => Box::new(text(common, writing.output.as_deref())),
+    }
+}
+
+/// Text for a terminal, or for a file, which has no colour of its own.
+fn text(common: &Common, file: Option<&Path>) -> Text {
+    use super::options::Colour;
+    let colour = match file {
+        Some(_) => common.colour == Colour::Always,
+        None => terminal::colour(common.colour),
+    };
+    let width = if file.is_some() { terminal::PAGE } else { terminal::width() };
+    Text { width, colour }
+}
+
+/// Hands a writer to whoever has something to write.
+pub(crate) fn to(
+    file: Option<&Path>,
+    write: impl FnOnce(&mut dyn Write) -> io::Result<()>,
+) -> Result<(), Failure> {
+    let Some(path) = file else {
+        let mut out = BufWriter::with_capacity(1 << 16, io::stdout().lock());
+        return write(&mut out).and_then(|()| out.flush()).map_err(Failure::of_stdout);
+    };
+    let failed = |fault: FileFault| Failure::Output { file: Some(path.to_path_buf()), fault };
+    let mut draft = Draft::begin(path).map_err(failed)?;
+    interrupt::watch_draft(draft.temporary());
+    match write(&mut draft) {
+        Ok(()) => interrupt::finish_draft(|| draft.finish()).map_err(failed),
+        Err(error) => Err(failed(error.into())),
+    }
+}

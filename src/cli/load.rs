@@ -1,0 +1,58 @@
+//! Budgets for the verbs that ask questions of one.
+
+use std::path::{Path, PathBuf};
+
+use clap::Args;
+use lossbook::budget::Budget;
+use lossbook::hints;
+use lossbook::input;
+use lossbook::printable::printable;
+
+use super::{Failure, terminal};
+
+/// The budget, and the stage that is meant.
+#[derive(Args, Debug)]
+pub(crate) struct Subject {
+    /// Budget file: what the rail must do, its candidate stages and the grid.
+    #[arg(value_name = "BUDGET")]
+    pub(crate) budget: PathBuf,
+
+    /// Name of one stage of the budget.
+    #[arg(short, long, value_name = "STAGE")]
+    pub(crate) stage: Option<String>,
+}
+
+impl Subject {
+    /// Reads the budget with its parts; says on standard error how many doubts there are.
+    pub(crate) fn load(&self) -> Result<Budget, Failure> {
+        let (budget, warnings) = input::load_budget(&self.budget).map_err(Failure::Input)?;
+        if !warnings.is_empty() {
+            let count = warnings.len();
+            let doubts = if count == 1 { "1 warning".into() } else { format!("{count} warnings") };
+            let file = printable(&self.budget.display().to_string()).into_owned();
+            terminal::say(&format!("{doubts} about the inputs; `lossbook check {file}` shows them"));
+        }
+        self.known_stage(&budget)?;
+        Ok(budget)
+    }
+
+    fn known_stage(&self, budget: &Budget) -> Result<(), Failure> {
+        let names = || budget.stages.iter().map(|stage| stage.name.as_str());
+        match self.stage.as_deref() {
+            Some(asked) if !names().any(|name| name == asked) => {
+                Err(unknown_stage(asked, &self.budget, &names().collect::<Vec<_>>()))
+            }
+            _ => Ok(()),
+        }
+    }
+}
+
+fn unknown_stage(asked: &str, budget: &Path, known: &[&str]) -> Failure {
+    let file = budget.display().to_string();
+    let list: Vec<String> = known.iter().map(|name| format!("`{}`", printable(name))).collect();
+    let hint = match hints::nearest(asked, known.iter().copied()) {
+        Some(near) => format!("did you mean `{}`? Its stages are {}", printable(near), list.join(", ")),
+        None => format!("its stages are {}", list.join(", ")),
+    };
+    Failure::asked(format!("{} has no stage `{}`", printable(&file), printable(asked)), hint)
+}

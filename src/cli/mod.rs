@@ -1,0 +1,70 @@
+//! The command line: one short file a verb, the words of it in one place.
+//!
+//! A new verb is a file with a clap `Args` struct and a `run`, a variant of [`Verb`] and an arm of [`Verb::run`].
+
+pub(crate) mod bug;
+mod compare;
+mod desk;
+mod failure;
+pub(crate) mod interrupt;
+mod load;
+mod options;
+mod progress;
+mod tabulate;
+pub(crate) mod terminal;
+mod words;
+
+use clap::{Parser, Subcommand};
+
+pub(crate) use failure::{Exit, Failure};
+use options::Common;
+
+/// Books every watt lost in a step-down rail to one part and one mechanism.
+///
+/// Synchronous rectifier, freewheel diode and linear regulator side by side, from a folder of parts and a budget file.
+#[derive(Debug, Parser)]
+#[command(
+    name = "lossbook",
+    version,
+    arg_required_else_help = true,
+    subcommand_required = true,
+    subcommand_help_heading = "Verbs",
+    subcommand_value_name = "VERB",
+    disable_help_subcommand = false,
+    after_help = AFTER,
+)]
+pub(crate) struct Command {
+    #[command(subcommand)]
+    pub(crate) verb: Verb,
+    #[command(flatten)]
+    pub(crate) common: Common,
+}
+
+const AFTER: &str = "\
+Start with:
+  lossbook template mosfets > parts/mine.yaml   type in a data sheet
+  lossbook template budget > rail.yaml          say what the rail must do
+  lossbook check rail.yaml                      what is wrong, assumed or missing
+  lossbook compare rail.yaml                    the stages side by side
+
+Exit codes: 0 done, 1 done and a requirement fails, 2 could not do it, 130 interrupted.
+Results go to standard output, everything else to standard error.
+
+Estimates do not replace measurement; hot parts and stored energy can injure.";
+
+/// What can be asked.
+#[derive(Debug, Subcommand)]
+pub(crate) enum Verb {
+    Compare(compare::Options),
+    Tabulate(tabulate::Options),
+}
+
+impl Verb {
+    /// Does it.
+    pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
+        match self {
+            Verb::Compare(options) => options.run(common),
+            Verb::Tabulate(options) => options.run(common),
+        }
+    }
+}

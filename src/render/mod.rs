@@ -1,0 +1,21 @@
+//! Documents into formats: one trait, one small file a format.
+
+mod markdown;
+mod panels;
+mod text;
+
+use std::io::{self, Write};
+
+pub use markdown::Markdown;
+pub use text::Text;
+
+use crate::report::Document;
+
+/// A format that people read.
+pub trait Render {
+    /// Writes a document whole.
+    ///
+    /// # Errors
+    /// When `out` cannot be written.
+    fn render(&self, document: &Document, out: &mut dyn Write) -> io::Result<()>;
+}
