@@ -21,6 +21,7 @@ use super::{budget_stages, budget_terms as terms, shortlist, yaml};
 use crate::budget::{Budget, InputFile};
 use crate::files;
 use crate::grid::{AxisName, Grid, OperatingPoint};
+use crate::hints::Vocabulary;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 
@@ -368,7 +369,7 @@ fn headline(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes)
         }
     }
     let point = budget_grid::point(&mut fields, rated, notes);
-    fields.close(|| crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
+    fields.close_with(Some(Vocabulary::Axis), || crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
     Some(OperatingPoint {
         input_voltage: point.input_voltage?,
         load: point.load?,

@@ -4,7 +4,7 @@ use std::collections::{HashMap, HashSet};
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use super::error::{InputError, OtherPlace, Severity, printable};
+use super::error::{InputError, OtherPlace, Severity};
 use super::kind::PartKind;
 use super::notes::{Blame, MOST, Notes};
 use super::part_file::{self, Attention, PartFile, ReadPart};
@@ -13,6 +13,7 @@ use super::place::{Source, resolve};
 use super::{outline, parallel};
 use crate::budget::{InputFile, Library};
 use crate::files;
+use crate::printable::printable;
 
 /// A library and how reading it went.
 #[derive(Debug, Default)]

@@ -12,7 +12,7 @@ pub mod gaps;
 pub mod inherit;
 pub mod kind;
 pub mod library;
-pub mod nearest;
+pub mod listed;
 pub mod node;
 pub mod notes;
 pub mod outline;

@@ -10,9 +10,10 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, ScanError, Span};
 
-use super::error::{InputError, OtherPlace, printable};
+use super::error::{InputError, OtherPlace};
 use super::notes::{Blame, MOST};
 use super::place::{Spot, excerpt};
+use crate::printable::printable;
 
 /// Deepest nesting of mappings and lists.
 pub const DEEPEST: usize = 64;

@@ -4,9 +4,9 @@ use std::collections::HashSet;
 use std::path::Path;
 use std::sync::Arc;
 
-use super::error::{InputError, printable};
+use super::error::InputError;
 use super::kind::{ALL_KINDS, AnySheet, PartKind};
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::outline::{Outline, Stretch, guard};
@@ -15,6 +15,8 @@ use super::place::{Source, resolve};
 use super::{parallel, yaml};
 use crate::budget::InputFile;
 use crate::files;
+use crate::hints::nearest;
+use crate::printable::printable;
 use crate::sheet::form::Faults;
 
 /// Whose gaps are worth a warning.

@@ -4,10 +4,11 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, Span};
 
-use super::error::{Excerpt, InputError, is_unprintable};
+use super::error::{Excerpt, InputError};
 use super::notes::{Mark, Note};
 use super::path::{KeyPath, Step, write_steps};
 use super::yaml::YamlFault;
+use crate::printable::is_unprintable;
 
 /// A stretch of a file that holds whole values.
 #[derive(Clone, Copy, Debug)]

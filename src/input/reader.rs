@@ -3,11 +3,12 @@
 use super::datum;
 use super::fields::Fields;
 use super::inherit::hand_down;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
 use super::sample::{key_names, sample};
+use crate::hints::nearest;
 use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 

@@ -2,7 +2,8 @@
 
 use annotate_snippets::{AnnotationKind, Group, Level, Origin, Renderer, Snippet};
 
-use super::error::{Excerpt, InputError, InputErrors, Severity, printable};
+use super::error::{Excerpt, InputError, InputErrors, Severity};
+use crate::printable::printable;
 
 /// Widest line drawn, in characters; longer ones are cut by the renderer.
 const WIDTH: usize = 120;
@@ -28,7 +29,7 @@ impl InputError {
             Severity::Error => Level::ERROR,
             Severity::Warning => Level::WARNING,
         };
-        let file = printable(&self.file.display().to_string());
+        let file = printable(&self.file.display().to_string()).into_owned();
         let mut group = Group::with_title(level.primary_title(self.title()));
         group = match &self.excerpt {
             Some(excerpt) => group.element(snippet(excerpt, self.line, &file, (AnnotationKind::Primary, ""))),
@@ -38,7 +39,7 @@ impl InputError {
             None => group.element(Origin::path(file)),
         };
         if let Some(other) = &self.other {
-            let file = printable(&other.file.display().to_string());
+            let file = printable(&other.file.display().to_string()).into_owned();
             group = match &other.excerpt {
                 Some(excerpt) => {
                     let mark = (AnnotationKind::Context, other.label.as_str());
