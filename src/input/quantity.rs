@@ -176,10 +176,9 @@ fn unknown_unit(unit: &str, expected: Expected<'_>) -> Blame {
 
 fn nearest_unit<'a>(unit: &str, known: impl Iterator<Item = &'a str> + Clone) -> Option<&'a str> {
     let spelt = unit.to_lowercase().replace(['µ', 'μ'], "u");
-    known
-        .clone()
-        .find(|candidate| candidate.to_lowercase().replace('µ', "u") == spelt)
-        .or_else(|| nearest(unit, known))
+    let same = known.clone().find(|candidate| candidate.to_lowercase().replace('µ', "u") == spelt);
+    // any two letters are near some unit
+    same.or_else(|| nearest(unit, known).filter(|_| spelt.chars().count() > 2))
 }
 
 /// The number at the start of a text and what follows it.
