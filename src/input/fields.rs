@@ -106,6 +106,7 @@ impl<'n, 't> Fields<'n, 't> {
                 notes.forget_missing(self.trail, near);
             }
             let hint = match near {
+                Some(near) if ours.is_some() && !self.has(near) => format!("it is called `{near}` here"),
                 _ if decimal => "decimals take a point, not a comma".to_string(),
                 Some(near) if self.has(near) => format!("`{near}` is there already; take this one out"),
                 Some(near) => format!("did you mean `{near}`?"),

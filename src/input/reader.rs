@@ -7,7 +7,7 @@ use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
-use super::sample::{key_names, sample};
+use super::sample::{key_names, list_sample, sample};
 use crate::hints::nearest;
 use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
@@ -44,7 +44,10 @@ pub fn read_fields(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut
 /// Reads a form that stands alone, then asks it whether its keys agree with one another.
 pub fn read_checked(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
     let before = notes.errors();
-    let Some(mut fields) = open(form, node, trail, notes) else { return };
+    let Some(mut fields) = Fields::open(node, trail, "its keys below its name, each with a value", notes)
+    else {
+        return;
+    };
     read_fields(form, &mut fields, notes);
     fields.close(|| key_names(form), notes);
     // keys that could not be read are zero, and would be blamed for it
@@ -151,8 +154,8 @@ impl KeyVisitor for Reader<'_, '_, '_> {
     fn forms(&mut self, key: &'static Key, need: Need, slot: &mut dyn FormList) {
         let Some(node) = self.take(key) else {
             if need == Need::Required {
-                let example = sample(slot.push());
-                self.missing(key, &format!("[{example}]"));
+                let example = list_sample(key, slot);
+                self.missing(key, &example);
             }
             return;
         };

@@ -62,6 +62,14 @@ pub fn sample(form: &mut dyn Form) -> String {
     format!("{{{}}}", sampler.0.join(", "))
 }
 
+/// A list of mappings in one line: the key's own example, else one item.
+pub fn list_sample(key: &Key, list: &mut dyn FormList) -> String {
+    match key.example {
+        "" => format!("[{}]", sample(list.push())),
+        example => example.to_string(),
+    }
+}
+
 struct Sampler(Vec<String>);
 
 impl Sampler {
@@ -103,8 +111,7 @@ impl KeyVisitor for Sampler {
 
     fn forms(&mut self, key: &'static Key, need: Need, slot: &mut dyn FormList) {
         if need == Need::Required {
-            let example = sample(slot.push());
-            self.add(key, &format!("[{example}]"));
+            self.add(key, &list_sample(key, slot));
         }
     }
 
