@@ -92,7 +92,15 @@ impl Failure {
                     Some(file) => format!("`{}`", printable(&file.display().to_string())),
                     None => "standard output".into(),
                 };
-                say(&format!("{place} cannot be written: {fault}; nothing was changed"), fault.hint());
+                match fault {
+                    FileFault::NotFound => say(
+                        &format!("{place} cannot be written: its folder does not exist; nothing was changed"),
+                        "make the folder first, or name another",
+                    ),
+                    fault => {
+                        say(&format!("{place} cannot be written: {fault}; nothing was changed"), fault.hint())
+                    }
+                }
             }
         }
     }

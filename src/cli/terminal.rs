@@ -13,12 +13,6 @@ pub(crate) fn width() -> usize {
     terminal.filter(|columns| *columns > 0).unwrap_or(PAGE)
 }
 
-/// Columns of standard error.
-pub(crate) fn stderr_width() -> usize {
-    let terminal = terminal_size::terminal_size_of(io::stderr()).map(|(width, _)| usize::from(width.0));
-    terminal.filter(|columns| *columns > 0).unwrap_or(PAGE)
-}
-
 /// True when text on standard output is to be coloured.
 pub(crate) fn colour(when: Colour) -> bool {
     match when {
