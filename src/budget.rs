@@ -53,6 +53,14 @@ pub struct Budget {
     pub library: Arc<Library>,
 }
 
+impl Budget {
+    /// Eight hexadecimal digits that change with any byte of any input file.
+    pub fn fingerprint(&self) -> String {
+        let joined: Vec<&str> = self.inputs.iter().map(|input| input.sha256.as_str()).collect();
+        crate::files::sha256_hex(joined.join("\n").as_bytes()).chars().take(8).collect()
+    }
+}
+
 /// What a rail must do, at the coordinates named; at every grid value of the others.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Requirement {

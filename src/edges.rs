@@ -1,5 +1,6 @@
 //! Edges of the switch node (E13-E16c): plateau, edge times, node capacitance and its energy.
 
+use crate::near::{Memory, NearLogarithm};
 use crate::parts::junction::JunctionCharge;
 use crate::parts::mosfet::Mosfet;
 
@@ -34,32 +35,38 @@ pub struct EdgeDurations {
 ///
 /// Source: gate-charge form of the voltage edges as in the FAN5236 data sheet, p. 16 eq. 19-20; the exact RC form of the current edges and the source
 /// inductance are derived. Valid while V_dr exceeds the plateau.
-#[inline]
-pub fn edge_durations(mosfet: &Mosfet, gate: &GateLoop, q_gd: f64, i_on: f64, i_off: f64) -> EdgeDurations {
+#[inline(always)]
+pub fn edge_durations(
+    mosfet: &Mosfet,
+    gate: &GateLoop,
+    q_gd: f64,
+    [i_on, i_off]: [f64; 2],
+    near: &mut Memory,
+) -> EdgeDurations {
     let given = &mosfet.edge_times;
     EdgeDurations {
-        t_ri: given.t_ri.unwrap_or_else(|| current_rise(mosfet, gate, i_on)),
+        t_ri: given.t_ri.unwrap_or_else(|| current_rise(mosfet, gate, i_on, &mut near.current_rise)),
         t_fv: given.t_fv.unwrap_or_else(|| q_gd * gate.r_on / (gate.v_gate - mosfet.plateau(i_on))),
         t_rv: given.t_rv.unwrap_or_else(|| q_gd * gate.r_off / mosfet.plateau(i_off)),
-        t_fi: current_fall(mosfet, gate.r_off, i_off),
+        t_fi: current_fall(mosfet, gate.r_off, i_off, &mut near.current_fall),
     }
 }
 
-#[inline]
-fn current_rise(mosfet: &Mosfet, gate: &GateLoop, current: f64) -> f64 {
+#[inline(always)]
+fn current_rise(mosfet: &Mosfet, gate: &GateLoop, current: f64, near: &mut NearLogarithm) -> f64 {
     let (v_th, v_pl) = (mosfet.v_th, mosfet.plateau(current));
-    let charging = gate.r_on * mosfet.gate_capacitance * ((gate.v_gate - v_th) / (gate.v_gate - v_pl)).ln();
+    let charging = gate.r_on * mosfet.gate_capacitance * near.at((gate.v_gate - v_th) / (gate.v_gate - v_pl));
     charging + mosfet.l_source * current / (gate.v_gate - 0.5 * (v_th + v_pl))
 }
 
 /// Time in which the channel current falls from `current` to zero, s (t_fi of E15), unless it was measured.
-#[inline]
-pub fn current_fall(mosfet: &Mosfet, r_off: f64, current: f64) -> f64 {
+#[inline(always)]
+pub fn current_fall(mosfet: &Mosfet, r_off: f64, current: f64, near: &mut NearLogarithm) -> f64 {
     if let Some(given) = mosfet.edge_times.t_fi {
         return given;
     }
     let (v_th, v_pl) = (mosfet.v_th, mosfet.plateau(current));
-    let discharging = r_off * mosfet.gate_capacitance * (v_pl / v_th).ln();
+    let discharging = r_off * mosfet.gate_capacitance * near.at(v_pl / v_th);
     discharging + mosfet.l_source * current / (0.5 * (v_th + v_pl))
 }
 
@@ -74,7 +81,7 @@ pub struct NodeCapacitance {
 
 impl NodeCapacitance {
     /// Q_node = a + b: charge to move the node between ground and the input, C.
-    #[inline]
+    #[inline(always)]
     pub fn total_charge(&self, v_in: f64) -> f64 {
         self.rectifier.charge(v_in) + self.high_side.charge(v_in)
     }
@@ -83,7 +90,7 @@ impl NodeCapacitance {
     ///
     /// E = E_h(V_i - v) + V_i (Q_r(V_i) - Q_r(v)) - (E_r(V_i) - E_r(v)). Derived; two equal devices from v = 0 give
     /// V_i Q_oss. Valid for a hard turn-on; zero once the inductor has carried the node to V_i.
-    #[inline]
+    #[inline(always)]
     pub fn capacitive_energy(&self, v_in: f64, v_node: f64) -> f64 {
         // the high side's own stored energy
         let own = self.high_side.energy(v_in - v_node);
@@ -130,9 +137,9 @@ impl NodeCapacitance {
 }
 
 /// sin θ with θ = asin((x (a + b) - b)/√(a² + b²)) + atan2(b, a) and x = min(1, moved/(a + b)).
-#[inline]
+#[inline(always)]
 fn sine_of_swing(a: f64, b: f64, moved: f64) -> f64 {
-    let hypotenuse = a.hypot(b);
+    let hypotenuse = (a * a + b * b).sqrt();
     if moved >= a + b || hypotenuse == 0.0 {
         return 1.0;
     }

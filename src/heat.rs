@@ -4,7 +4,8 @@ use crate::fitted::{HIGH, INDUCTOR, NODES, Nodes, RECTIFIER, Rectifier, SCHOTTKY
 use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
-use crate::model::{Contributions, Heated, HeatedRectifier, Prepared, Solved, Temperatures, linear};
+use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
+use crate::near::Memory;
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::linear_regulator::LinearRegulator;
 
@@ -20,31 +21,102 @@ const STEEP: f64 = 0.9;
 const SUSPECT: f64 = 0.4;
 
 /// Temperatures, losses and ledger of a switched stage at a point.
+///
+/// Newton steps with estimated slopes, then secants; when that does not settle, or ends where the thermal loop gain is
+/// suspicious, plain passes from ambient upwards decide.
+#[inline]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
-    let (temperatures, heated) = match quick(prepared)? {
-        Some(found) => found,
-        None => careful(prepared)?,
-    };
-    prepared.check_times(&heated.waveform)?;
-    Ok(solved(prepared, &temperatures, heated))
+    let mut search = Search::from_ambient(prepared.point.ambient);
+    let mut near = Memory::default();
+    for _ in 0..QUICK_PASSES {
+        let heated = prepared.heated(&search.t, &mut near)?;
+        let image = image(prepared, &heated);
+        if search.is_settled(&image) {
+            if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
+                break;
+            }
+            prepared.check_times(&heated.waveform)?;
+            return Ok(solved(prepared, &search.t, &heated));
+        }
+        if search.is_fresh() {
+            search.slopes = estimated_slopes(prepared, &heated, &search.t);
+        }
+        if !search.step(&image) {
+            break;
+        }
+    }
+    careful(prepared)
+}
+
+/// State of the quick search for the settled temperatures.
+struct Search {
+    t: Nodes,
+    /// Temperatures and image of the pass before.
+    before: Option<(Nodes, Nodes)>,
+    /// d(image)/dT of each node along the last step.
+    slopes: Nodes,
+}
+
+impl Search {
+    #[inline]
+    fn from_ambient(ambient: f64) -> Self {
+        Search { t: [ambient; NODES], before: None, slopes: [0.0; NODES] }
+    }
+
+    #[inline]
+    fn is_fresh(&self) -> bool {
+        self.before.is_none()
+    }
+
+    #[inline]
+    fn is_settled(&self, image: &Nodes) -> bool {
+        self.t.iter().zip(image).all(|(t, image)| (image - t).abs() <= SETTLED)
+    }
+
+    /// True when the slopes leave no doubt that the loop gain is below 1.
+    #[inline]
+    fn is_trusted(&self) -> bool {
+        self.slopes.iter().map(|slope| slope.abs()).sum::<f64>() < SUSPECT
+    }
+
+    /// Moves every node to where its line meets; false when the search should give up.
+    #[inline]
+    fn step(&mut self, image: &Nodes) -> bool {
+        if let Some((t_before, image_before)) = &self.before {
+            for node in 0..NODES {
+                let step = self.t[node] - t_before[node];
+                if step.abs() > 1e-3 * SETTLED {
+                    self.slopes[node] = (image[node] - image_before[node]) / step;
+                }
+            }
+        }
+        self.before = Some((self.t, *image));
+        let mut sound = true;
+        for ((t, image), slope) in self.t.iter_mut().zip(image).zip(&self.slopes) {
+            *t += (image - *t) / (1.0 - slope);
+            sound &= slope.abs() < STEEP && *t < HOTTEST;
+        }
+        sound
+    }
 }
 
 /// The ledger at temperatures that are given, not settled: "what if everything stayed at 25 °C".
 pub fn at_temperatures(prepared: &Prepared<'_>, temperatures: &Nodes) -> Result<Solved, Infeasible> {
-    let heated = prepared.heated(temperatures)?;
+    let heated = prepared.heated(temperatures, &mut Memory::default())?;
     prepared.check_times(&heated.waveform)?;
-    Ok(solved(prepared, temperatures, heated))
+    Ok(solved(prepared, temperatures, &heated))
 }
 
-fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: Heated) -> Solved {
+#[inline]
+fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: &Heated) -> Solved {
     let waveform = heated.waveform;
-    let contributions = Contributions { heated, unheated: prepared.unheated(&waveform) };
+    let unheated = prepared.unheated(&waveform);
     Solved {
         point: prepared.point,
         output_voltage: prepared.output_voltage,
         waveform: Some(waveform),
         temperatures: by_slot(prepared, temperatures),
-        ledger: contributions.ledger(),
+        ledger: ledger(heated, &unheated),
     }
 }
 
@@ -64,6 +136,13 @@ fn by_slot(prepared: &Prepared<'_>, temperatures: &Nodes) -> Temperatures {
         }
     }
     slots
+}
+
+/// Temperatures of the nodes of a solved point.
+pub fn nodes_of(prepared: &Prepared<'_>, solved: &Solved) -> Nodes {
+    let synchronous = prepared.stage.is_synchronous();
+    let at = |node: usize| solved.temperatures[slot_of(node, synchronous).index()];
+    std::array::from_fn(|node| at(node).unwrap_or(prepared.point.ambient))
 }
 
 /// T_a + R_th P/n + sum of K P of other slots, for every node (E50).
@@ -116,8 +195,13 @@ fn estimated_slopes(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Node
                 slopes[SCHOTTKY] = leakage.watts * diode.leakage.map_or(0.0, |law| law.per_kelvin);
             }
         }
-        (HeatedRectifier::Diode { leakage: Some(leakage), .. }, Rectifier::Diode(diode)) => {
-            slopes[RECTIFIER] = leakage.watts * diode.leakage.map_or(0.0, |law| law.per_kelvin);
+        (HeatedRectifier::Diode { leakage, conduction }, Rectifier::Diode(diode)) => {
+            let mean = 0.5 * (heated.waveform.valley + heated.waveform.peak);
+            let drift =
+                diode.forward_voltage(mean, t[RECTIFIER] + 1.0) - diode.forward_voltage(mean, t[RECTIFIER]);
+            let growth = diode.leakage.map_or(0.0, |law| law.per_kelvin);
+            slopes[RECTIFIER] =
+                conduction.share * mean * drift + leakage.map_or(0.0, |leakage| leakage.watts) * growth;
         }
         _ => {}
     }
@@ -133,57 +217,15 @@ fn largest(values: &Nodes) -> f64 {
     values.iter().fold(0.0, |largest: f64, value| largest.max(value.abs()))
 }
 
-/// Newton steps with estimated slopes, then secants. `None` when it does not settle or its end looks unstable.
-#[inline]
-fn quick(prepared: &Prepared<'_>) -> Result<Option<(Nodes, Heated)>, Infeasible> {
-    let mut t = [prepared.point.ambient; NODES];
-    let mut before: Option<(Nodes, Nodes)> = None;
-    let mut slopes: Nodes = [0.0; NODES];
-    for _ in 0..QUICK_PASSES {
-        let heated = prepared.heated(&t)?;
-        let image = image(prepared, &heated);
-        let mut moved = 0.0_f64;
-        for node in 0..NODES {
-            moved = moved.max((image[node] - t[node]).abs());
-        }
-        if moved <= SETTLED {
-            let stable = slopes.iter().map(|slope| slope.abs()).sum::<f64>() < SUSPECT
-                || loop_gain(prepared, &t)? < 1.0;
-            return Ok((stable && largest(&t) < HOTTEST).then_some((t, heated)));
-        }
-        match &before {
-            None => slopes = estimated_slopes(prepared, &heated, &t),
-            Some((t_before, image_before)) => {
-                for node in 0..NODES {
-                    let step = t[node] - t_before[node];
-                    if step.abs() > 1e-3 * SETTLED {
-                        slopes[node] = (image[node] - image_before[node]) / step;
-                    }
-                }
-            }
-        }
-        before = Some((t, image));
-        for node in 0..NODES {
-            let slope = slopes[node];
-            if !(slope.abs() < STEEP) {
-                return Ok(None);
-            }
-            t[node] += (image[node] - t[node]) / (1.0 - slope);
-        }
-        if !(largest(&t) < HOTTEST) {
-            return Ok(None);
-        }
-    }
-    Ok(None)
-}
-
 /// Plain passes from ambient upwards: they reach the lowest settled temperature, which is the one a cold start finds.
-fn careful(prepared: &Prepared<'_>) -> Result<(Nodes, Heated), Infeasible> {
+#[cold]
+fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut t = [prepared.point.ambient; NODES];
     let mut weight: f64 = 1.0;
+    let mut near = Memory::default();
     let mut last_sign = [0.0; NODES];
     for _ in 0..CAREFUL_PASSES {
-        let heated = prepared.heated(&t)?;
+        let heated = prepared.heated(&t, &mut near)?;
         let image = image(prepared, &heated);
         let mut difference = [0.0; NODES];
         for node in 0..NODES {
@@ -191,10 +233,11 @@ fn careful(prepared: &Prepared<'_>) -> Result<(Nodes, Heated), Infeasible> {
         }
         if largest(&difference) <= SETTLED {
             let gain = loop_gain(prepared, &t)?;
-            if gain < 1.0 {
-                return Ok((t, heated));
+            if gain >= 1.0 {
+                return Err(unstable(prepared, &t, gain));
             }
-            return Err(unstable(prepared, &t, gain));
+            prepared.check_times(&heated.waveform)?;
+            return Ok(solved(prepared, &t, &heated));
         }
         // a difference that changes sign is a swing: halve the steps
         let swings = (0..NODES).any(|node| difference[node] * last_sign[node] < 0.0);
@@ -233,7 +276,7 @@ pub fn loop_gain(prepared: &Prepared<'_>, t: &Nodes) -> Result<f64, Infeasible> 
         let side = |sign: f64| {
             let mut moved = *t;
             moved[column] += sign * GAIN_STEP;
-            prepared.heated(&moved).map(|heated| image(prepared, &heated))
+            prepared.heated(&moved, &mut Memory::default()).map(|heated| image(prepared, &heated))
         };
         let (above, below) = (side(1.0)?, side(-1.0)?);
         for row in 0..NODES {

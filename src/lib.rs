@@ -1,10 +1,15 @@
 //! lossbook books every watt lost in a step-down rail to one part and one mechanism.
 
 pub mod answer;
+pub mod average;
 pub mod budget;
+pub mod candidate;
+pub mod columns;
 pub mod compare;
+pub mod crossover;
 pub mod edges;
 pub mod files;
+pub mod findings;
 pub mod fit;
 pub mod fitted;
 pub mod grid;
@@ -13,15 +18,21 @@ pub mod hints;
 pub mod infeasible;
 pub mod input;
 pub mod ledger;
+pub mod loads;
 pub mod loss;
 pub mod model;
+pub mod near;
 pub mod parts;
 pub mod printable;
+pub mod ratings;
+pub mod record;
 pub mod render;
 pub mod report;
+pub mod requirements;
 pub mod sheet;
 pub mod stage;
 pub mod sweep;
 pub mod tabulate;
 pub mod units;
+pub mod values;
 pub mod waveform;

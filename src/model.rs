@@ -17,7 +17,7 @@ use crate::loss::{
     esr::{self, End, Esr},
     gate_drive::{self, DrivePower, GatePower},
     ground_current::{self, GroundCurrent},
-    leakage::{self, Leakage},
+    leakage::{self, Leakage, ReverseVoltage},
     output_charge::{self, OutputCharge},
     overlap::{self, EdgeConditions, LowSideOverlap, Overlap},
     pass::{self, Pass},
@@ -27,6 +27,7 @@ use crate::loss::{
     snubber::{self, Snubber},
     winding::{self, Winding},
 };
+use crate::near::{Memory, NearLogarithm};
 use crate::parts::controller::Supply;
 use crate::parts::copper::hot_ratio;
 use crate::parts::linear_regulator::LinearRegulator;
@@ -52,6 +53,8 @@ pub struct Prepared<'a> {
     pub inductance: f64,
     /// R(T)/R(25 °C) of the board's copper.
     pub board_ratio: f64,
+    /// Reverse voltages of a diode: input and output; without logarithms when no diode has leakage data.
+    pub reverse: [ReverseVoltage; 2],
     /// Capacitance of the switch node.
     pub node: NodeCapacitance,
     /// Q_node at the input voltage, C.
@@ -119,15 +122,6 @@ pub struct Unheated {
     pub snubber: Snubber,
 }
 
-/// Every contribution of a switched stage at one point and one set of temperatures.
-#[derive(Clone, Debug)]
-pub struct Contributions {
-    /// What heats the parts.
-    pub heated: Heated,
-    /// The rest.
-    pub unheated: Unheated,
-}
-
 /// Contributions of a linear stage.
 #[derive(Clone, Copy, Debug)]
 #[allow(missing_docs)] // named as the accounts of the ledger
@@ -150,6 +144,10 @@ impl<'a> Prepared<'a> {
             r_on: driver.r_source + r_g,
             r_off: driver.r_sink + r_g,
         };
+        let leaks = match &stage.rectifier {
+            Rectifier::Synchronous { schottky, .. } => schottky.as_ref().is_some_and(|d| d.leakage.is_some()),
+            Rectifier::Diode(diode) => diode.leakage.is_some(),
+        };
         let (rectifier, low_gate) = match &stage.rectifier {
             Rectifier::Synchronous { low_side, schottky } => {
                 let own = low_side.q_oss.unwrap_or_default();
@@ -168,6 +166,7 @@ impl<'a> Prepared<'a> {
             drive,
             inductance: stage.inductor.inductance(point.load),
             board_ratio,
+            reverse: if leaks { [v_in, v_out].map(ReverseVoltage::of) } else { Default::default() },
             node,
             node_charge: node.total_charge(v_in),
             node_energy: node.capacitive_energy(v_in, 0.0),
@@ -180,13 +179,13 @@ impl<'a> Prepared<'a> {
 
     /// The path of the inductor current at temperatures.
     #[inline]
-    pub fn current_path(&self, t: &Nodes) -> CurrentPath {
+    pub fn current_path(&self, t: &Nodes, near: &mut Memory) -> CurrentPath {
         let (stage, point) = (self.stage, &self.point);
         let board = &stage.board;
         let r_path = board.low_side_path * self.board_ratio;
         let off = match &stage.rectifier {
             Rectifier::Synchronous { low_side, .. } => OffPath::Synchronous {
-                r_channel: self.drive.r_low * low_side.hot_ratio(t[RECTIFIER]),
+                r_channel: self.drive.r_low * low_side.hot_ratio(t[RECTIFIER], &mut near.low_ratio),
                 r_path,
                 v_dead: self.dead_time_drop(point.load, t),
                 dead_share: (stage.controller.t_1 + stage.controller.t_2) * point.switching_frequency,
@@ -201,7 +200,7 @@ impl<'a> Prepared<'a> {
             load: point.load,
             frequency: point.switching_frequency,
             inductance: self.inductance,
-            r_high: self.drive.r_high * stage.high_side.hot_ratio(t[HIGH])
+            r_high: self.drive.r_high * stage.high_side.hot_ratio(t[HIGH], &mut near.high_ratio)
                 + board.high_side_path * self.board_ratio,
             r_series: stage.inductor.dcr * stage.inductor.hot_ratio(t[INDUCTOR])
                 + (board.output_path + board.sense) * self.board_ratio,
@@ -232,11 +231,11 @@ impl<'a> Prepared<'a> {
     }
 
     /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
-    #[inline]
-    pub fn heated(&self, t: &Nodes) -> Result<Heated, Infeasible> {
+    #[inline(always)]
+    pub fn heated(&self, t: &Nodes, near: &mut Memory) -> Result<Heated, Infeasible> {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let (controller, high) = (&stage.controller, &stage.high_side);
-        let path = self.current_path(t);
+        let path = self.current_path(t, near);
         let waveform = Waveform::solve(&path, self.light_load_rule())
             .ok_or(Infeasible::InputTooLow { v_in, v_out: self.v_out })?;
         let frequency = waveform.frequency;
@@ -247,7 +246,7 @@ impl<'a> Prepared<'a> {
 
         // high side
         let i_on = waveform.valley.max(0.0);
-        let durations = edges::edge_durations(high, &self.high_gate, self.q_gd, i_on, waveform.peak);
+        let durations = edges::edge_durations(high, &self.high_gate, self.q_gd, [i_on, waveform.peak], near);
         let conditions = EdgeConditions {
             v_in,
             i_on,
@@ -258,7 +257,7 @@ impl<'a> Prepared<'a> {
         };
         let v_node =
             output_charge::voltage_before_turn_on(&waveform, &self.node, v_in, self.v_out, controller.t_2);
-        let r_high = self.drive.r_high * high.hot_ratio(t[HIGH]);
+        let r_high = self.drive.r_high * high.hot_ratio(t[HIGH], &mut near.high_ratio);
         let drivers = [controller.high_side.r_source, controller.high_side.r_sink];
         let high_gate =
             gate_drive::gate_power(self.drive.q_high, self.drive.v_high, high.r_g, drivers, frequency);
@@ -270,7 +269,7 @@ impl<'a> Prepared<'a> {
             Rectifier::Diode(diode) => diode.recovery.as_ref(),
         };
         let switched_off = if waveform.is_continuous() { waveform.valley } else { 0.0 };
-        let rectifier = self.heated_rectifier(&waveform, t);
+        let rectifier = self.heated_rectifier(&waveform, t, near);
         let low_gate = match &rectifier {
             HeatedRectifier::Synchronous { gate, .. } => *gate,
             HeatedRectifier::Diode { .. } => GatePower::default(),
@@ -293,29 +292,34 @@ impl<'a> Prepared<'a> {
             ac_winding: self
                 .ac_excess
                 .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * copper_ratio)),
-            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n)),
+            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n, &mut near.core)),
             ringing: ringing::ringing(&self.node, v_in, settled, frequency),
             drive: gate_drive::drive_power(&high_gate, &low_gate, self.supply_voltage(), frequency),
             bias: bias::bias(&waveform, v_in, controller.i_q, controller.i_q_sleep),
         })
     }
 
-    #[inline]
-    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes) -> HeatedRectifier {
+    #[inline(always)]
+    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes, near: &mut Memory) -> HeatedRectifier {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let controller = &stage.controller;
         match &stage.rectifier {
             Rectifier::Diode(diode) => HeatedRectifier::Diode {
                 conduction: conduction::freewheel_diode(waveform, diode, t[RECTIFIER]),
-                leakage: leakage::leakage(waveform, diode, [v_in, self.v_out], t[RECTIFIER]),
+                leakage: leakage::leakage(waveform, diode, self.reverse, t[RECTIFIER], &mut near.leakage),
             },
             Rectifier::Synchronous { low_side, schottky } => {
                 let (t_1, t_2, frequency) = (controller.t_1, controller.t_2, waveform.frequency);
                 let ends = DeadTimeEnds::of(waveform, t_1, t_2);
-                let resistance = self.drive.r_low * low_side.hot_ratio(t[RECTIFIER]);
+                let resistance = self.drive.r_low * low_side.hot_ratio(t[RECTIFIER], &mut near.low_ratio);
                 let reverse = (-waveform.valley).max(0.0);
                 let (overlap, high_dead_time) = if reverse > 0.0 {
-                    let t_fi = edges::current_fall(low_side, self.low_gate.r_off, reverse);
+                    let t_fi = edges::current_fall(
+                        low_side,
+                        self.low_gate.r_off,
+                        reverse,
+                        &mut NearLogarithm::default(),
+                    );
                     let v_sd = stage.high_side.body_diode(reverse);
                     (
                         overlap::low_side(v_in, reverse, t_fi, frequency),
@@ -343,9 +347,9 @@ impl<'a> Prepared<'a> {
                         drivers,
                         frequency,
                     ),
-                    schottky: schottky
-                        .as_ref()
-                        .map(|diode| leakage::leakage(waveform, diode, [v_in, self.v_out], t[SCHOTTKY])),
+                    schottky: schottky.as_ref().map(|diode| {
+                        leakage::leakage(waveform, diode, self.reverse, t[SCHOTTKY], &mut near.leakage)
+                    }),
                     high_dead_time,
                 }
             }
@@ -437,59 +441,56 @@ impl Heated {
     }
 }
 
-impl Contributions {
-    /// Books every contribution to its account.
-    pub fn ledger(&self) -> Ledger {
-        use Account as A;
-        let mut ledger = Ledger::default();
-        let heated = &self.heated;
-        ledger.book(A::HighSideConduction, heated.high_conduction.watts);
-        ledger.book(A::HighSideOverlap, heated.overlap.watts);
-        ledger.book(A::HighSideOutputCharge, heated.output_charge.watts);
-        ledger.book(A::HighSideRecovery, heated.recovery.map_or(0.0, |recovery| recovery.watts));
-        ledger.book(A::HighSideGateDrive, heated.high_gate.watts);
-        match &heated.rectifier {
-            HeatedRectifier::Synchronous {
-                conduction,
-                overlap,
-                output_charge,
-                dead_time,
-                gate,
-                schottky,
-                high_dead_time,
-            } => {
-                ledger.book(A::HighSideDeadTime, high_dead_time.watts);
-                ledger.book(A::LowSideConduction, conduction.watts);
-                ledger.book(A::LowSideOverlap, overlap.watts);
-                ledger.book(A::LowSideOutputCharge, output_charge.watts);
-                ledger.book(A::LowSideGateDrive, gate.watts);
-                match schottky {
-                    Some(leakage) => {
-                        ledger.book(A::ParallelSchottkyDeadTime, dead_time.watts);
-                        ledger.book(A::ParallelSchottkyLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
-                    }
-                    None => ledger.book(A::LowSideDeadTime, dead_time.watts),
+/// Books every contribution of a switched stage to its account.
+#[inline]
+pub fn ledger(heated: &Heated, unheated: &Unheated) -> Ledger {
+    use Account as A;
+    let mut ledger = Ledger::default();
+    ledger.book(A::HighSideConduction, heated.high_conduction.watts);
+    ledger.book(A::HighSideOverlap, heated.overlap.watts);
+    ledger.book(A::HighSideOutputCharge, heated.output_charge.watts);
+    ledger.book(A::HighSideRecovery, heated.recovery.map_or(0.0, |recovery| recovery.watts));
+    ledger.book(A::HighSideGateDrive, heated.high_gate.watts);
+    match &heated.rectifier {
+        HeatedRectifier::Synchronous {
+            conduction,
+            overlap,
+            output_charge,
+            dead_time,
+            gate,
+            schottky,
+            high_dead_time,
+        } => {
+            ledger.book(A::HighSideDeadTime, high_dead_time.watts);
+            ledger.book(A::LowSideConduction, conduction.watts);
+            ledger.book(A::LowSideOverlap, overlap.watts);
+            ledger.book(A::LowSideOutputCharge, output_charge.watts);
+            ledger.book(A::LowSideGateDrive, gate.watts);
+            match schottky {
+                Some(leakage) => {
+                    ledger.book(A::ParallelSchottkyDeadTime, dead_time.watts);
+                    ledger.book(A::ParallelSchottkyLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
                 }
-            }
-            HeatedRectifier::Diode { conduction, leakage } => {
-                ledger.book(A::FreewheelDiodeConduction, conduction.watts);
-                ledger.book(A::FreewheelDiodeLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
+                None => ledger.book(A::LowSideDeadTime, dead_time.watts),
             }
         }
-        ledger.book(A::InductorWinding, heated.winding.watts);
-        ledger.book(A::InductorAcWinding, heated.ac_winding.map_or(0.0, |ac| ac.watts));
-        ledger.book(A::InductorCore, heated.core.map_or(0.0, |core| core.watts));
-        ledger.book(A::InductorRinging, heated.ringing.watts);
-        ledger.book(A::ControllerGateDrive, heated.drive.watts);
-        ledger.book(A::ControllerBias, heated.bias.watts);
-        let unheated = &self.unheated;
-        ledger.book(A::InputCapacitorsEsr, unheated.input_esr.watts);
-        ledger.book(A::OutputCapacitorsEsr, unheated.output_esr.watts);
-        ledger.book(A::BoardCopper, unheated.copper.watts);
-        ledger.book(A::BoardSense, unheated.sense.watts);
-        ledger.book(A::BoardSnubber, unheated.snubber.watts);
-        ledger
+        HeatedRectifier::Diode { conduction, leakage } => {
+            ledger.book(A::FreewheelDiodeConduction, conduction.watts);
+            ledger.book(A::FreewheelDiodeLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
+        }
     }
+    ledger.book(A::InductorWinding, heated.winding.watts);
+    ledger.book(A::InductorAcWinding, heated.ac_winding.map_or(0.0, |ac| ac.watts));
+    ledger.book(A::InductorCore, heated.core.map_or(0.0, |core| core.watts));
+    ledger.book(A::InductorRinging, heated.ringing.watts);
+    ledger.book(A::ControllerGateDrive, heated.drive.watts);
+    ledger.book(A::ControllerBias, heated.bias.watts);
+    ledger.book(A::InputCapacitorsEsr, unheated.input_esr.watts);
+    ledger.book(A::OutputCapacitorsEsr, unheated.output_esr.watts);
+    ledger.book(A::BoardCopper, unheated.copper.watts);
+    ledger.book(A::BoardSense, unheated.sense.watts);
+    ledger.book(A::BoardSnubber, unheated.snubber.watts);
+    ledger
 }
 
 /// Contributions of a linear regulator (E43), or why it cannot run here.

@@ -71,7 +71,7 @@ pub fn in_order<T: Send, E>(
 }
 
 /// Maps items in parallel, results in order.
-pub fn map<I: Sync, T: Send>(items: &[I], work: impl Fn(&I) -> T + Sync + Send) -> Vec<T> {
+pub fn map<'a, I: Sync, T: Send>(items: &'a [I], work: impl Fn(&'a I) -> T + Sync + Send) -> Vec<T> {
     items.par_iter().map(work).collect()
 }
 

@@ -108,7 +108,7 @@ pub struct Waveform {
 }
 
 /// Mean square of a ramp from a to b (E4): (a² + a b + b²)/3, A².
-#[inline]
+#[inline(always)]
 pub fn ramp_mean_square(a: f64, b: f64) -> f64 {
     (a * a + a * b + b * b) / 3.0
 }
@@ -117,7 +117,7 @@ impl Waveform {
     /// The waveform of a current path, or `None` when no duty makes this output voltage.
     ///
     /// Continuous conduction (E2, E3) unless the rectifier blocks and the load is below half the ripple (E5, E6).
-    #[inline]
+    #[inline(always)]
     pub fn solve(path: &CurrentPath, rule: LightLoadRule) -> Option<Waveform> {
         let continuous = Waveform::continuous(path)?;
         if rule.blocks && path.load < 0.5 * continuous.ripple() {
@@ -128,7 +128,7 @@ impl Waveform {
 
     /// E2, E3: volt-second balance with every drop at the load current. The duty may come out at 1 or more: the caller
     /// decides. Derived; agrees with an exact periodic steady state to 1e-5.
-    #[inline]
+    #[inline(always)]
     pub fn continuous(path: &CurrentPath) -> Option<Waveform> {
         let i = path.load;
         let (numerator, denominator) = match path.off {
@@ -172,7 +172,7 @@ impl Waveform {
     ///
     /// Charge balance of triangular pulses, lossless but for the diode's drop. Source of the maker's form
     /// I = I_p² f L V_i/(2 V_o (V_i - V_o)): LT1376 data sheet p. 11. Smallest peak: derived.
-    #[inline]
+    #[inline(always)]
     pub fn discontinuous(path: &CurrentPath, rule: LightLoadRule) -> Option<Waveform> {
         let v_on = path.v_in - path.v_out;
         let v_off = match path.off {
@@ -208,44 +208,44 @@ impl Waveform {
     }
 
     /// Peak to peak ripple of the inductor current, A.
-    #[inline]
+    #[inline(always)]
     pub fn ripple(&self) -> f64 {
         self.peak - self.valley
     }
 
     /// Share of the period in which the inductor current rests at zero.
-    #[inline]
+    #[inline(always)]
     pub fn idle_share(&self) -> f64 {
         (1.0 - self.duty - self.off_duty).max(0.0)
     }
 
     /// True while the rectifier never blocks.
-    #[inline]
+    #[inline(always)]
     pub fn is_continuous(&self) -> bool {
         self.mode == Mode::Continuous
     }
 
     /// Squared RMS current of the inductor, A² (E4).
-    #[inline]
+    #[inline(always)]
     pub fn inductor_square(&self) -> f64 {
         if self.is_continuous() { self.mean_square } else { (self.duty + self.off_duty) * self.mean_square }
     }
 
     /// Mean input current of the high side, A.
-    #[inline]
+    #[inline(always)]
     pub fn mean_input_current(&self) -> f64 {
         0.5 * self.duty * (self.valley + self.peak)
     }
 
     /// Squared RMS current of the input capacitors, A² (E4).
-    #[inline]
+    #[inline(always)]
     pub fn input_capacitor_square(&self, load: f64) -> f64 {
         let mean = if self.is_continuous() { self.duty * load } else { self.mean_input_current() };
         (self.duty * self.mean_square - mean * mean).max(0.0)
     }
 
     /// Squared RMS current of the output capacitors, A² (E4).
-    #[inline]
+    #[inline(always)]
     pub fn output_capacitor_square(&self, load: f64) -> f64 {
         (self.inductor_square() - load * load).max(0.0)
     }

@@ -55,7 +55,7 @@ impl<'n, 't> Fields<'n, 't> {
 
     /// Notes that a key is missing.
     pub fn missing(&self, name: &str, hint: &str, notes: &mut Notes) {
-        notes.key_error(self.trail, Blame::new(format!("`{name}` is missing"), hint));
+        notes.missing(self.trail, name, hint);
     }
 
     /// A mapping without keys.
@@ -88,7 +88,11 @@ impl<'n, 't> Fields<'n, 't> {
         let known = known();
         for (key, node) in self.untaken() {
             let decimal = *node == Node::Null && key.starts_with(|c: char| c.is_ascii_digit());
-            let hint = match nearest(key, known.iter().copied()) {
+            let near = nearest(key, known.iter().copied());
+            if let Some(near) = near.filter(|near| !self.has(near)) {
+                notes.forget_missing(self.trail, near);
+            }
+            let hint = match near {
                 _ if decimal => "decimals take a point, not a comma".to_string(),
                 Some(near) if self.has(near) => format!("`{near}` is there already; take this one out"),
                 Some(near) => format!("did you mean `{near}`?"),

@@ -4,6 +4,7 @@ pub mod budget_grid;
 pub mod budget_keys;
 pub mod budget_stages;
 pub mod budget_terms;
+pub mod check;
 pub mod datum;
 pub mod error;
 pub mod fields;
@@ -22,16 +23,20 @@ pub mod place;
 pub mod probe;
 pub mod quantity;
 pub mod reader;
+pub mod render;
 pub mod sample;
 pub mod shelf;
 pub mod shortlist;
 pub mod show;
+pub mod template;
 pub mod units;
 pub mod yaml;
 
 use std::path::{Path, PathBuf};
 
 use crate::budget::{Budget, InputFile, Library};
+pub use check::{Checked, check_path};
+pub use template::{TEMPLATES, template};
 pub use error::{InputError, InputErrors, Severity, Warning};
 
 /// A library with its warnings and the files it was read from.

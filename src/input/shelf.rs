@@ -79,7 +79,7 @@ impl Shelf<'_> {
             None => format!("add it under `{}`; ", kind.key()),
         };
         hint.push_str(&format!("(searched: {})", self.folders));
-        Blame::new(format!("no part is named `{shown}` among the {}", kind.key().replace('_', " ")), hint)
+        Blame::new(format!("no part is named `{shown}` among the {}", kind.plural()), hint)
     }
 
     /// A part with its count: `name` or `{part: name, count: 2}`.

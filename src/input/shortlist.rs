@@ -123,7 +123,7 @@ fn candidates(
         single => vec![shelf.name(kind, single, trail, notes)?],
     };
     if names.is_empty() && shelf.complete && matches!(node, Node::Text(_)) {
-        let reason = format!("the library has no {}", kind.key().replace('_', " "));
+        let reason = format!("the library has no {}", kind.plural());
         notes.value_error(trail, node, Blame::new(reason, "add some, or take the slot out of the shortlist"));
     }
     Some(names)
@@ -170,7 +170,7 @@ fn filtered(
         kind.names(shelf.library).into_iter().filter(|name| passes(name)).cloned().collect();
     if names.is_empty() && shelf.complete {
         let blame = Blame::new(
-            format!("none of the {} passes", kind.key().replace('_', " ")),
+            format!("none of the {} passes", kind.plural()),
             "loosen the limits; a part that lacks a value does not pass",
         );
         notes.at_value(trail, blame);

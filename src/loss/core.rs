@@ -1,5 +1,6 @@
 //! Core loss of the inductor (E32-E34).
 
+use crate::near::CoreMemory;
 use crate::parts::core::CoreLaw;
 use crate::waveform::Waveform;
 
@@ -21,7 +22,7 @@ pub struct Core {
 /// P = n K (s λ)^β f_e^α (D1^(1-α) + D2^(1-α)), λ = V_on D1/f_e; iGSE (Venkatachalam et al., COMPEL 2002) in closed form
 /// for a triangle. With a material table the composite waveform hypothesis (Sullivan et al. 2010, from memory). Zero at 0 A in discontinuous mode.
 #[inline]
-pub fn core(waveform: &Waveform, law: &CoreLaw, n: f64) -> Core {
+pub fn core(waveform: &Waveform, law: &CoreLaw, n: f64, near: &mut CoreMemory) -> Core {
     if waveform.frequency <= 0.0 || waveform.duty <= 0.0 {
         return Core::default();
     }
@@ -29,11 +30,11 @@ pub fn core(waveform: &Waveform, law: &CoreLaw, n: f64) -> Core {
     match law {
         CoreLaw::Power(law) => {
             let swing = law.per_volt_second * volt_seconds;
-            let (ln_rise, ln_fall) = (waveform.duty.ln(), waveform.off_duty.ln());
-            let common = law.ln_k + law.beta * swing.ln() + law.alpha * waveform.frequency.ln();
-            let slope = 1.0 - law.alpha;
-            let duty_factor = (slope * ln_rise).exp() + (slope * ln_fall).exp();
-            Core { volt_seconds, swing, duty_factor, watts: n * common.exp() * duty_factor }
+            let exponent = 1.0 - law.alpha;
+            let duty_factor =
+                near.rise.at(waveform.duty, exponent) + near.fall.at(waveform.off_duty, exponent);
+            let density = near.swing.at(swing, law.beta) * near.frequency.at(waveform.frequency, law.alpha);
+            Core { volt_seconds, swing, duty_factor, watts: n * law.k * density * duty_factor }
         }
         CoreLaw::Material(law) => {
             let swing = law.per_volt_second * volt_seconds;

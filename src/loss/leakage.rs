@@ -1,5 +1,6 @@
 //! Reverse leakage of a diode (E27).
 
+use crate::near::LeakageMemory;
 use crate::parts::diode::Diode;
 use crate::waveform::Waveform;
 
@@ -14,15 +15,37 @@ pub struct Leakage {
     pub watts: f64,
 }
 
+/// A voltage and its logarithm.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+pub struct ReverseVoltage {
+    /// V
+    pub volts: f64,
+    /// ln of the volts.
+    pub logarithm: f64,
+}
+
+impl ReverseVoltage {
+    /// A voltage with its logarithm.
+    pub fn of(volts: f64) -> Self {
+        ReverseVoltage { volts, logarithm: volts.ln() }
+    }
+}
+
 /// n (D1 V_i I_R(V_i, T_j) + (1 - D1 - D2) V_o I_R(V_o, T_j)) (E27), or `None` without leakage data.
 ///
 /// Source: ln I_R linear in T between data-sheet points; AN869 (ST) gives a slope of 0.055 /K. Voltages in V, T_j in °C.
 #[inline]
-pub fn leakage(waveform: &Waveform, diode: &Diode, [v_in, v_out]: [f64; 2], t_j: f64) -> Option<Leakage> {
+pub fn leakage(
+    waveform: &Waveform,
+    diode: &Diode,
+    [v_in, v_out]: [ReverseVoltage; 2],
+    t_j: f64,
+    near: &mut LeakageMemory,
+) -> Option<Leakage> {
     let law = diode.leakage.as_ref()?;
-    let at_input = law.at(v_in, t_j);
+    let at_input = near.input.at(law.ln_at(v_in.logarithm, t_j));
     let idle = if waveform.is_continuous() { 0.0 } else { waveform.idle_share() };
-    let at_output = if idle > 0.0 { law.at(v_out, t_j) } else { 0.0 };
-    let watts = diode.n * (waveform.duty * v_in * at_input + idle * v_out * at_output);
+    let at_output = if idle > 0.0 { near.output.at(law.ln_at(v_out.logarithm, t_j)) } else { 0.0 };
+    let watts = diode.n * (waveform.duty * v_in.volts * at_input + idle * v_out.volts * at_output);
     Some(Leakage { at_input, at_output, watts })
 }

@@ -17,8 +17,8 @@ pub enum CoreLaw {
 /// P = K (s λ)^β f^α (D1^(1-α) + D2^(1-α)) with λ the volt-seconds of the rising slope.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct PowerLaw {
-    /// ln K
-    pub ln_k: f64,
+    /// K
+    pub k: f64,
     /// Exponent of frequency.
     pub alpha: f64,
     /// Exponent of the flux swing or of the ripple.
@@ -37,15 +37,15 @@ impl CoreLaw {
         let [a, alpha, beta] = fit::plane(&sheet.core_loss_logs())?;
         let at_half = LN_2 * alpha; // ln of 2 (1/2)^(1-α)
         let per_volt_second = 1.0 / sheet.inductance.value;
-        Some(CoreLaw::Power(PowerLaw { ln_k: a - at_half, alpha, beta, per_volt_second }))
+        Some(CoreLaw::Power(PowerLaw { k: (a - at_half).exp(), alpha, beta, per_volt_second }))
     }
 
     fn of_core(core: &Core) -> Option<Self> {
         let (volume, per_volt_second) = (core.volume.value, 1.0 / (core.turns.value * core.area.value));
         if let (Some(k), Some(alpha), Some(beta)) = (&core.k, &core.alpha, &core.beta) {
             let (alpha, beta) = (alpha.value, beta.value);
-            let ln_k = (volume * igse_coefficient(k.value, alpha, beta)).ln();
-            return Some(CoreLaw::Power(PowerLaw { ln_k, alpha, beta, per_volt_second }));
+            let k = volume * igse_coefficient(k.value, alpha, beta);
+            return Some(CoreLaw::Power(PowerLaw { k, alpha, beta, per_volt_second }));
         }
         MaterialLaw::fit(&core.material_logs(), volume, per_volt_second).map(CoreLaw::Material)
     }

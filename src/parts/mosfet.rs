@@ -1,5 +1,6 @@
 //! MOSFET: the curves of the model, for n devices in parallel.
 
+use crate::near::NearPower;
 use crate::parts::curve::Curve;
 use crate::parts::junction::JunctionCharge;
 use crate::sheet::edge_times::EdgeTimes;
@@ -75,8 +76,8 @@ impl Mosfet {
 
     /// R(T_j)/R(25 °C) (E11).
     #[inline]
-    pub fn hot_ratio(&self, t_j: f64) -> f64 {
-        ((t_j + 273.15) / COLD_KELVIN).powf(self.hot_exponent)
+    pub fn hot_ratio(&self, t_j: f64, near: &mut NearPower) -> f64 {
+        near.at((t_j + 273.15) * (1.0 / COLD_KELVIN), self.hot_exponent)
     }
 
     /// Plateau voltage at a drain current of all devices (E13), V.

@@ -18,45 +18,22 @@
 //! answer.fact("load", Cell::setting(6.0, Dimension::Current));
 //! ```
 
+mod balance;
+pub mod caption;
 mod cell;
+pub mod comparison;
 mod layout;
+pub mod needs;
 pub mod number;
 mod table;
+pub mod tables;
+pub mod verdict;
+pub mod words;
 
+pub use crate::findings::Severity;
 pub use cell::Cell;
 pub use layout::{LaidRow, Layout, Printed};
 pub use table::{Alignment, Column, Row, RowKind, Table, Units};
-
-/// How much a remark matters.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
-pub enum Severity {
-    /// An assumption.
-    Note,
-    /// A derating or a check missed.
-    Warning,
-    /// A rating exceeded.
-    Critical,
-}
-
-impl Severity {
-    /// Name in files and outputs.
-    pub const fn name(self) -> &'static str {
-        match self {
-            Severity::Note => "note",
-            Severity::Warning => "warning",
-            Severity::Critical => "critical",
-        }
-    }
-
-    /// Mark beside a number.
-    pub const fn mark(self) -> &'static str {
-        match self {
-            Severity::Note => "*",
-            Severity::Warning => "!",
-            Severity::Critical => "!!",
-        }
-    }
-}
 
 /// An answer: a title and blocks in reading order.
 #[derive(Clone, Debug, Default, PartialEq)]

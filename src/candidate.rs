@@ -1,0 +1,140 @@
+//! A candidate stage of a budget with everything about it that does not depend on the point.
+
+use crate::budget::Budget;
+use crate::findings::{self, Finding, NotModelled};
+use crate::fitted::{Kind, Stage};
+use crate::grid::{Axis, AxisName, Grid, OperatingPoint, PartialPoint};
+use crate::heat;
+use crate::infeasible::Infeasible;
+use crate::ledger::{Account, SLOTS, Slot};
+use crate::model::{self, Prepared, Solved};
+use crate::ratings;
+use crate::stage::StageSheet;
+
+/// A stage of a budget, fitted, with its constant facts.
+#[derive(Clone, Debug)]
+pub struct Candidate<'a> {
+    /// The budget it belongs to.
+    pub budget: &'a Budget,
+    /// The stage as it is meant.
+    pub sheet: &'a StageSheet,
+    /// The stage with its curves.
+    pub stage: Stage,
+    /// Accounts it books to.
+    pub accounts: Vec<Account>,
+    /// Mechanisms that lack data.
+    pub not_modelled: Vec<NotModelled>,
+    /// What the model assumes.
+    pub assumptions: Vec<Finding>,
+    /// Names of the parts by slot; several kinds of one bank are joined with " + ".
+    pub part_names: [Option<String>; SLOTS],
+    /// Its grid: the budget's, with its own frequencies, or without any.
+    pub grid: Grid,
+}
+
+impl<'a> Candidate<'a> {
+    /// Fits a stage of a budget.
+    pub fn new(budget: &'a Budget, sheet: &'a StageSheet) -> Self {
+        let stage = Stage::fit(sheet, budget);
+        let mut part_names: [Option<String>; SLOTS] = Default::default();
+        for part in sheet.parts() {
+            match &mut part_names[part.slot.index()] {
+                Some(names) => {
+                    names.push_str(" + ");
+                    names.push_str(part.name);
+                }
+                empty => *empty = Some(part.name.to_owned()),
+            }
+        }
+        if !sheet.is_linear() {
+            part_names[Slot::Board.index()] = Some("board".into());
+        }
+        let grid = match (&sheet.switching_frequency, sheet.is_linear()) {
+            (_, true) => budget.grid.without(AxisName::SwitchingFrequency),
+            (Some(own), false) => budget.grid.with(AxisName::SwitchingFrequency, own.clone()),
+            (None, false) => budget.grid.clone(),
+        };
+        Candidate {
+            budget,
+            accounts: findings::accounts(&stage),
+            not_modelled: findings::not_modelled(&stage),
+            assumptions: findings::assumptions(sheet, &budget.board),
+            sheet,
+            stage,
+            part_names,
+            grid,
+        }
+    }
+
+    /// All stages of a budget, in the order written.
+    pub fn all(budget: &'a Budget) -> Vec<Candidate<'a>> {
+        budget.stages.iter().map(|sheet| Candidate::new(budget, sheet)).collect()
+    }
+
+    /// Name in the budget.
+    pub fn name(&self) -> &'a str {
+        &self.sheet.name
+    }
+
+    /// The headline with the frequency this stage has there: its own first one, the headline's, or none.
+    pub fn headline(&self) -> OperatingPoint {
+        self.at(PartialPoint::default())
+    }
+
+    /// A point with the coordinates named and those of the headline, with the frequency this stage has there.
+    pub fn at(&self, named: PartialPoint) -> OperatingPoint {
+        let point = named.or(self.budget.headline);
+        match (&self.sheet.switching_frequency, self.sheet.is_linear()) {
+            (_, true) => point.with(AxisName::SwitchingFrequency, 0.0),
+            (Some(own), false) if named.switching_frequency.is_none() => {
+                point.with(AxisName::SwitchingFrequency, own.at(0))
+            }
+            _ => point,
+        }
+    }
+
+    /// The grid with the coordinates named fixed.
+    pub fn grid_at(&self, named: PartialPoint) -> Grid {
+        let fixed = crate::grid::ALL_AXES.into_iter().filter_map(|axis| Some((axis, named.get(axis)?)));
+        fixed
+            .filter(|(axis, _)| *axis != AxisName::SwitchingFrequency || !self.sheet.is_linear())
+            .fold(self.grid.clone(), |grid, (axis, value)| grid.with(axis, Axis::List(vec![value])))
+    }
+
+    /// Evaluates the stage at a point.
+    pub fn evaluate(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
+        model::evaluate(&self.stage, point)
+    }
+
+    /// The ledger with every part held at 25 °C: what heat costs is the difference to the settled one.
+    pub fn evaluate_cold(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
+        match &self.stage.kind {
+            Kind::Linear(_) => self.evaluate(point),
+            Kind::Switched(switched) => {
+                let prepared = Prepared::new(switched, self.stage.output_voltage, point);
+                heat::at_temperatures(&prepared, &[25.0; crate::fitted::NODES])
+            }
+        }
+    }
+
+    /// Thermal loop gain at a solved point (E51).
+    pub fn loop_gain(&self, solved: &Solved) -> f64 {
+        match &self.stage.kind {
+            Kind::Linear(_) => 0.0,
+            Kind::Switched(switched) => {
+                let prepared = Prepared::new(switched, self.stage.output_voltage, solved.point);
+                heat::loop_gain(&prepared, &heat::nodes_of(&prepared, solved)).unwrap_or(f64::INFINITY)
+            }
+        }
+    }
+
+    /// Findings of a solved point, the most severe first, without the assumptions.
+    pub fn findings(&self, solved: &Solved) -> Vec<Finding> {
+        ratings::check(self.sheet, &self.stage, self.budget, solved)
+    }
+
+    /// Price of all parts, or `None` when one has none.
+    pub fn price(&self) -> Option<f64> {
+        self.sheet.parts().iter().map(|part| Some(part.price? * f64::from(part.count))).sum()
+    }
+}

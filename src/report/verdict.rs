@@ -1,0 +1,86 @@
+//! The verdict of a comparison in one line.
+
+use crate::compare::{Comparison, Verdict};
+use crate::report::number::{Form, show};
+use crate::report::words;
+use crate::requirements;
+use crate::units::Dimension as D;
+
+/// Which stage to take at the headline and why, where another is enough, and what the requirements say.
+pub fn sentence(comparison: &Comparison<'_>) -> String {
+    let name = |place: usize| comparison.candidates.get(place).map_or("", |candidate| candidate.name());
+    let mut line = match &comparison.verdict {
+        Verdict::NoneRuns => return "no stage can run at the headline".into(),
+        Verdict::OnlyOne { stage } => format!("{} is the only stage that runs at the headline", name(*stage)),
+        Verdict::Leads { stage, next, lead, reason: (mechanism, more), spread } => {
+            let (lead_words, spread_words) = (watts(*lead), watts(*spread));
+            if comparison.verdict.is_too_close() {
+                format!(
+                    "{} and {} are too close to call at the headline: {lead_words} apart, while the model's spread in overlap and output charge is {spread_words}",
+                    name(*stage),
+                    name(*next)
+                )
+            } else {
+                format!(
+                    "{} loses {lead_words} less than {} at the headline, most of it by {} ({} more in {})",
+                    name(*stage),
+                    name(*next),
+                    mechanism.words(),
+                    watts(*more),
+                    name(*next)
+                )
+            }
+        }
+    };
+    if let Some(stage) = comparison.verdict.stage() {
+        line.push_str(&enough_below(comparison, stage));
+        if !comparison.budget.requirements.is_empty() {
+            let judgements = comparison.judgements.get(stage).map_or(&[][..], |judgements| judgements);
+            let missed = judgements.iter().filter(|judgement| !judgement.met).count();
+            line.push_str(&match missed {
+                0 => "; it meets every requirement".into(),
+                missed => {
+                    format!("; it misses {missed} of {}", words::count(judgements.len(), "requirement"))
+                }
+            });
+            if missed > 0 {
+                let others = comparison.candidates.iter().zip(&comparison.judgements);
+                let meeting: Vec<&str> = others
+                    .filter(|(_, j)| requirements::all_met(j))
+                    .map(|(candidate, _)| candidate.name())
+                    .collect();
+                if !meeting.is_empty() {
+                    line.push_str(&format!(", {} none", words::list(&meeting)));
+                }
+            }
+        }
+        let missing = comparison.candidates.get(stage).map_or(0, |candidate| candidate.not_modelled.len());
+        if missing > 0 {
+            line.push_str(&format!("; {} of it not modelled", words::count(missing, "mechanism")));
+        }
+    }
+    line
+}
+
+fn watts(value: f64) -> String {
+    show(value, Form::Result(D::Power))
+}
+
+/// "; linear is enough below 61 µA": the last crossover below the headline at its input voltage.
+fn enough_below(comparison: &Comparison<'_>, stage: usize) -> String {
+    let headline = &comparison.budget.headline;
+    let Some(candidate) = comparison.candidates.get(stage) else { return String::new() };
+    let below = comparison.crossovers.iter().filter(|crossover| {
+        crossover.above == candidate.name()
+            && crossover.input_voltage == headline.input_voltage
+            && crossover.load < headline.load
+    });
+    match below.max_by(|a, b| a.load.total_cmp(&b.load)) {
+        Some(crossover) => format!(
+            "; {} is enough below {}",
+            crossover.below,
+            show(crossover.load, Form::Result(D::Current))
+        ),
+        None => String::new(),
+    }
+}
