@@ -1,6 +1,8 @@
 //! The command line from outside: exit codes, streams, files. Exit codes and the closed pipe follow common practice of
 //! Unix tools; NO_COLOR follows no-color.org.
 
+#![expect(clippy::disallowed_methods, reason = "tests look at what was written")]
+
 use std::io::{Read, Write};
 use std::path::{Path, PathBuf};
 use std::process::{Command as Process, Stdio};
@@ -176,4 +178,44 @@ fn an_interrupt_ends_with_130_and_a_clean_word() {
     child.stderr.take().expect("piped").read_to_string(&mut said).expect("UTF-8");
     assert_eq!(child.wait().expect("ended").code(), Some(130));
     assert_eq!(said.trim(), "interrupted");
+}
+
+#[test]
+fn every_template_passes_the_check_and_is_never_written_over_a_file() {
+    let folder = tempfile::tempdir().expect("a temporary folder");
+    for kind in ["mosfets", "diodes", "inductors", "capacitors", "controllers", "linear_regulators"] {
+        let goal = folder.path().join(format!("{kind}.yaml"));
+        let goal = goal.to_str().expect("UTF-8");
+        lossbook(&["template", kind, "-o", goal]).assert().code(0).stdout_eq("").stderr_eq("");
+        lossbook(&["check", goal])
+            .assert()
+            .code(0)
+            .stderr_eq("")
+            .stdout_eq("...\n1 file, 0 budgets, 1 part: no errors, [..]\n");
+        lossbook(&["template", kind, "-o", goal])
+            .assert()
+            .code(2)
+            .stdout_eq("")
+            .stderr_eq("error: [..] exists, [..]\n...");
+    }
+    lossbook(&["template", "budget"])
+        .assert()
+        .code(0)
+        .stderr_eq("")
+        .stdout_eq("...\n[..]output_voltage: [..]\n...");
+}
+
+#[test]
+fn a_check_puts_doubts_on_standard_output_and_errors_on_standard_error() {
+    lossbook(&["check", "parts", "budgets"])
+        .assert()
+        .code(0)
+        .stderr_eq("")
+        .stdout_eq("...\n[..] files, 4 budgets, [..] parts: no errors, [..]\n");
+    lossbook(&["check", "budgets", "no-such-folder"])
+        .assert()
+        .code(2)
+        .stdout_eq("")
+        .stderr_eq("...\n[..]no-such-folder[..]\n...");
+    lossbook(&["check"]).assert().code(2).stdout_eq("");
 }

@@ -5,7 +5,7 @@ use std::path::PathBuf;
 
 use clap::Args;
 use lossbook::budget::Library;
-use lossbook::input::{self, Checked, InputErrors, render};
+use lossbook::input::{self, Checked, InputErrors};
 
 use super::options::Common;
 use super::{Exit, Failure, desk, terminal};
@@ -57,7 +57,8 @@ impl Options {
 fn summary(sound: &[Checked], warnings: usize) -> String {
     let files: HashSet<_> = sound.iter().flat_map(|checked| &checked.files).map(|file| &file.path).collect();
     let budgets = sound.iter().map(|checked| checked.budgets.len()).sum();
-    let of_budgets = sound.iter().flat_map(|checked| &checked.budgets).map(|budget| parts_of(&budget.library));
+    let of_budgets =
+        sound.iter().flat_map(|checked| &checked.budgets).map(|budget| parts_of(&budget.library));
     // budgets of one folder share a library: the largest is what was read
     let parts = sound.iter().map(|checked| parts_of(&checked.library)).chain(of_budgets).max().unwrap_or(0);
     let counts = [counted(files.len(), "file"), counted(budgets, "budget"), counted(parts, "part")];

@@ -86,10 +86,14 @@ fn no_budget(path: &Path, outline: &Outline) -> InputError {
     let parts = outline.top.iter().any(|(key, _)| PartKind::from_key(key).is_some());
     let (reason, hint) = match (outline.top.is_empty(), parts) {
         (true, _) => ("the file holds nothing", "a budget begins with `budget:` and its title"),
-        (_, true) => {
-            ("the file is a library of parts, not a budget", "name a budget; it names its parts with `parts:`")
-        }
-        _ => ("the file is no budget: none of its keys is known", "a budget begins with `budget:` and its title"),
+        (_, true) => (
+            "the file is a library of parts, not a budget",
+            "name a budget; it names its parts with `parts:`",
+        ),
+        _ => (
+            "the file is no budget: none of its keys is known",
+            "a budget begins with `budget:` and its title",
+        ),
     };
     InputError::of_file(path, reason, hint)
 }

@@ -27,13 +27,13 @@ pub struct Checked {
 /// Every error of every file.
 pub fn check_path(path: &Path) -> Result<Checked, InputErrors> {
     let files = if files::is_folder(path) {
-        files::list_yaml(path).map_err(|fault| {
-            InputError::of_file(path, format!("cannot be read: {fault}"), fault.hint())
-        })?
+        files::list_yaml(path)
+            .map_err(|fault| InputError::of_file(path, format!("cannot be read: {fault}"), fault.hint()))?
     } else {
         vec![path.to_path_buf()]
     };
-    let (budgets, parts): (Vec<PathBuf>, Vec<PathBuf>) = files.into_iter().partition(|file| holds_budget(file));
+    let (budgets, parts): (Vec<PathBuf>, Vec<PathBuf>) =
+        files.into_iter().partition(|file| holds_budget(file));
     let (mut checked, mut faults) = (Checked::default(), Vec::new());
     if budgets.is_empty() || !parts.is_empty() {
         let paths = if parts.is_empty() { vec![path.to_path_buf()] } else { parts };

@@ -36,8 +36,8 @@ use std::path::{Path, PathBuf};
 
 use crate::budget::{Budget, InputFile, Library};
 pub use check::{Checked, check_path};
-pub use template::{TEMPLATES, template};
 pub use error::{InputError, InputErrors, Severity, Warning};
+pub use template::{TEMPLATES, template};
 
 /// A library with its warnings and the files it was read from.
 pub type LoadedLibrary = (Library, Vec<Warning>, Vec<InputFile>);

@@ -91,7 +91,9 @@ fn place(note: Note, spot: Option<Spot>, lines: &[&str], source: &Source<'_>) ->
 fn lost_unit(line: &str, spot: Spot) -> &'static str {
     let mut after = line.chars().skip(spot.end);
     match after.next() {
-        Some(',') if after.next().is_some_and(|c| c.is_ascii_digit()) => "; decimals take a point, not a comma",
+        Some(',') if after.next().is_some_and(|c| c.is_ascii_digit()) => {
+            "; decimals take a point, not a comma"
+        }
         Some(' ') if after.next() == Some('#') => "; what follows ` #` on a line is a comment",
         _ => "",
     }

@@ -32,7 +32,9 @@ impl InputError {
         let mut group = Group::with_title(level.primary_title(self.title()));
         group = match &self.excerpt {
             Some(excerpt) => group.element(snippet(excerpt, self.line, &file, (AnnotationKind::Primary, ""))),
-            None if self.line > 0 => group.element(Origin::path(file).line(self.line).char_column(self.column)),
+            None if self.line > 0 => {
+                group.element(Origin::path(file).line(self.line).char_column(self.column))
+            }
             None => group.element(Origin::path(file)),
         };
         if let Some(other) = &self.other {
@@ -95,9 +97,6 @@ mod tests {
     #[test]
     fn a_fault_of_a_file_is_drawn_with_its_name() {
         let error = InputError::of_file(Path::new("a\u{1b}.yaml"), "cannot be read", "check it");
-        assert_eq!(
-            error.render(false),
-            "error: cannot be read\n--> a\\u{1b}.yaml\n = help: check it"
-        );
+        assert_eq!(error.render(false), "error: cannot be read\n--> a\\u{1b}.yaml\n = help: check it");
     }
 }

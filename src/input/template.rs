@@ -134,7 +134,9 @@ mod tests {
             let kind = PartKind::from_key(kind).expect("a kind");
             let text = template(kind.key()).expect("a template");
             for name in super::super::sample::key_names(&mut *kind.empty_form()) {
-                let found = text.lines().any(|line| line.trim_start().trim_start_matches("# ").starts_with(&format!("{name}: ")));
+                let found = text
+                    .lines()
+                    .any(|line| line.trim_start().trim_start_matches("# ").starts_with(&format!("{name}: ")));
                 assert!(found, "{name} in\n{text}");
             }
         }
@@ -145,7 +147,8 @@ mod tests {
     fn the_budget_starter_shows_every_key() {
         let text = template("budget").expect("a template");
         for key in super::super::budget::KEYS {
-            let found = text.lines().any(|line| line.trim_start_matches("# ").starts_with(&format!("{key}:")));
+            let found =
+                text.lines().any(|line| line.trim_start_matches("# ").starts_with(&format!("{key}:")));
             assert!(found, "{key}");
         }
     }

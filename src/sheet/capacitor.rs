@@ -35,7 +35,8 @@ const ESL: Key = Key::new("esl", D::Inductance, "series inductance")
     .zero()
     .sane(0.0, 1e-7)
     .absent("0 nH assumed when absent")
-    .example("0.5 nH").starter();
+    .example("0.5 nH")
+    .starter();
 const V_MAX: Key = Key::new("v_max", D::Voltage, "voltage rating").sane(1.0, 1e3).example("50 V");
 const I_RMS_MAX: Key =
     Key::new("i_rms_max", D::Current, "RMS ripple current rating").sane(0.01, 100.0).example("4 A").starter();

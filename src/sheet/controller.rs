@@ -46,10 +46,12 @@ const V_BOOT_DROP: Key = Key::new("v_boot_drop", D::Voltage, "drop of the bootst
     .zero()
     .sane(0.0, 2.0)
     .absent("0 V assumed when absent")
-    .example("0.3 V").starter();
+    .example("0.3 V")
+    .starter();
 const HIGH_SIDE: Key =
     Key::new("high_side", D::Resistance, "high-side driver: r_source and r_sink, or i_source and i_sink");
-const LOW_SIDE: Key = Key::new("low_side", D::Resistance, "low-side driver; a diode stage needs none").starter();
+const LOW_SIDE: Key =
+    Key::new("low_side", D::Resistance, "low-side driver; a diode stage needs none").starter();
 const DEAD_TIME: Key = Key::new("dead_time", D::Time, "dead times; a diode stage has none").starter();
 const DRIVE_SUPPLY: Key = Key::new(
     "drive_supply",
@@ -63,7 +65,8 @@ const I_Q_SLEEP: Key = Key::new("i_q_sleep", D::Current, "supply current asleep 
     .zero()
     .sane(0.0, 0.05)
     .absent("i_q at all times when absent")
-    .example("60 µA").starter();
+    .example("60 µA")
+    .starter();
 const T_ON_MIN: Key =
     Key::new("t_on_min", D::Time, "shortest on-time").zero().sane(1e-9, 1e-5).example("60 ns").starter();
 const T_OFF_MIN: Key =
@@ -72,10 +75,12 @@ const V_IN_MAX: Key = Key::new("v_in_max", D::Voltage, "input voltage rating").s
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient")
     .sane(1.0, 500.0)
     .absent("its temperature is not computed when absent")
-    .example("40 K/W").starter();
+    .example("40 K/W")
+    .starter();
 const T_J_MAX: Key = Key::new("t_j_max", D::Temperature, "junction temperature rating, with r_th_ja")
     .sane(70.0, 250.0)
-    .example("125 °C").starter();
+    .example("125 °C")
+    .starter();
 
 impl Form for ControllerSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {

@@ -40,7 +40,8 @@ const INDUCTANCE: Key = Key::new("inductance", D::Inductance, "inductance at no 
     .sane(1e-8, 1e-2)
     .example("{typ: 3.3 µH, min: 2.64 µH, max: 3.96 µH}");
 const SATURATION: Key =
-    Key::new("saturation", D::Current, "current at which the inductance has dropped; or inductance_curve").starter();
+    Key::new("saturation", D::Current, "current at which the inductance has dropped; or inductance_curve")
+        .starter();
 const INDUCTANCE_CURVE: Key =
     Key::new("inductance_curve", D::Inductance, "inductance against current, instead of saturation");
 const I_RMS_MAX: Key =
@@ -49,7 +50,8 @@ const TEMPERATURE_RISE: Key = Key::new(
     "temperature_rise",
     D::TemperatureDifference,
     "rise at a current as printed; gives r_th when r_th is absent",
-).starter();
+)
+.starter();
 const R_TH: Key =
     Key::new("r_th", D::ThermalResistance, "winding to ambient").sane(0.5, 1000.0).example("30 K/W");
 const T_MAX: Key =
@@ -58,13 +60,15 @@ const DCR: Key = Key::new("dcr", D::Resistance, "winding resistance at 25 °C")
     .sane(1e-5, 20.0)
     .example("{typ: 5.5 mΩ, max: 6.1 mΩ}");
 const R_AC: Key = Key::new("r_ac", D::Resistance, "winding resistance at a frequency")
-    .absent("AC winding loss not modelled when absent").starter();
+    .absent("AC winding loss not modelled when absent")
+    .starter();
 const CORE: Key = Key::new(
     "core",
     D::PowerDensity,
     "core material: Steinmetz k, alpha, beta in SI, or a table; or core_loss",
 )
-.absent("core loss not modelled when core and core_loss are absent").starter();
+.absent("core loss not modelled when core and core_loss are absent")
+.starter();
 const CORE_LOSS: Key =
     Key::new("core_loss", D::Power, "maker's core loss points at D = 1/2, three or more, instead of core");
 
@@ -103,7 +107,11 @@ impl Form for InductorSheet {
         }
         distinct("inductance_curve", "i", self.inductance_curve.iter().map(|point| point.i.value), faults);
         if self.saturation.as_ref().is_some_and(|saturation| saturation.drop.value >= 1.0) {
-            faults.error("saturation.drop", "leaves no inductance", "give the drop as printed, often 20 % or 30 %");
+            faults.error(
+                "saturation.drop",
+                "leaves no inductance",
+                "give the drop as printed, often 20 % or 30 %",
+            );
         }
         if self.temperature_rise.is_none() && self.r_th.is_none() {
             faults.error(

@@ -35,7 +35,8 @@ const I_GND: Key = Key::new("i_gnd", D::Current, "ground current against load");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)
     .absent("the part stays at ambient when absent")
-    .example("18 K/W").starter();
+    .example("18 K/W")
+    .starter();
 const T_J_MAX: Key =
     Key::new("t_j_max", D::Temperature, "junction temperature rating").sane(70.0, 250.0).example("125 °C");
 
