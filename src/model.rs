@@ -362,7 +362,7 @@ impl<'a> Prepared<'a> {
         match self.stage.controller.supply {
             Supply::External(efficiency) => self.stage.controller.v_drive / efficiency,
             _ if self.stage.drives_from_input(self.output_voltage) => self.point.input_voltage,
-            _ => self.output_voltage,
+            _ => self.v_out,
         }
     }
 
