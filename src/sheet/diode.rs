@@ -50,7 +50,8 @@ const Q_C: Key = Key::new("q_c", D::Charge, "junction charge; or c_j")
     .starter();
 const C_J: Key = Key::new("c_j", D::Capacitance, "junction capacitance at its test voltage, instead of q_c")
     .at(&["v_r"])
-    .sane(1e-13, 1e-7);
+    .sane(1e-13, 1e-7)
+    .example("{v_r: 20 V, typ: 200 pF}");
 const Q_RR: Key = Key::new("q_rr", D::Charge, "reverse recovery charge, PN diodes only");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)

@@ -90,7 +90,8 @@ const Q_GS2: Key = Key::new("q_gs2", D::Charge, "its part after the threshold; o
     .starter();
 const Q_G_TH: Key =
     Key::new("q_g_th", D::Charge, "gate charge at threshold (q_gs2 = q_gs - q_g_th)").sane(1e-12, 1e-6);
-const Q_SW: Key = Key::new("q_sw", D::Charge, "switching charge (q_gs2 + q_gd)").sane(1e-12, 1e-6);
+const Q_SW: Key =
+    Key::new("q_sw", D::Charge, "switching charge (q_gs2 + q_gd)").sane(1e-12, 1e-6).example("3.4 nC");
 const Q_GD: Key = Key::new("q_gd", D::Charge, "gate-drain charge at its test voltage")
     .at(&["v_ds"])
     .sane(1e-12, 1e-6)
@@ -114,7 +115,8 @@ const Q_OSS: Key = Key::new("q_oss", D::Charge, "output charge; or c_oss")
 const C_OSS: Key =
     Key::new("c_oss", D::Capacitance, "output capacitance at its test voltage, instead of q_oss")
         .at(&["v_ds"])
-        .sane(1e-12, 1e-7);
+        .sane(1e-12, 1e-7)
+        .example("{v_ds: 20 V, typ: 400 pF}");
 const L_SOURCE: Key = Key::new("l_source", D::Inductance, "common-source inductance")
     .zero()
     .sane(0.0, 2e-8)
