@@ -73,17 +73,20 @@ impl Finding {
 /// A mechanism that cannot be computed for want of a datum.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
 pub struct NotModelled {
-    /// Slot of the part that lacks the datum.
+    /// Slot in which the watts would be booked.
     pub slot: Slot,
     /// What is not modelled, or only in part.
     pub mechanism: Mechanism,
     /// The missing key.
     pub needs: &'static str,
+    /// Slot of the part that lacks the key.
+    pub lacking: Slot,
 }
 
 impl fmt::Display for NotModelled {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(f, "{} of {}: needs {}", self.mechanism.words(), self.slot.words(), self.needs)
+        write!(f, "{} of {}: needs {}", self.mechanism.words(), self.slot.words(), self.needs)?;
+        if self.lacking == self.slot { Ok(()) } else { write!(f, " of {}", self.lacking.words()) }
     }
 }
 
@@ -93,14 +96,12 @@ pub fn not_modelled(stage: &Stage) -> Vec<NotModelled> {
     let mut missing = Vec::new();
     let mut need = |absent: bool, slot, mechanism, needs| {
         if absent {
-            missing.push(NotModelled { slot, mechanism, needs });
+            missing.push(NotModelled { slot, mechanism, needs, lacking: slot });
         }
     };
     need(stage.high_side.q_oss.is_none(), Slot::HighSide, Mechanism::OutputCharge, "q_oss");
     match &stage.rectifier {
         Rectifier::Synchronous { low_side, schottky } => {
-            let without_recovery = schottky.is_none() && low_side.recovery.is_none();
-            need(without_recovery, Slot::LowSide, Mechanism::Recovery, "q_rr");
             need(low_side.q_oss.is_none(), Slot::LowSide, Mechanism::OutputCharge, "q_oss");
             if let Some(diode) = schottky {
                 need(diode.q_c.is_none(), Slot::ParallelSchottky, Mechanism::OutputCharge, "q_c");
@@ -116,6 +117,13 @@ pub fn not_modelled(stage: &Stage) -> Vec<NotModelled> {
     need(stage.inductor.core.is_none(), Slot::Inductor, Mechanism::Core, "core");
     need(stage.input_bank.kinds.is_empty(), Slot::InputCapacitors, Mechanism::Esr, "input_capacitors");
     need(stage.output_bank.kinds.is_empty(), Slot::OutputCapacitors, Mechanism::Esr, "output_capacitors");
+    if let Rectifier::Synchronous { low_side, schottky: None } = &stage.rectifier
+        && low_side.recovery.is_none()
+    {
+        // the body diode of the low side recovers in the high side
+        let (slot, mechanism, lacking) = (Slot::HighSide, Mechanism::Recovery, Slot::LowSide);
+        missing.push(NotModelled { slot, mechanism, needs: "q_rr", lacking });
+    }
     missing
 }
 

@@ -1,4 +1,9 @@
-//! The model: from a fitted stage, an operating point and temperatures to every contribution of the ledger.
+#![doc = include_str!("model.md")]
+//!
+//! # In code
+//!
+//! From a fitted stage, an operating point and temperatures to every contribution of the ledger: [`Prepared`] holds what
+//! temperatures do not change, [`Prepared::heated`] calls the mechanisms of [`crate::loss`], [`evaluate`] settles the heat.
 
 use crate::edges::{self, GateLoop, NodeCapacitance};
 use crate::fitted::{
@@ -362,7 +367,7 @@ impl<'a> Prepared<'a> {
         match self.stage.controller.supply {
             Supply::External(efficiency) => self.stage.controller.v_drive / efficiency,
             _ if self.stage.drives_from_input(self.output_voltage) => self.point.input_voltage,
-            _ => self.output_voltage,
+            _ => self.v_out,
         }
     }
 

@@ -178,6 +178,7 @@ pub struct Missing<'a>(pub &'a [NotModelled]);
 
 #[derive(Serialize)]
 struct MissingEntry {
+    lacking: &'static str,
     slot: &'static str,
     mechanism: &'static str,
     needs: &'static str,
@@ -187,6 +188,7 @@ impl Serialize for Missing<'_> {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         serializer.collect_seq(self.0.iter().map(|missing| MissingEntry {
             slot: missing.slot.name(),
+            lacking: missing.lacking.name(),
             mechanism: missing.mechanism.name(),
             needs: missing.needs,
         }))

@@ -3,6 +3,7 @@
 //! A new verb is a file with a clap `Args` struct and a `run`, a variant of [`Verb`] and an arm of [`Verb::run`].
 
 pub(crate) mod bug;
+mod check;
 mod compare;
 mod desk;
 mod failure;
@@ -11,6 +12,7 @@ mod load;
 mod options;
 mod progress;
 mod tabulate;
+mod template;
 pub(crate) mod terminal;
 mod words;
 
@@ -57,6 +59,8 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 pub(crate) enum Verb {
     Compare(compare::Options),
     Tabulate(tabulate::Options),
+    Check(check::Options),
+    Template(template::Options),
 }
 
 impl Verb {
@@ -65,6 +69,8 @@ impl Verb {
         match self {
             Verb::Compare(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Check(options) => options.run(common),
+            Verb::Template(options) => options.run(common),
         }
     }
 }

@@ -46,8 +46,10 @@ pub fn esr(bank: &Bank, end: End, waveform: &Waveform, mean_square: f64) -> Esr 
     Esr { mean_square, resistance, watts }
 }
 
-/// Most harmonics that are summed; what lies above is scaled in with the rest. At D1 = 0.06 % the rule of E40 reaches it.
-const MOST_HARMONICS: f64 = 20_000.0;
+/// Harmonics that are summed one by one; beyond them the spectrum is smooth and is sampled.
+const ONE_BY_ONE: f64 = 4096.0;
+/// Most harmonics that count, whatever the duty: the sum has long converged.
+const MOST_HARMONICS: f64 = 1e12;
 
 /// Shares of the kinds of a bank: each harmonic divides by the impedances ESR + j(ω ESL - 1/(ω C)); the result is scaled
 /// so that the squares add up to `mean_square` (A²) of E4 (E40). Source: Fourier series of a trapezoid or triangle.
@@ -61,18 +63,22 @@ pub fn shares(bank: &Bank, end: End, waveform: &Waveform, mean_square: f64) -> V
     if mean_square <= 0.0 || waveform.frequency <= 0.0 || d <= 0.0 || d >= 1.0 {
         return shares;
     }
-    let harmonics = (12.0 / (d * (1.0 - d))).ceil().clamp(200.0, MOST_HARMONICS) as u32;
+    let harmonics = (12.0 / (d * (1.0 - d))).ceil().clamp(200.0, MOST_HARMONICS);
     let mut sum = 0.0;
-    for n in 1..=harmonics {
-        let w = TAU * f64::from(n);
-        let square = 2.0 * amplitude_square(end, waveform, w);
+    let mut n = 1.0;
+    while n <= harmonics {
+        // beyond the first ones a sample stands for as many harmonics as change neither spectrum nor impedance
+        let stands_for = if n <= ONE_BY_ONE { 1.0 } else { (0.02 / d).min(n / 64.0).floor().max(1.0) };
+        let w = TAU * (n + 0.5 * (stands_for - 1.0));
+        n += stands_for;
+        let square = 2.0 * stands_for * amplitude_square(end, waveform, w);
         sum += square;
         let omega = w * waveform.frequency;
         // admittances of the kinds and their sum
         let (mut g_sum, mut b_sum) = (0.0, 0.0);
         let admittance = |kind: &crate::parts::capacitor::Kind| {
             let reactance = omega * kind.esl - 1.0 / (omega * kind.capacitance);
-            let z_square = kind.esr * kind.esr + reactance * reactance;
+            let z_square = (kind.esr * kind.esr + reactance * reactance).max(1e-30);
             (kind.esr / z_square, -reactance / z_square, 1.0 / z_square)
         };
         for kind in &bank.kinds {
