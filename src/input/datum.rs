@@ -44,6 +44,8 @@ pub fn from_fields(fields: &mut Fields<'_, '_>, key: &'static Key, notes: &mut N
         bounded(node, key, &fields.trail.key(name), notes)
     };
     let mut datum = Datum { min: limit("min"), typ: limit("typ"), max: limit("max"), ..Datum::default() };
+    // a large library has a million of these: no room for more than there are
+    datum.conditions.reserve_exact(CONDITIONS.iter().filter(|(name, _)| fields.has(name)).count());
     for (name, dimension) in CONDITIONS {
         let Some(node) = fields.take(name) else { continue };
         match quantity::read(node, Expected::of(dimension)) {

@@ -18,6 +18,10 @@ use crate::printable::printable;
 /// Deepest nesting of mappings and lists.
 pub const DEEPEST: usize = 64;
 
+/// Length from which a stretch is not extended, in bytes: long enough to be worth a parser, short enough to be
+/// shared among cores.
+const STRETCH: usize = 32 * 1024;
+
 /// Stretches of a text that can be read on their own.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Stretch {
@@ -36,7 +40,7 @@ pub struct Stretch {
 pub struct Outline {
     /// Keys at the top with their lines.
     pub top: Vec<(Box<str>, usize)>,
-    /// The text in stretches: an entry of a block mapping under a top key each, or the whole of a top key.
+    /// The text in stretches: some entries of a block mapping under a top key, or the whole of a top key.
     pub stretches: Vec<Stretch>,
 }
 
@@ -318,11 +322,18 @@ impl<'t> Guard<'t> {
             if own.is_empty() {
                 stretches.push(Stretch { start: self.byte(spot.line), end, line: spot.line, kind: None });
             }
+            let mut open: Option<Stretch> = None;
             for (place, (_, entry)) in own.iter().enumerate() {
                 let end = own.get(place + 1).map_or(end, |(_, next)| self.byte(next.line));
                 let start = self.byte(entry.line);
-                stretches.push(Stretch { start, end, line: entry.line, kind: Some(name.clone()) });
+                let own =
+                    open.get_or_insert(Stretch { start, end, line: entry.line, kind: Some(name.clone()) });
+                own.end = end;
+                if own.end - own.start >= STRETCH {
+                    stretches.extend(open.take());
+                }
             }
+            stretches.extend(open);
         }
         let top = self.top.into_iter().map(|(name, spot)| (name, spot.line)).collect();
         Outline { top, stretches }
@@ -394,6 +405,18 @@ mod tests {
     }
 
     #[test]
+    fn long_files_are_cut_between_parts() {
+        let part = format!("  a: {{x: {}}}\n", "1".repeat(STRETCH / 3));
+        let text =
+            format!("mosfets:\n{}", (0..9).map(|i| part.replace('a', &format!("a{i}"))).collect::<String>());
+        let outline = guard(Path::new("x"), &text).expect("sound");
+        let pieces: Vec<&str> = outline.stretches.iter().map(|s| &text[s.start..s.end]).collect();
+        assert_eq!(pieces.len(), 3);
+        assert_eq!(format!("mosfets:\n{}", pieces.concat()), text);
+        assert_eq!(outline.stretches.iter().map(|s| s.line).collect::<Vec<_>>(), [2, 5, 8]);
+    }
+
+    #[test]
     fn parts_can_be_read_one_by_one() {
         let text = "# head\nmosfets:\n  a:\n    x: 1\n  # note\n  b: {x: 2}\ndiodes: {c: {x: 3}}\nempty:\n";
         let outline = guard(Path::new("x"), text).expect("sound");
@@ -402,8 +425,7 @@ mod tests {
         assert_eq!(
             seen,
             [
-                (3, Some("mosfets"), "  a:\n    x: 1\n  # note\n"),
-                (6, Some("mosfets"), "  b: {x: 2}\n"),
+                (3, Some("mosfets"), "  a:\n    x: 1\n  # note\n  b: {x: 2}\n"),
                 (7, None, "diodes: {c: {x: 3}}\n"),
                 (8, None, "empty:\n"),
             ]

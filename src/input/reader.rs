@@ -114,7 +114,9 @@ impl KeyVisitor for Reader<'_, '_, '_> {
             return;
         };
         let trail = self.fields.trail.key(key.name);
-        for (place, item) in items(node, &trail, key, self.notes) {
+        let items = items(node, &trail, key, self.notes);
+        slot.reserve_exact(items.len());
+        for (place, item) in items {
             let trail = place.steps(&trail);
             slot.extend(datum::read(item, key, &trail, self.notes));
         }
@@ -160,7 +162,9 @@ impl KeyVisitor for Reader<'_, '_, '_> {
             return;
         };
         let trail = self.fields.trail.key(key.name);
-        for (place, item) in items(node, &trail, key, self.notes) {
+        let items = items(node, &trail, key, self.notes);
+        slot.reserve(items.len());
+        for (place, item) in items {
             let trail = place.steps(&trail);
             read_form(slot.push(), item, &trail, self.notes);
         }
