@@ -106,12 +106,14 @@ impl<'a> Candidate<'a> {
         model::evaluate(&self.stage, point)
     }
 
-    /// The ledger with every part held at 25 °C: what heat costs is the difference to the settled one.
+    /// The ledger with every part and the board held at 25 °C: what heat costs is the difference to the settled one.
     pub fn evaluate_cold(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
         match &self.stage.kind {
             Kind::Linear(_) => self.evaluate(point),
             Kind::Switched(switched) => {
-                let prepared = Prepared::new(switched, self.stage.output_voltage, point);
+                let mut cold = switched.clone();
+                cold.board.temperature = Some(25.0);
+                let prepared = Prepared::new(&cold, self.stage.output_voltage, point);
                 heat::at_temperatures(&prepared, &[25.0; crate::fitted::NODES])
             }
         }

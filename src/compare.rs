@@ -166,7 +166,7 @@ impl<'a> Comparison<'a> {
         let curve = |c: &'a Candidate<'a>| {
             loads.iter().map(|load| Record::of(c, c.headline().with(AxisName::Load, *load))).collect()
         };
-        let curves = sweep::map(candidates, |c| curve(c));
+        let curves = sweep::map(candidates, curve);
         let judgements = candidates.iter().map(|c| requirements::judge(c, watch)).collect();
         let verdict = verdict(&headline);
         let crossovers = crossovers(budget, candidates);

@@ -10,13 +10,17 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, ScanError, Span};
 
+use super::error::Blame;
 use super::error::{InputError, OtherPlace};
-use super::notes::{Blame, MOST};
+use super::notes::MOST;
 use super::place::{Spot, excerpt};
 use crate::printable::printable;
 
+/// Most keys of one mapping: parts of one kind in one file.
+const MOST_KEYS: usize = 1_000_000;
+
 /// Deepest nesting of mappings and lists.
-pub const DEEPEST: usize = 64;
+pub(crate) const DEEPEST: usize = 64;
 
 /// Length from which a stretch is not extended, in bytes: long enough to be worth a parser, short enough to be
 /// shared among cores.
@@ -24,31 +28,31 @@ const STRETCH: usize = 32 * 1024;
 
 /// Stretches of a text that can be read on their own.
 #[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Stretch {
+pub(crate) struct Stretch {
     /// First byte.
-    pub start: usize,
+    pub(crate) start: usize,
     /// First byte after it.
-    pub end: usize,
+    pub(crate) end: usize,
     /// Line on which it begins, from 1.
-    pub line: usize,
+    pub(crate) line: usize,
     /// Key at the top of the file to which it belongs; `None` when the stretch repeats that key itself.
-    pub kind: Option<Box<str>>,
+    pub(crate) kind: Option<Box<str>>,
 }
 
 /// What the guard learnt of a text.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
-pub struct Outline {
+pub(crate) struct Outline {
     /// Keys at the top with their lines.
-    pub top: Vec<(Box<str>, usize)>,
+    pub(crate) top: Vec<(Box<str>, usize)>,
     /// The text in stretches: some entries of a block mapping under a top key, or the whole of a top key.
-    pub stretches: Vec<Stretch>,
+    pub(crate) stretches: Vec<Stretch>,
 }
 
 /// Checks a text and finds its outline.
 ///
 /// # Errors
 /// All faults found, each with its place.
-pub fn guard(file: &Path, text: &str) -> Result<Outline, Vec<InputError>> {
+pub(crate) fn guard(file: &Path, text: &str) -> Result<Outline, Vec<InputError>> {
     let mut guard = Guard::new(file, text);
     if let Some((line, column)) = separator(text) {
         let spot = Spot { line, start: column, end: column + 1 };
@@ -216,6 +220,10 @@ impl<'t> Guard<'t> {
         }
         if text == "<<" {
             self.fault(spot, "merge keys are not read", "write the keys out");
+        } else if frame.keys.list.len() >= MOST_KEYS {
+            let reason = format!("more than {MOST_KEYS} keys stand in one mapping");
+            self.fault(spot, reason, "split it into several files");
+            self.stop = true;
         } else if let Some(first) = frame.keys.add(text.clone(), spot) {
             self.doubled(&text, first, spot);
         }

@@ -1,7 +1,7 @@
 //! Quantities: `6.8 mΩ` to an SI number of the dimension that is expected.
 
+use super::error::Blame;
 use super::node::Node;
-use super::notes::Blame;
 use super::units;
 use crate::hints::nearest;
 use crate::units::Dimension;
@@ -32,7 +32,7 @@ impl<'a> Expected<'a> {
 ///
 /// # Errors
 /// What is wrong with it and what would be right.
-pub fn read(node: &Node, expected: Expected<'_>) -> Result<f64, Blame> {
+pub(crate) fn read(node: &Node, expected: Expected<'_>) -> Result<f64, Blame> {
     let Expected { dimension, example } = expected;
     match node {
         Node::Text(text) => parse(text, expected),

@@ -1,11 +1,12 @@
 //! Fills any form from a mapping of a file: every key is read, every fault is noted, none stops the rest.
 
 use super::datum;
+use super::error::Blame;
 use super::fields::Fields;
 use super::inherit::hand_down;
 use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::sample::{key_names, list_sample, sample};
 use crate::hints::nearest;
@@ -13,7 +14,7 @@ use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 
 /// Reads a nested mapping into a form; a source or conditions stated for all of it go to each of its quantities.
-pub fn read_form(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
+pub(crate) fn read_form(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
     let Some(mut fields) = open(form, node, trail, notes) else { return };
     read_fields(form, &mut fields, notes);
     hand_down(form, &mut fields, notes);
@@ -37,12 +38,12 @@ fn open<'n, 't>(
 }
 
 /// Reads the keys of a form out of a mapping that may have other keys too.
-pub fn read_fields(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut Notes) {
+pub(crate) fn read_fields(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut Notes) {
     form.keys(&mut Reader { fields, notes });
 }
 
 /// Reads a form that stands alone, then asks it whether its keys agree with one another.
-pub fn read_checked(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
+pub(crate) fn read_checked(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
     let before = notes.errors();
     let Some(mut fields) = Fields::open(node, trail, "its keys below its name, each with a value", notes)
     else {
