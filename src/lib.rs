@@ -33,6 +33,8 @@ pub mod sheet;
 pub mod stage;
 pub mod sweep;
 pub mod tabulate;
+pub mod tolerance;
 pub mod units;
 pub mod values;
 pub mod waveform;
+pub mod worst;

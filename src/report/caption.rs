@@ -2,10 +2,9 @@
 
 use crate::budget::Budget;
 use crate::candidate::Candidate;
-use crate::compare::TYPICAL;
 use crate::report::words;
 
-/// "lossbook 0.1.0 · grain-dryer camera node · input 3f9a21c4 · ... · typical values".
+/// "lossbook 0.1.0 · grain-dryer camera node · input 3f9a21c4 · ... · typical values", or worst values.
 pub fn budget(budget: &Budget, what: &str) -> String {
     let mut parts = vec![
         concat!("lossbook ", env!("CARGO_PKG_VERSION")).to_owned(),
@@ -15,7 +14,7 @@ pub fn budget(budget: &Budget, what: &str) -> String {
     if !what.is_empty() {
         parts.push(what.to_owned());
     }
-    parts.push(format!("{TYPICAL} values"));
+    parts.push(format!("{} values", budget.values.name()));
     parts.join(" · ")
 }
 
