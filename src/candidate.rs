@@ -41,6 +41,16 @@ pub struct Candidate<'a> {
 impl<'a> Candidate<'a> {
     /// Fits a stage of a budget, with the set of values that the budget asks for.
     pub fn new(budget: &'a Budget, sheet: &'a StageSheet) -> Self {
+        Self::with(budget, sheet, budget.values)
+    }
+
+    /// The same with typical values, whatever the budget asks for: what tolerances scatter around.
+    pub fn typical(budget: &'a Budget, sheet: &'a StageSheet) -> Self {
+        Self::with(budget, sheet, ValueSet::Typical)
+    }
+
+    /// The same with a set of values.
+    pub fn with(budget: &'a Budget, sheet: &'a StageSheet, values: ValueSet) -> Self {
         let stage = Stage::fit(sheet, budget);
         let mut part_names: [Option<String>; SLOTS] = Default::default();
         for part in sheet.parts() {
@@ -60,7 +70,7 @@ impl<'a> Candidate<'a> {
             (Some(own), false) => budget.grid.with(AxisName::SwitchingFrequency, own.clone()),
             (None, false) => budget.grid.clone(),
         };
-        let worst = match budget.values {
+        let worst = match values {
             ValueSet::Typical => None,
             ValueSet::Worst => Some(Arc::new(WorstCase::new(Rig::new(budget, sheet)))),
         };

@@ -10,6 +10,7 @@ pub(crate) mod interrupt;
 mod load;
 mod options;
 mod progress;
+mod spread;
 mod tabulate;
 pub(crate) mod terminal;
 mod words;
@@ -57,6 +58,7 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 pub(crate) enum Verb {
     Compare(compare::Options),
     Tabulate(tabulate::Options),
+    Spread(spread::Options),
 }
 
 impl Verb {
@@ -65,6 +67,7 @@ impl Verb {
         match self {
             Verb::Compare(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Spread(options) => options.run(common),
         }
     }
 }

@@ -6,6 +6,11 @@ use crate::report::words;
 
 /// "lossbook 0.1.0 · grain-dryer camera node · input 3f9a21c4 · ... · typical values", or worst values.
 pub fn budget(budget: &Budget, what: &str) -> String {
+    with_values(budget, what, &format!("{} values", budget.values.name()))
+}
+
+/// The same with values that are neither typical nor worst throughout, in words.
+pub fn with_values(budget: &Budget, what: &str, values: &str) -> String {
     let mut parts = vec![
         concat!("lossbook ", env!("CARGO_PKG_VERSION")).to_owned(),
         budget.name.clone(),
@@ -14,7 +19,7 @@ pub fn budget(budget: &Budget, what: &str) -> String {
     if !what.is_empty() {
         parts.push(what.to_owned());
     }
-    parts.push(format!("{} values", budget.values.name()));
+    parts.push(values.to_owned());
     parts.join(" · ")
 }
 
