@@ -135,13 +135,15 @@ impl<'a> Candidate<'a> {
         model::evaluate(&self.fitted(point), point)
     }
 
-    /// The ledger with every part held at 25 °C: what heat costs is the difference to the settled one.
+    /// The ledger with every part and the board held at 25 °C: what heat costs is the difference to the settled one.
     pub fn evaluate_cold(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
         let stage = self.fitted(point);
         match &stage.kind {
             Kind::Linear(_) => model::evaluate(&stage, point),
             Kind::Switched(switched) => {
-                let prepared = Prepared::new(switched, stage.output_voltage, point);
+                let mut cold = switched.clone();
+                cold.board.temperature = Some(25.0);
+                let prepared = Prepared::new(&cold, stage.output_voltage, point);
                 heat::at_temperatures(&prepared, &[25.0; crate::fitted::NODES])
             }
         }

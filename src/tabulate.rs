@@ -7,6 +7,7 @@ use crate::budget::Budget;
 use crate::candidate::Candidate;
 use crate::columns::Columns;
 use crate::record::Record;
+use crate::requirements;
 use crate::sweep::{self, Watch};
 
 /// What is asked.
@@ -113,6 +114,12 @@ impl Answer for Question<'_> {
             let _ = serde_json::to_writer(bytes, record);
         })?;
         writeln!(out, "\n]}}")
+    }
+
+    fn met(&self) -> bool {
+        // judged like a comparison: the stage named, or any stage
+        self.budget.requirements.is_empty()
+            || self.candidates().iter().any(|c| requirements::all_met(&requirements::judge(c, self.watch)))
     }
 
     fn csv(&self, out: &mut dyn Write) -> io::Result<()> {

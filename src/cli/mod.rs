@@ -3,6 +3,7 @@
 //! A new verb is a file with a clap `Args` struct and a `run`, a variant of [`Verb`] and an arm of [`Verb::run`].
 
 pub(crate) mod bug;
+mod check;
 mod compare;
 mod desk;
 mod failure;
@@ -12,6 +13,7 @@ mod options;
 mod progress;
 mod spread;
 mod tabulate;
+mod template;
 pub(crate) mod terminal;
 mod words;
 
@@ -58,6 +60,8 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 pub(crate) enum Verb {
     Compare(compare::Options),
     Tabulate(tabulate::Options),
+    Check(check::Options),
+    Template(template::Options),
     Spread(spread::Options),
 }
 
@@ -67,6 +71,8 @@ impl Verb {
         match self {
             Verb::Compare(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Check(options) => options.run(common),
+            Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
         }
     }
