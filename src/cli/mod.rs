@@ -11,6 +11,7 @@ pub(crate) mod interrupt;
 mod load;
 mod options;
 mod progress;
+mod sensitivity;
 mod spread;
 mod tabulate;
 mod template;
@@ -63,6 +64,7 @@ pub(crate) enum Verb {
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
+    Sensitivity(sensitivity::Options),
 }
 
 impl Verb {
@@ -74,6 +76,7 @@ impl Verb {
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
+            Verb::Sensitivity(options) => options.run(common),
         }
     }
 }

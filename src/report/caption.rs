@@ -6,11 +6,6 @@ use crate::report::words;
 
 /// "lossbook 0.1.0 · grain-dryer camera node · input 3f9a21c4 · ... · typical values", or worst values.
 pub fn budget(budget: &Budget, what: &str) -> String {
-    with_values(budget, what, &format!("{} values", budget.values.name()))
-}
-
-/// The same with values that are neither typical nor worst throughout, in words.
-pub fn with_values(budget: &Budget, what: &str, values: &str) -> String {
     let mut parts = vec![
         concat!("lossbook ", env!("CARGO_PKG_VERSION")).to_owned(),
         budget.name.clone(),
@@ -19,14 +14,14 @@ pub fn with_values(budget: &Budget, what: &str, values: &str) -> String {
     if !what.is_empty() {
         parts.push(what.to_owned());
     }
-    parts.push(values.to_owned());
+    parts.push(format!("{} values", budget.values.name()));
     parts.join(" · ")
 }
 
 /// "lossbook 0.1.0 · input 3f9a21c4 · typical values": what an answer about the whole budget says of itself once.
 pub fn origin(budget: &Budget) -> String {
     let version = env!("CARGO_PKG_VERSION");
-    format!("lossbook {version} · input {} · {TYPICAL} values", budget.fingerprint())
+    format!("lossbook {version} · input {} · {} values", budget.fingerprint(), budget.values.name())
 }
 
 /// The same for one stage, with what is fixed in the table and the number of assumed and of missing items.

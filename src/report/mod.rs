@@ -26,6 +26,7 @@ pub mod comparison;
 mod layout;
 pub mod needs;
 pub mod number;
+pub mod sensitivity;
 pub mod spread;
 mod table;
 pub mod tables;

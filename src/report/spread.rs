@@ -9,6 +9,7 @@ use crate::units::Dimension as D;
 /// The whole answer: the draws stage by stage, the contributors, the interior scan, what the model leaves open.
 pub fn document(budget: &Budget, spread: &Spread) -> Document {
     let mut document = Document::new(format!("{}: spread by part tolerance", budget.name));
+    document.fact("computed by", Cell::text(caption::origin(budget)));
     document.fact("draws", Cell::text(format!("{}, seed {}", spread.draws, spread.seed)));
     document.paragraph(
         "Each value with printed limits is drawn evenly between them (where one limit is printed the typical value is \
@@ -22,11 +23,11 @@ pub fn document(budget: &Budget, spread: &Spread) -> Document {
             document.paragraph("No value of this stage states a tolerance: nothing to draw.");
             continue;
         }
-        document.table(draws(budget, spread, stage));
+        document.table(draws(spread, stage));
         contributors(budget, spread, stage, &mut document);
     }
-    interior(budget, spread, &mut document);
-    model(budget, spread, &mut document);
+    interior(spread, &mut document);
+    model(spread, &mut document);
     document
 }
 
@@ -49,7 +50,7 @@ fn at(point: &PointSpread) -> String {
     words
 }
 
-fn draws(budget: &Budget, spread: &Spread, stage: &str) -> Table {
+fn draws(spread: &Spread, stage: &str) -> Table {
     let mut columns = vec![Column::quantity("load")];
     let loss = ["typical", "mean", "5 %", "95 %", "RSS low", "RSS high", "worst"];
     columns.extend(loss.map(|title| Column::quantity(title).under("loss")));
@@ -59,7 +60,7 @@ fn draws(budget: &Budget, spread: &Spread, stage: &str) -> Table {
     let fixed = points().next().map(at).unwrap_or_default();
     let drawn = format!("values drawn {} times, seed {}", spread.draws, spread.seed);
     let what = format!("{stage} · {fixed}");
-    let mut table = Table::new(caption::with_values(budget, &what, &drawn), columns);
+    let mut table = Table::new(format!("{what} · {drawn}"), columns);
     for point in points() {
         let none = || Cell::missing(point.reason.clone().unwrap_or_default());
         let watts = |value: Option<f64>| value.map_or_else(none, Cell::watts);
@@ -111,7 +112,7 @@ fn contributors(budget: &Budget, spread: &Spread, stage: &str, document: &mut Do
     ];
     let what = format!("{stage} · {}", words::point(&headline(budget, stage)));
     let mut table =
-        Table::new(caption::with_values(budget, &what, "typical values but for the one named"), columns);
+        Table::new(format!("{what} · typical values but for the one named"), columns);
     let signed = |value: Option<f64>| match value {
         None => Cell::missing("cannot run there"),
         Some(value) => Cell::watts(value),
@@ -134,7 +135,7 @@ fn headline(budget: &Budget, stage: &str) -> crate::grid::OperatingPoint {
     sheet.map_or(budget.headline, |sheet| crate::candidate::Candidate::typical(budget, sheet).headline())
 }
 
-fn interior(budget: &Budget, spread: &Spread, document: &mut Document) {
+fn interior(spread: &Spread, document: &mut Document) {
     if spread.interior.is_empty() {
         return;
     }
@@ -152,7 +153,7 @@ fn interior(budget: &Budget, spread: &Spread, document: &mut Document) {
         Column::text("lies"),
     ];
     let mut table =
-        Table::new(caption::with_values(budget, "over the input voltage", "worst values"), columns).with_keys(2);
+        Table::new("over the input voltage · worst values", columns).with_keys(2);
     for scan in &spread.interior {
         table.row(vec![
             Cell::text(scan.stage.clone()),
@@ -166,7 +167,7 @@ fn interior(budget: &Budget, spread: &Spread, document: &mut Document) {
     document.table(table);
 }
 
-fn model(budget: &Budget, spread: &Spread, document: &mut Document) {
+fn model(spread: &Spread, document: &mut Document) {
     document.heading(2, "What the model leaves open");
     document.paragraph(
         "No tolerance of a part, and not in the draws above: another account of the same mechanism would book this much \
@@ -180,7 +181,7 @@ fn model(budget: &Budget, spread: &Spread, document: &mut Document) {
         Column::quantity("less"),
         Column::quantity("more"),
     ];
-    let mut table = Table::new(caption::budget(budget, "model spread"), columns).with_keys(3);
+    let mut table = Table::new("another account · typical values", columns).with_keys(3);
     for point in &spread.points {
         for term in &point.model {
             table.row(vec![
