@@ -11,6 +11,8 @@ pub(crate) mod interrupt;
 mod load;
 mod options;
 mod progress;
+mod sensitivity;
+mod spread;
 mod tabulate;
 mod template;
 pub(crate) mod terminal;
@@ -61,6 +63,8 @@ pub(crate) enum Verb {
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
+    Spread(spread::Options),
+    Sensitivity(sensitivity::Options),
 }
 
 impl Verb {
@@ -71,6 +75,8 @@ impl Verb {
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
+            Verb::Spread(options) => options.run(common),
+            Verb::Sensitivity(options) => options.run(common),
         }
     }
 }

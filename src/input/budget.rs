@@ -219,6 +219,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             profile: profile.unwrap_or_default(),
             battery,
             bench,
+            values: crate::worst::ValueSet::default(),
             shortlist,
             derating,
             inputs,

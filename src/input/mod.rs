@@ -1,4 +1,5 @@
 //! Files in, validated types out.
+pub mod at;
 mod budget;
 mod budget_grid;
 mod budget_keys;

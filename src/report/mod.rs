@@ -19,12 +19,15 @@
 //! ```
 
 mod balance;
+pub mod bars;
 pub mod caption;
 mod cell;
 pub mod comparison;
 mod layout;
 pub mod needs;
 pub mod number;
+pub mod sensitivity;
+pub mod spread;
 mod table;
 pub mod tables;
 pub mod verdict;
