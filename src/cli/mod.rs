@@ -7,6 +7,7 @@ mod compare;
 mod desk;
 mod failure;
 pub(crate) mod interrupt;
+mod justify;
 mod load;
 mod options;
 mod progress;
@@ -56,6 +57,7 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 #[derive(Debug, Subcommand)]
 pub(crate) enum Verb {
     Compare(compare::Options),
+    Justify(justify::Options),
     Tabulate(tabulate::Options),
 }
 
@@ -64,6 +66,7 @@ impl Verb {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         match self {
             Verb::Compare(options) => options.run(common),
+            Verb::Justify(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
         }
     }

@@ -1,4 +1,5 @@
 //! Files in, validated types out.
+pub mod at;
 pub mod budget;
 pub mod budget_grid;
 pub mod budget_keys;
