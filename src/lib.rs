@@ -1,4 +1,28 @@
 //! lossbook books every watt lost in a step-down rail to one part and one mechanism.
+//!
+//! ```text
+//! files -> input (as written -> as meant) -> sheet, stage, grid (validated, SI)
+//!       -> fitted (curves) -> heat: [ waveform -> edges -> loss ] until temperatures settle -> ledger
+//!       -> compare, tabulate and the other questions -> answer -> JSON, CSV (full precision)
+//!                                                              -> report (typed cells) -> render (text, Markdown, ...)
+//! ```
+//!
+//! An arrow never points back: physics knows no files, questions know no formats. The equations stand in [`model`].
+//!
+//! ```no_run
+//! use lossbook::{candidate::Candidate, input};
+//!
+//! # fn main() -> Result<(), Box<dyn std::error::Error>> {
+//! let (budget, _warnings) = input::load_budget("budgets/grain-dryer-camera.yaml".as_ref())?;
+//! for candidate in Candidate::all(&budget) {
+//!     match candidate.evaluate(candidate.headline()) {
+//!         Ok(solved) => println!("{}: {:.3} W", candidate.name(), solved.loss()),
+//!         Err(reason) => println!("{}: {reason}", candidate.name()),
+//!     }
+//! }
+//! # Ok(())
+//! # }
+//! ```
 
 pub mod answer;
 pub mod average;

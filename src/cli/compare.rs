@@ -18,7 +18,7 @@ use super::{Exit, Failure, desk};
 #[command(after_help = "\
 Examples:
   lossbook compare rail.yaml
-  lossbook compare rail.yaml --stage synchronous          exit code 1 when this stage misses a requirement
+  lossbook compare rail.yaml --stage synchronous   exit code 1 when this one misses a requirement
   lossbook compare rail.yaml --format markdown -o rail.md")]
 pub(crate) struct Options {
     #[command(flatten)]

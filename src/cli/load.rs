@@ -29,7 +29,7 @@ impl Subject {
         if !warnings.is_empty() {
             let count = warnings.len();
             let doubts = if count == 1 { "1 warning".into() } else { format!("{count} warnings") };
-            let file = printable(&self.budget.display().to_string()).into_owned();
+            let file = terminal::shown(&self.budget);
             terminal::say(&format!("{doubts} about the inputs; `lossbook check {file}` shows them"));
         }
         self.known_stage(&budget)?;
@@ -48,11 +48,10 @@ impl Subject {
 }
 
 fn unknown_stage(asked: &str, budget: &Path, known: &[&str]) -> Failure {
-    let file = budget.display().to_string();
     let list: Vec<String> = known.iter().map(|name| format!("`{}`", printable(name))).collect();
     let hint = match hints::nearest(asked, known.iter().copied()) {
         Some(near) => format!("did you mean `{}`? Its stages are {}", printable(near), list.join(", ")),
         None => format!("its stages are {}", list.join(", ")),
     };
-    Failure::asked(format!("{} has no stage `{}`", printable(&file), printable(asked)), hint)
+    Failure::asked(format!("{} has no stage `{}`", terminal::shown(budget), printable(asked)), hint)
 }

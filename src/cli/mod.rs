@@ -3,6 +3,7 @@
 //! A new verb is a file with a clap `Args` struct and a `run`, a variant of [`Verb`] and an arm of [`Verb::run`].
 
 pub(crate) mod bug;
+mod check;
 mod compare;
 mod desk;
 mod failure;
@@ -12,6 +13,7 @@ mod load;
 mod options;
 mod progress;
 mod tabulate;
+mod template;
 pub(crate) mod terminal;
 mod words;
 
@@ -59,6 +61,8 @@ pub(crate) enum Verb {
     Compare(compare::Options),
     Justify(justify::Options),
     Tabulate(tabulate::Options),
+    Check(check::Options),
+    Template(template::Options),
 }
 
 impl Verb {
@@ -68,6 +72,8 @@ impl Verb {
             Verb::Compare(options) => options.run(common),
             Verb::Justify(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Check(options) => options.run(common),
+            Verb::Template(options) => options.run(common),
         }
     }
 }

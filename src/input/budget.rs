@@ -8,7 +8,7 @@ use super::budget_grid::{self, MOST_POINTS, RatedLoad, value};
 use super::budget_keys as keys;
 use super::error::InputError;
 use super::fields::Fields;
-use super::kind::{ALL_KINDS, PartKind};
+use super::kind::PartKind;
 use super::library::{self, Loaded};
 use super::node::Node;
 use super::notes::{Blame, Notes};
@@ -21,6 +21,7 @@ use super::{budget_stages, budget_terms as terms, shortlist, yaml};
 use crate::budget::{Budget, InputFile};
 use crate::files;
 use crate::grid::{AxisName, Grid, OperatingPoint};
+use crate::hints::Vocabulary;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 
@@ -85,11 +86,15 @@ pub fn load_text(
 fn no_budget(path: &Path, outline: &Outline) -> InputError {
     let parts = outline.top.iter().any(|(key, _)| PartKind::from_key(key).is_some());
     let (reason, hint) = match (outline.top.is_empty(), parts) {
-        (true, _) => ("holds nothing", "a budget begins with `budget:` and its title"),
-        (_, true) => {
-            ("is a library of parts, not a budget", "name a budget; it names its parts with `parts:`")
-        }
-        _ => ("is no budget: none of its keys is known", "a budget begins with `budget:` and its title"),
+        (true, _) => ("the file holds nothing", "a budget begins with `budget:` and its title"),
+        (_, true) => (
+            "the file is a library of parts, not a budget",
+            "name a budget; it names its parts with `parts:`",
+        ),
+        _ => (
+            "the file is no budget: none of its keys is known",
+            "a budget begins with `budget:` and its title",
+        ),
     };
     InputError::of_file(path, reason, hint)
 }
@@ -364,7 +369,7 @@ fn headline(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes)
         }
     }
     let point = budget_grid::point(&mut fields, rated, notes);
-    fields.close(|| crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
+    fields.close_with(Some(Vocabulary::Axis), || crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
     Some(OperatingPoint {
         input_voltage: point.input_voltage?,
         load: point.load?,
@@ -391,9 +396,4 @@ impl Loaded {
             |fault: &InputError| fault.severity == super::error::Severity::Error && fault.part.is_empty();
         !self.inputs.is_empty() && !faults.iter().any(unread)
     }
-}
-
-/// True for a key at the top of a library file; used for telling the two sorts of file apart.
-pub fn is_part_kind(key: &str) -> bool {
-    ALL_KINDS.iter().any(|kind| kind.key() == key)
 }

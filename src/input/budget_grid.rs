@@ -3,13 +3,14 @@
 use super::budget_keys::of_axis;
 use super::datum;
 use super::fields::Fields;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
 use super::quantity::{self, Expected};
 use super::show::engineering;
 use crate::grid::{ALL_AXES, Axis, AxisName, Grid, PartialPoint};
+use crate::hints::{Vocabulary, hint, nearest};
 use crate::sheet::Datum;
 use crate::sheet::form::Key;
 use crate::units::Dimension;
@@ -197,19 +198,24 @@ pub fn grid(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes)
             fields.require(axis.name(), of_axis(axis).example, notes);
         }
     }
-    fields.close(|| ALL_AXES.map(AxisName::name).to_vec(), notes);
+    fields.close_with(Some(Vocabulary::Axis), || ALL_AXES.map(AxisName::name).to_vec(), notes);
     (notes.errors() == before).then_some(Grid { axes })
 }
 
 /// The word of a value that must be one of a few.
-pub fn word<'w>(node: &Node, words: &[&'w str], trail: &Trail<'_>, notes: &mut Notes) -> Option<&'w str> {
+pub fn word<'w>(
+    node: &Node,
+    (words, vocabulary): (&[&'w str], Option<Vocabulary>),
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Option<&'w str> {
     let given = node.scalar().unwrap_or_default();
     let found = words.iter().copied().find(|word| *word == given);
     if found.is_none() {
-        let hint = match nearest(&given, words.iter().copied()) {
-            Some(near) => format!("did you mean `{near}`?"),
-            None => format!("write one of {}", listed(words.iter().copied())),
-        };
+        let known = || words.iter().copied();
+        let ours = vocabulary.and_then(|vocabulary| hint(vocabulary, &given, known()));
+        let near = ours.or_else(|| nearest(&given, known()).map(|near| format!("did you mean `{near}`?")));
+        let hint = near.unwrap_or_else(|| format!("write one of {}", listed(known())));
         notes.value_error(trail, node, Blame::new("is not known here", hint));
     }
     found

@@ -1,7 +1,6 @@
 //! The candidate stages of a budget: which part sits in which slot.
 
 use super::budget_grid::{self, RatedLoad, word};
-use super::error::printable;
 use super::fields::Fields;
 use super::kind::PartKind;
 use super::node::Node;
@@ -11,7 +10,9 @@ use super::reader::read_fields;
 use super::shelf::Shelf;
 use crate::budget::PartsOf;
 use crate::grid::{Axis, AxisName};
+use crate::hints::Vocabulary;
 use crate::ledger::{ALL_SLOTS, Slot};
+use crate::printable::printable;
 use crate::sheet::CapacitorSheet;
 use crate::sheet::form::{Form, Key, KeyVisitor, Need};
 use crate::stage::{Circuit, LightLoad, Placed, RectifierSheet, StageSheet, SwitchedSheet};
@@ -89,7 +90,12 @@ impl StageReader<'_, '_, '_> {
             );
             return None;
         };
-        let rectifier = word(node, &RECTIFIERS, &self.fields.trail.key("rectifier"), self.notes)?;
+        let rectifier = word(
+            node,
+            (&RECTIFIERS, Some(Vocabulary::Rectifier)),
+            &self.fields.trail.key("rectifier"),
+            self.notes,
+        )?;
         let circuit = match rectifier {
             "linear" => self.linear(),
             _ => self.switched(rectifier == "synchronous"),
@@ -101,7 +107,7 @@ impl StageReader<'_, '_, '_> {
             let switched = if rectifier == "linear" { &own[..1] } else { &own[..] };
             switched.iter().copied().chain(slots(rectifier).iter().map(|slot| slot.name())).collect()
         };
-        self.fields.close(known, self.notes);
+        self.fields.close_with(Some(Vocabulary::Slot), known, self.notes);
         Some(StageSheet { name: name.to_string(), circuit: circuit?, switching_frequency: frequency? })
     }
 
@@ -251,5 +257,5 @@ impl StageReader<'_, '_, '_> {
 }
 
 fn slot_list(slots: &[Slot]) -> String {
-    super::nearest::listed(slots.iter().map(|slot| slot.name()))
+    super::listed::listed(slots.iter().map(|slot| slot.name()))
 }

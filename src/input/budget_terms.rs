@@ -3,7 +3,7 @@
 use super::budget_grid::{RatedLoad, point, value};
 use super::budget_keys as keys;
 use super::fields::Fields;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
@@ -11,6 +11,7 @@ use super::reader::read_fields;
 use super::sample::key_names;
 use crate::budget::{BenchAccuracy, Coupling, Derating, Limit, ProfilePoint, Requirement};
 use crate::grid::{ALL_AXES, AxisName};
+use crate::hints::{Vocabulary, nearest};
 use crate::ledger::{ALL_SLOTS, Slot};
 use crate::sheet::BoardSheet;
 use crate::sheet::form::Key;
@@ -71,7 +72,11 @@ fn requirement(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
     }
     let at = point(&mut fields, rated, notes);
     let names = LIMITS.map(|(key, _)| key.name);
-    fields.close(|| names.into_iter().chain(ALL_AXES.map(AxisName::name)).collect(), notes);
+    fields.close_with(
+        Some(Vocabulary::Axis),
+        || names.into_iter().chain(ALL_AXES.map(AxisName::name)).collect(),
+        notes,
+    );
     if given != 1 {
         let blame = match given {
             0 => Blame::new("sets no limit", format!("add one of {}", listed(names))),
@@ -92,7 +97,11 @@ pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
             .require("share", keys::SHARE.example, notes)
             .and_then(|node| value(node, &keys::SHARE, &trail.key("share"), notes));
         let at = point(&mut fields, rated, notes);
-        fields.close(|| ["share"].into_iter().chain(ALL_AXES.map(AxisName::name)).collect(), notes);
+        fields.close_with(
+            Some(Vocabulary::Axis),
+            || ["share"].into_iter().chain(ALL_AXES.map(AxisName::name)).collect(),
+            notes,
+        );
         all.extend(share.map(|share| ProfilePoint { share, at }));
     });
     let sum: f64 = all.iter().map(|point| point.share).sum();

@@ -1,9 +1,10 @@
 //! The keys of one mapping: taken one by one, and whatever nobody took is an unknown key.
 
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::{Entries, Node};
 use super::notes::{Blame, Notes};
 use super::path::Trail;
+use crate::hints::{Vocabulary, nearest, ours};
 
 /// A mapping that is being read.
 #[derive(Debug)]
@@ -55,7 +56,7 @@ impl<'n, 't> Fields<'n, 't> {
 
     /// Notes that a key is missing.
     pub fn missing(&self, name: &str, hint: &str, notes: &mut Notes) {
-        notes.key_error(self.trail, Blame::new(format!("`{name}` is missing"), hint));
+        notes.missing(self.trail, name, hint);
     }
 
     /// A mapping without keys.
@@ -82,13 +83,29 @@ impl<'n, 't> Fields<'n, 't> {
 
     /// Notes every key that nobody took, with the nearest of the known ones.
     pub fn close<'k>(self, known: impl FnOnce() -> Vec<&'k str>, notes: &mut Notes) {
+        self.close_with(None, known, notes);
+    }
+
+    /// Like [`Fields::close`], where a key may also be a word that others use for one of ours.
+    pub fn close_with<'k>(
+        self,
+        vocabulary: Option<Vocabulary>,
+        known: impl FnOnce() -> Vec<&'k str>,
+        notes: &mut Notes,
+    ) {
         if self.taken.iter().all(|taken| *taken) {
             return;
         }
         let known = known();
         for (key, node) in self.untaken() {
             let decimal = *node == Node::Null && key.starts_with(|c: char| c.is_ascii_digit());
-            let hint = match nearest(key, known.iter().copied()) {
+            let ours = vocabulary.map_or(&[][..], |vocabulary| ours(vocabulary, key));
+            let ours = ours.iter().find(|word| known.contains(word)).copied();
+            let near = ours.or_else(|| nearest(key, known.iter().copied()));
+            if let Some(near) = near.filter(|near| !self.has(near)) {
+                notes.forget_missing(self.trail, near);
+            }
+            let hint = match near {
                 _ if decimal => "decimals take a point, not a comma".to_string(),
                 Some(near) if self.has(near) => format!("`{near}` is there already; take this one out"),
                 Some(near) => format!("did you mean `{near}`?"),

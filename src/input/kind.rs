@@ -65,6 +65,18 @@ impl PartKind {
         }
     }
 
+    /// In prose, several: "MOSFETs".
+    pub const fn plural(self) -> &'static str {
+        match self {
+            PartKind::Mosfet => "MOSFETs",
+            PartKind::Diode => "diodes",
+            PartKind::Inductor => "inductors",
+            PartKind::Capacitor => "capacitors",
+            PartKind::Controller => "controllers",
+            PartKind::LinearRegulator => "linear regulators",
+        }
+    }
+
     /// The kind of a key.
     pub fn from_key(key: &str) -> Option<PartKind> {
         ALL_KINDS.into_iter().find(|kind| kind.key() == key)

@@ -4,7 +4,7 @@ use std::collections::{HashMap, HashSet};
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use super::error::{InputError, OtherPlace, Severity, printable};
+use super::error::{InputError, OtherPlace, Severity};
 use super::kind::PartKind;
 use super::notes::{Blame, MOST, Notes};
 use super::part_file::{self, Attention, PartFile, ReadPart};
@@ -13,6 +13,7 @@ use super::place::{Source, resolve};
 use super::{outline, parallel};
 use crate::budget::{InputFile, Library};
 use crate::files;
+use crate::printable::printable;
 
 /// A library and how reading it went.
 #[derive(Debug, Default)]
@@ -57,9 +58,9 @@ pub fn load(paths: &[PathBuf], attention: &Attention) -> Loaded {
     for ((kind, name), first, second) in doubled.into_iter().take(MOST) {
         loaded.faults.extend(doubled_part(kind, &name, &files[first], &files[second]));
     }
-    if origin.is_empty() && loaded.faults.is_empty() {
-        let path = paths.first().map_or(Path::new("."), PathBuf::as_path);
-        loaded.faults.push(InputError::of_file(path, "holds no parts", "add parts to its files"));
+    let nobody_complained = loaded.faults.iter().all(|fault| fault.severity == Severity::Warning);
+    if let Some(path) = paths.first().filter(|_| origin.is_empty() && nobody_complained) {
+        loaded.faults.push(InputError::of_file(path, "there are no parts", "add parts to its files"));
     }
     loaded
 }
@@ -72,7 +73,7 @@ fn list(paths: &[PathBuf], faults: &mut Vec<InputError>) -> Vec<PathBuf> {
             match files::list_yaml(path) {
                 Ok(found) if found.is_empty() => {
                     let hint = "put *.yaml files with parts into it, or name another folder";
-                    faults.push(InputError::of_file(path, "holds no *.yaml files", hint));
+                    faults.push(InputError::of_file(path, "the folder holds no *.yaml files", hint));
                     continue;
                 }
                 Ok(found) => found,

@@ -5,6 +5,7 @@ pub mod budget_grid;
 pub mod budget_keys;
 pub mod budget_stages;
 pub mod budget_terms;
+pub mod check;
 pub mod datum;
 pub mod error;
 pub mod fields;
@@ -12,7 +13,7 @@ pub mod gaps;
 pub mod inherit;
 pub mod kind;
 pub mod library;
-pub mod nearest;
+pub mod listed;
 pub mod node;
 pub mod notes;
 pub mod outline;
@@ -23,17 +24,21 @@ pub mod place;
 pub mod probe;
 pub mod quantity;
 pub mod reader;
+pub mod render;
 pub mod sample;
 pub mod shelf;
 pub mod shortlist;
 pub mod show;
+pub mod template;
 pub mod units;
 pub mod yaml;
 
 use std::path::{Path, PathBuf};
 
 use crate::budget::{Budget, InputFile, Library};
+pub use check::{Checked, check_path};
 pub use error::{InputError, InputErrors, Severity, Warning};
+pub use template::{TEMPLATES, template};
 
 /// A library with its warnings and the files it was read from.
 pub type LoadedLibrary = (Library, Vec<Warning>, Vec<InputFile>);

@@ -111,6 +111,19 @@ impl Notes {
         });
     }
 
+    /// Notes that a key is missing from the mapping at a trail.
+    pub fn missing(&mut self, trail: &Trail<'_>, name: &str, hint: impl Into<String>) {
+        self.key_error(trail, Blame::new(missing(name), hint));
+    }
+
+    /// Takes a complaint about a missing key back: it is there, misspelt.
+    pub fn forget_missing(&mut self, trail: &Trail<'_>, name: &str) {
+        let (path, reason) = (trail.path(), missing(name));
+        let kept = self.list.len();
+        self.list.retain(|note| note.path != path || note.reason != reason);
+        self.errors -= kept - self.list.len();
+    }
+
     /// Number of errors so far.
     pub fn errors(&self) -> usize {
         self.errors
@@ -133,4 +146,8 @@ impl Notes {
             self.list.push(Note { severity, path, mark, value, reason, hint });
         }
     }
+}
+
+fn missing(name: &str) -> String {
+    format!("`{name}` is missing")
 }

@@ -10,9 +10,10 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, ScanError, Span};
 
-use super::error::{InputError, OtherPlace, printable};
+use super::error::{InputError, OtherPlace};
 use super::notes::{Blame, MOST};
 use super::place::{Spot, excerpt};
+use crate::printable::printable;
 
 /// Deepest nesting of mappings and lists.
 pub const DEEPEST: usize = 64;
@@ -262,14 +263,20 @@ impl<'t> Guard<'t> {
             self.too_deep(spot);
         } else if error.info().contains("anchor") {
             self.reference(spot);
-        } else if let Some(open) = self.stack.iter().rev().find(|frame| frame.flow) {
+        } else if let Some(open) = self.unclosed(error.info()) {
             let (bracket, pair) = if open.mapping { ('{', '}') } else { ('[', ']') };
             let spot = Spot { line: open.start.line(), start: open.start.col(), end: open.start.col() + 1 };
-            let reason = format!("the `{bracket}` opened here is not closed properly ({})", error.info());
-            self.fault(spot, reason, format!("add the `{pair}`, and a comma between items"));
+            let hint = format!("add the `{pair}`, and a comma between items");
+            self.fault(spot, format!("the `{bracket}` opened here is not closed properly"), hint);
         } else {
             self.fault(spot, format!("this is no YAML: {}", error.info()), hint_for(error.info()));
         }
+    }
+
+    /// The innermost open bracket, when a complaint is about its end.
+    fn unclosed(&self, info: &str) -> Option<&Frame<'t>> {
+        let about_end = ["flow", "node content", "end of stream"].iter().any(|words| info.contains(words));
+        self.stack.last().filter(|frame| frame.flow && about_end)
     }
 
     fn fault(&mut self, spot: Spot, reason: impl Into<String>, hint: impl Into<String>) {

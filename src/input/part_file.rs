@@ -4,9 +4,9 @@ use std::collections::HashSet;
 use std::path::Path;
 use std::sync::Arc;
 
-use super::error::{InputError, printable};
+use super::error::InputError;
 use super::kind::{ALL_KINDS, AnySheet, PartKind};
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::outline::{Outline, Stretch, guard};
@@ -15,6 +15,8 @@ use super::place::{Source, resolve};
 use super::{parallel, yaml};
 use crate::budget::InputFile;
 use crate::files;
+use crate::hints::nearest;
+use crate::printable::printable;
 use crate::sheet::form::Faults;
 
 /// Whose gaps are worth a warning.
@@ -102,11 +104,11 @@ fn top_faults(path: &Path, text: &str, outline: &Outline) -> Vec<InputError> {
     let kinds = || ALL_KINDS.iter().map(|kind| kind.key());
     if outline.top.is_empty() {
         let hint = format!("a library file has one of the keys {} at its top", listed(kinds()));
-        return vec![InputError::of_file(path, "holds no parts", hint)];
+        return vec![InputError::of_file(path, "the file holds no parts", hint)];
     }
     if is_budget(outline) {
         let hint = "name it on the command line; `parts:` names folders of parts only";
-        return vec![InputError::of_file(path, "is a budget, not a library of parts", hint)];
+        return vec![InputError::of_file(path, "the file is a budget, not a library of parts", hint)];
     }
     let mut notes = Notes::default();
     for (key, _) in outline.top.iter().filter(|(key, _)| PartKind::from_key(key).is_none()) {

@@ -90,6 +90,14 @@ impl<'a> Trail<'a> {
         Trail { parent: Some(self), step: TrailStep::Item(index) }
     }
 
+    /// The key whose value this leads to; `None` for an item of a list.
+    pub fn last_key(&self) -> Option<&'a str> {
+        match self.step {
+            TrailStep::Key(name) => Some(name),
+            _ => None,
+        }
+    }
+
     /// The path to keep.
     pub fn path(&self) -> KeyPath {
         let mut steps = Vec::new();

@@ -4,10 +4,11 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, Span};
 
-use super::error::{Excerpt, InputError, is_unprintable};
+use super::error::{Excerpt, InputError};
 use super::notes::{Mark, Note};
 use super::path::{KeyPath, Step, write_steps};
 use super::yaml::YamlFault;
+use crate::printable::is_unprintable;
 
 /// A stretch of a file that holds whole values.
 #[derive(Clone, Copy, Debug)]
@@ -69,9 +70,8 @@ fn place(note: Note, spot: Option<Spot>, lines: &[&str], source: &Source<'_>) ->
     let (part, path) = names(&note.path, source.library);
     let line = spot.and_then(|spot| lines.get(spot.line - 1).copied());
     let mut hint = note.hint;
-    let comment = line.is_some_and(|line| line.contains(" #"));
-    if comment && note.severity == super::error::Severity::Error && note.reason.contains("needs its unit") {
-        hint.push_str("; what follows ` #` on a line is a comment");
+    if let Some((spot, line)) = spot.zip(line).filter(|_| note.reason.ends_with("needs its unit")) {
+        hint.push_str(lost_unit(line, spot));
     }
     InputError {
         severity: note.severity,
@@ -88,6 +88,18 @@ fn place(note: Note, spot: Option<Spot>, lines: &[&str], source: &Source<'_>) ->
     }
 }
 
+/// What YAML may have made of the unit of a number.
+fn lost_unit(line: &str, spot: Spot) -> &'static str {
+    let mut after = line.chars().skip(spot.end);
+    match after.next() {
+        Some(',') if after.next().is_some_and(|c| c.is_ascii_digit()) => {
+            "; decimals take a point, not a comma"
+        }
+        Some(' ') if after.next() == Some('#') => "; what follows ` #` on a line is a comment",
+        _ => "",
+    }
+}
+
 /// Name of the part and the path inside it.
 fn names(path: &KeyPath, library: bool) -> (String, String) {
     let part = if library { path.key(1).unwrap_or("") } else { "" };
@@ -99,7 +111,7 @@ fn names(path: &KeyPath, library: bool) -> (String, String) {
 }
 
 /// Characters of a long line that are kept before and after the mark.
-const CONTEXT: usize = 80;
+const CONTEXT: usize = 2000;
 
 /// A line with a mark; control characters replaced, long lines cut around the mark.
 pub fn excerpt(line: &str, spot: Spot) -> Excerpt {
@@ -267,9 +279,9 @@ mod tests {
 
     #[test]
     fn long_lines_are_cut_around_the_mark() {
-        let line = format!("{}µµ{}", "x".repeat(500), "y".repeat(500));
-        let cut = excerpt(&line, Spot { line: 1, start: 500, end: 502 });
+        let line = format!("{}µµ{}", "x".repeat(5000), "y".repeat(5000));
+        let cut = excerpt(&line, Spot { line: 1, start: 5000, end: 5002 });
         assert_eq!(&cut.text[cut.start..cut.end], "µµ");
-        assert!(cut.text.chars().count() < 300);
+        assert!(cut.text.chars().count() < 6100);
     }
 }

@@ -1,9 +1,9 @@
 //! Quantities: `6.8 mΩ` to an SI number of the dimension that is expected.
 
-use super::nearest::nearest;
 use super::node::Node;
 use super::notes::Blame;
 use super::units;
+use crate::hints::nearest;
 use crate::units::Dimension;
 
 /// What is expected: a dimension and an example of it for the messages.

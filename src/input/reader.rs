@@ -3,11 +3,12 @@
 use super::datum;
 use super::fields::Fields;
 use super::inherit::hand_down;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
 use super::sample::{key_names, sample};
+use crate::hints::nearest;
 use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 
@@ -27,7 +28,11 @@ fn open<'n, 't>(
 ) -> Option<Fields<'n, 't>> {
     // the sample is worth its allocations only when something is wrong
     let sound = matches!(node, Node::Map(entries) if !entries.is_empty());
-    let like = if sound { String::new() } else { format!("`{}`", sample(form)) };
+    let like = match trail.last_key() {
+        _ if sound => String::new(),
+        Some(key) => format!("`{key}: {}`", sample(form)),
+        None => format!("`{}`", sample(form)),
+    };
     Fields::open(node, trail, &like, notes)
 }
 
@@ -59,11 +64,8 @@ impl<'n, 't> Reader<'_, 'n, 't> {
     }
 
     fn missing(&mut self, key: &'static Key, example: &str) {
-        let blame = Blame::new(
-            format!("`{}` is missing", key.name),
-            format!("add `{}: {example}` ({})", key.name, key.about),
-        );
-        self.notes.key_error(self.fields.trail, blame);
+        let hint = format!("add `{}: {example}` ({})", key.name, key.about);
+        self.notes.missing(self.fields.trail, key.name, hint);
     }
 
     fn datum(&mut self, key: &'static Key, node: &Node) -> Option<Datum> {

@@ -4,14 +4,14 @@ use std::collections::HashSet;
 use std::sync::Arc;
 
 use super::budget_grid::whole;
-use super::error::printable;
 use super::fields::Fields;
 use super::kind::{ALL_KINDS, PartKind};
-use super::nearest::nearest;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
 use crate::budget::{Library, PartsOf};
+use crate::hints::nearest;
+use crate::printable::printable;
 use crate::stage::Placed;
 
 /// Most parts in parallel in one slot.
@@ -79,7 +79,7 @@ impl Shelf<'_> {
             None => format!("add it under `{}`; ", kind.key()),
         };
         hint.push_str(&format!("(searched: {})", self.folders));
-        Blame::new(format!("no part is named `{shown}` among the {}", kind.key().replace('_', " ")), hint)
+        Blame::new(format!("no part is named `{shown}` among the {}", kind.plural()), hint)
     }
 
     /// A part with its count: `name` or `{part: name, count: 2}`.

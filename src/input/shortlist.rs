@@ -7,7 +7,7 @@ use super::budget_stages::slots;
 use super::datum::bounded;
 use super::fields::Fields;
 use super::kind::PartKind;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
 use super::notes::{Blame, Notes};
 use super::path::Trail;
@@ -16,6 +16,7 @@ use super::sample::key_names;
 use super::shelf::Shelf;
 use crate::budget::Shortlist;
 use crate::grid::AxisName;
+use crate::hints::{Vocabulary, nearest};
 use crate::ledger::Slot;
 use crate::sheet::form::Key;
 use crate::stage::{Circuit, StageSheet};
@@ -38,7 +39,7 @@ pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut No
     let example = context.names.first().copied().unwrap_or("synchronous");
     let stage = fields
         .require("stage", example, notes)
-        .and_then(|node| word(node, context.names, &trail.key("stage"), notes))?;
+        .and_then(|node| word(node, (context.names, None), &trail.key("stage"), notes))?;
     // a stage with errors has been complained of; its slots are unknown
     let stage = context.stages.iter().find(|candidate| candidate.name == stage)?;
     let own = slots(stage.rectifier_name());
@@ -68,7 +69,8 @@ pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut No
         }
         shortlist.switching_frequency = budget_grid::axis((axis, RatedLoad::Absent), node, &trail, notes);
     }
-    fields.close(
+    fields.close_with(
+        Some(Vocabulary::Slot),
         || ["stage", axis.name()].into_iter().chain(own.iter().map(|slot| slot.name())).collect(),
         notes,
     );
@@ -123,7 +125,7 @@ fn candidates(
         single => vec![shelf.name(kind, single, trail, notes)?],
     };
     if names.is_empty() && shelf.complete && matches!(node, Node::Text(_)) {
-        let reason = format!("the library has no {}", kind.key().replace('_', " "));
+        let reason = format!("the library has no {}", kind.plural());
         notes.value_error(trail, node, Blame::new(reason, "add some, or take the slot out of the shortlist"));
     }
     Some(names)
@@ -170,7 +172,7 @@ fn filtered(
         kind.names(shelf.library).into_iter().filter(|name| passes(name)).cloned().collect();
     if names.is_empty() && shelf.complete {
         let blame = Blame::new(
-            format!("none of the {} passes", kind.key().replace('_', " ")),
+            format!("none of the {} passes", kind.plural()),
             "loosen the limits; a part that lacks a value does not pass",
         );
         notes.at_value(trail, blame);

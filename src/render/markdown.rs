@@ -109,8 +109,11 @@ fn escape(text: &str) -> String {
     let mut escaped = String::with_capacity(clean.len() + 8);
     let mut rest = clean.as_ref();
     while let Some(c) = rest.chars().next() {
-        let special =
-            matches!(c, '\\' | '|' | '`' | '*' | '_' | '[' | ']' | '<' | '>' | '~' | '&' | '$' | '@' | '^');
+        // an underscore inside a word, as in V_IN, is never emphasis
+        let inside = |c: Option<char>| c.is_some_and(char::is_alphanumeric);
+        let in_word = inside(escaped.chars().next_back()) && inside(rest.chars().nth(1));
+        let special = (c == '_' && !in_word)
+            || matches!(c, '\\' | '|' | '`' | '*' | '[' | ']' | '<' | '>' | '~' | '&' | '$' | '@' | '^');
         let link = rest.starts_with("://") || (c == '.' && ends_with_www(&escaped));
         if special || link {
             escaped.push('\\');

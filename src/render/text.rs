@@ -104,7 +104,9 @@ impl Text {
     }
 
     fn table(&self, text: &mut String, table: &Table) {
-        self.wrap(text, "", &printable(&table.caption));
+        if !table.caption.is_empty() {
+            self.wrap(text, "", &printable(&table.caption));
+        }
         let layout = escaped(table.layout());
         let spans = panels::spans(table, &layout);
         for (place, panel) in panels::split(table, &spans, self.width()).iter().enumerate() {

@@ -19,6 +19,12 @@ pub fn budget(budget: &Budget, what: &str) -> String {
     parts.join(" · ")
 }
 
+/// "lossbook 0.1.0 · input 3f9a21c4 · typical values": what an answer about the whole budget says of itself once.
+pub fn origin(budget: &Budget) -> String {
+    let version = env!("CARGO_PKG_VERSION");
+    format!("lossbook {version} · input {} · {TYPICAL} values", budget.fingerprint())
+}
+
 /// The same for one stage, with what is fixed in the table and the number of assumed and of missing items.
 pub fn stage(candidate: &Candidate<'_>, fixed: &str) -> String {
     let assumed = candidate.assumptions.len();

@@ -78,6 +78,8 @@ pub struct Key {
     pub about: &'static str,
     /// An example as it would stand in a file, for the template.
     pub example: &'static str,
+    /// True for an optional key that a starter file shows ready for use.
+    pub starter: bool,
 }
 
 impl Key {
@@ -92,6 +94,7 @@ impl Key {
             absent: "",
             about,
             example: "",
+            starter: false,
         }
     }
 
@@ -122,6 +125,12 @@ impl Key {
     /// What is assumed when the key is absent.
     pub const fn absent(mut self, assumption: &'static str) -> Self {
         self.absent = assumption;
+        self
+    }
+
+    /// Shows an optional key in a starter file ready for use.
+    pub const fn starter(mut self) -> Self {
+        self.starter = true;
         self
     }
 

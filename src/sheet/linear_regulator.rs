@@ -1,8 +1,8 @@
 //! Linear regulator: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE};
+use super::common::{Descriptive, PRICE, distinct};
 use super::datum::Datum;
-use super::form::{Form, Key, KeyVisitor, Need};
+use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use crate::units::Dimension as D;
 
 /// A linear regulator as its data sheet states it.
@@ -35,7 +35,8 @@ const I_GND: Key = Key::new("i_gnd", D::Current, "ground current against load");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)
     .absent("the part stays at ambient when absent")
-    .example("18 K/W");
+    .example("18 K/W")
+    .starter();
 const T_J_MAX: Key =
     Key::new("t_j_max", D::Temperature, "junction temperature rating").sane(70.0, 250.0).example("125 °C");
 
@@ -49,6 +50,11 @@ impl Form for LinearRegulatorSheet {
         v.optional(&R_TH_JA, &mut self.r_th_ja);
         v.required(&T_J_MAX, &mut self.t_j_max);
         v.optional(&PRICE, &mut self.price);
+    }
+
+    fn cross_check(&self, faults: &mut Faults) {
+        distinct("dropout", "i", self.dropout.iter().map(|point| point.i.value), faults);
+        distinct("i_gnd", "i", self.i_gnd.iter().map(|point| point.i.value), faults);
     }
 }
 
