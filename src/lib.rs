@@ -42,6 +42,7 @@ pub mod heat;
 pub mod hints;
 pub mod infeasible;
 pub mod input;
+pub mod justify;
 pub mod ledger;
 pub mod loads;
 pub mod loss;

@@ -8,6 +8,7 @@ mod compare;
 mod desk;
 mod failure;
 pub(crate) mod interrupt;
+mod justify;
 mod load;
 mod options;
 mod progress;
@@ -60,6 +61,7 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 #[derive(Debug, Subcommand)]
 pub(crate) enum Verb {
     Compare(compare::Options),
+    Justify(justify::Options),
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
@@ -72,6 +74,7 @@ impl Verb {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         match self {
             Verb::Compare(options) => options.run(common),
+            Verb::Justify(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
