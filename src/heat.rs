@@ -36,7 +36,7 @@ pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     for _ in 0..QUICK_PASSES {
         let hot = prepared.hot(&search.t);
         let waveform = prepared.waveform(&search.t, &hot)?;
-        let heated = prepared.heated(waveform, &search.t, &hot, &mut near);
+        let heated = prepared.heated_by(waveform, &search.t, &hot, &mut near);
         let image = image(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
@@ -204,7 +204,7 @@ pub fn at_temperatures(prepared: &Prepared<'_>, temperatures: &Nodes) -> Result<
     let hot = prepared.hot(temperatures);
     let waveform = prepared.waveform(temperatures, &hot)?;
     prepared.check_times(&waveform)?;
-    let heated = prepared.heated(waveform, temperatures, &hot, &mut Memory::default());
+    let heated = prepared.heated_by(waveform, temperatures, &hot, &mut Memory::default());
     Ok(solved(prepared, temperatures, &heated))
 }
 
@@ -282,7 +282,7 @@ fn unheated_watts(prepared: &Prepared<'_>, waveform: &Waveform, slot: Slot) -> f
 fn image_at(prepared: &Prepared<'_>, t: &Nodes, near: &mut Memory) -> Result<Nodes, Infeasible> {
     let hot = prepared.hot(t);
     let waveform = prepared.waveform(t, &hot)?;
-    Ok(image(prepared, &prepared.heated(waveform, t, &hot, near)))
+    Ok(image(prepared, &prepared.heated_by(waveform, t, &hot, near)))
 }
 
 fn largest(values: &Nodes) -> f64 {
@@ -318,7 +318,7 @@ fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
         for node in 0..NODES {
             t[node] += weight * difference[node];
         }
-        if !(largest(&t) < HOTTEST) {
+        if !t.iter().all(|t| *t < HOTTEST) {
             let hottest = t.map(|t| if t.is_finite() { t.min(HOTTEST) } else { HOTTEST });
             let gain = loop_gain(prepared, &hottest).unwrap_or(f64::INFINITY);
             return Err(unstable(prepared, &t, gain));
@@ -390,7 +390,7 @@ pub fn settle_linear(
     let ledger = linear(regulator, output_voltage, &point)?.ledger();
     let rise = regulator.r_th.map_or(0.0, |r_th| r_th / regulator.n * ledger.loss());
     let temperature = point.ambient + rise;
-    if !(temperature < HOTTEST) {
+    if temperature >= HOTTEST {
         return Err(Infeasible::NoStableTemperature { slot: Slot::Regulator, gain: 0.0 });
     }
     let mut temperatures = [None; SLOTS];

@@ -1,4 +1,9 @@
-//! The model: from a fitted stage, an operating point and temperatures to every contribution of the ledger.
+#![doc = include_str!("model.md")]
+//!
+//! # In code
+//!
+//! From a fitted stage, an operating point and temperatures to every contribution of the ledger: [`Prepared`] holds what
+//! temperatures do not change, [`Prepared::heated`] calls the mechanisms of [`crate::loss`], [`evaluate`] settles the heat.
 
 use crate::edges::{self, NodeCapacitance};
 use crate::fitted::{
@@ -272,9 +277,15 @@ impl<'a> Prepared<'a> {
         Ok(waveform)
     }
 
+    /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
+    pub fn heated(&self, t: &Nodes, near: &mut Memory) -> Result<Heated, Infeasible> {
+        let hot = self.hot(t);
+        Ok(self.heated_by(self.waveform(t, &hot)?, t, &hot, near))
+    }
+
     /// What heats the parts at temperatures with the waveform that belongs to them.
     #[inline(always)]
-    pub fn heated(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios, near: &mut Memory) -> Heated {
+    pub fn heated_by(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios, near: &mut Memory) -> Heated {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let (controller, high) = (&stage.controller, &stage.high_side);
         let frequency = waveform.frequency;

@@ -6,26 +6,29 @@ use std::sync::Arc;
 
 use super::budget_grid::{self, MOST_POINTS, RatedLoad, value};
 use super::budget_keys as keys;
+use super::error::Blame;
 use super::error::InputError;
 use super::fields::Fields;
-use super::kind::{ALL_KINDS, PartKind};
+use super::kind::PartKind;
 use super::library::{self, Loaded};
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::outline::{Outline, guard};
 use super::part_file::{Attention, is_budget};
 use super::path::Trail;
 use super::place::{Source, resolve};
 use super::shelf::Shelf;
 use super::{budget_stages, budget_terms as terms, shortlist, yaml};
-use crate::budget::{Budget, InputFile};
+use crate::budget::{Budget, Coupling, InputFile};
 use crate::files;
 use crate::grid::{AxisName, Grid, OperatingPoint};
+use crate::hints::Vocabulary;
+use crate::ledger::Slot;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 
 /// Keys at the top of a budget, in the order of the documentation.
-pub const KEYS: [&str; 17] = [
+pub(crate) const KEYS: [&str; 17] = [
     "budget",
     "about",
     "source",
@@ -46,7 +49,7 @@ pub const KEYS: [&str; 17] = [
 ];
 
 /// Reads a budget and the library it names; the budget is there when none of the faults is an error.
-pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
+pub(crate) fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
     let file = match files::read_text(path) {
         Ok(file) => file,
         Err(fault) => {
@@ -60,7 +63,7 @@ pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
 }
 
 /// Reads the text of a budget that has passed the guard.
-pub fn load_text(
+pub(crate) fn load_text(
     path: &Path,
     file: &files::TextFile,
     outline: &Outline,
@@ -85,11 +88,15 @@ pub fn load_text(
 fn no_budget(path: &Path, outline: &Outline) -> InputError {
     let parts = outline.top.iter().any(|(key, _)| PartKind::from_key(key).is_some());
     let (reason, hint) = match (outline.top.is_empty(), parts) {
-        (true, _) => ("holds nothing", "a budget begins with `budget:` and its title"),
-        (_, true) => {
-            ("is a library of parts, not a budget", "name a budget; it names its parts with `parts:`")
-        }
-        _ => ("is no budget: none of its keys is known", "a budget begins with `budget:` and its title"),
+        (true, _) => ("the file holds nothing", "a budget begins with `budget:` and its title"),
+        (_, true) => (
+            "the file is a library of parts, not a budget",
+            "name a budget; it names its parts with `parts:`",
+        ),
+        _ => (
+            "the file is no budget: none of its keys is known",
+            "a budget begins with `budget:` and its title",
+        ),
     };
     InputError::of_file(path, reason, hint)
 }
@@ -181,6 +188,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
         let shortlist = self.shortlist(&shelf, &stages);
         let derating = self.optional("derating", terms::derating).unwrap_or_default();
         let (board, coupling) = board.unwrap_or((BoardSheet::default(), Vec::new()));
+        self.coupled_slots(&stages, &coupling);
         let fields = std::mem::replace(&mut self.fields, Fields::empty());
         fields.close(|| KEYS.to_vec(), self.notes);
         if self.notes.errors() > 0 {
@@ -211,6 +219,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             profile: profile.unwrap_or_default(),
             battery,
             bench,
+            values: crate::worst::ValueSet::default(),
             shortlist,
             derating,
             inputs,
@@ -307,6 +316,27 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
         headline.is_none_or(|node| node.get(AxisName::SwitchingFrequency.name()).is_some())
     }
 
+    /// Heat between slots that no stage has together.
+    fn coupled_slots(&mut self, stages: &[StageSheet], coupling: &[Coupling]) {
+        let of_stage = |stage: &StageSheet, slot: Slot| {
+            slot == Slot::Board || budget_stages::slots(stage.rectifier_name()).contains(&slot)
+        };
+        // stages with errors are not among them
+        if self.notes.errors() > 0 {
+            return;
+        }
+        let top = Trail::TOP;
+        let board = top.key("board");
+        let trail = board.key(keys::COUPLING.name);
+        for pair in coupling {
+            let together = |stage: &StageSheet| of_stage(stage, pair.heated) && of_stage(stage, pair.heating);
+            if !stages.iter().any(together) {
+                let blame = Blame::new("no stage has both slots", "take it out, or check the names");
+                self.notes.doubt(&trail.key(pair.heated.name()).key(pair.heating.name()), blame);
+            }
+        }
+    }
+
     fn count(&mut self, stages: &[StageSheet], grid: &Grid) {
         let axis = AxisName::SwitchingFrequency;
         let points = stages.iter().map(|stage| {
@@ -364,7 +394,7 @@ fn headline(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes)
         }
     }
     let point = budget_grid::point(&mut fields, rated, notes);
-    fields.close(|| crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
+    fields.close_with(Some(Vocabulary::Axis), || crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
     Some(OperatingPoint {
         input_voltage: point.input_voltage?,
         load: point.load?,
@@ -391,9 +421,4 @@ impl Loaded {
             |fault: &InputError| fault.severity == super::error::Severity::Error && fault.part.is_empty();
         !self.inputs.is_empty() && !faults.iter().any(unread)
     }
-}
-
-/// True for a key at the top of a library file; used for telling the two sorts of file apart.
-pub fn is_part_kind(key: &str) -> bool {
-    ALL_KINDS.iter().any(|kind| kind.key() == key)
 }
