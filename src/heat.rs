@@ -4,8 +4,8 @@ use crate::fitted::{CONTROLLER, HIGH, INDUCTOR, NODES, Nodes, RECTIFIER, Rectifi
 use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
-use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
 use crate::loss::leakage::Leakage;
+use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
 use crate::near::Memory;
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::diode::Diode;
@@ -167,8 +167,7 @@ impl Growth {
             (Some(leakage), Some(law)) => leakage.watts * law.per_kelvin,
             _ => 0.0,
         };
-        conduction[HIGH] =
-            of_channel(heated.high_conduction.watts, stage.high_side.hot_exponent, t[HIGH]);
+        conduction[HIGH] = of_channel(heated.high_conduction.watts, stage.high_side.hot_exponent, t[HIGH]);
         match (&heated.rectifier, &stage.rectifier) {
             (
                 HeatedRectifier::Synchronous { conduction: channel, schottky: leaking, .. },
@@ -338,47 +337,41 @@ const GAIN_STEP: f64 = 1e-3;
 
 /// Thermal loop gain (E51): spectral radius of d(image)/dT by central differences.
 pub fn loop_gain(prepared: &Prepared<'_>, t: &Nodes) -> Result<f64, Infeasible> {
-    let mut jacobian = [[0.0; NODES]; NODES];
+    // no loss depends on the temperature of the controller: its column is zero
+    let mut jacobian = [[0.0; MUTUAL]; MUTUAL];
     let mut near = Memory::default();
-    for column in 0..NODES {
-        // no loss depends on the temperature of the controller
-        if column == CONTROLLER || prepared.stage.heat.to_ambient[column].is_none() {
+    for column in 0..MUTUAL {
+        if prepared.stage.heat.to_ambient[column].is_none() {
             continue;
         }
-        let mut side = |sign: f64| {
-            let mut moved = *t;
-            moved[column] += sign * GAIN_STEP;
-            image_at(prepared, &moved, &mut near)
-        };
-        let (above, below) = (side(1.0)?, side(-1.0)?);
-        for row in 0..NODES {
+        let mut moved = *t;
+        moved[column] = t[column] + GAIN_STEP;
+        let above = image_at(prepared, &moved, &mut near)?;
+        moved[column] = t[column] - GAIN_STEP;
+        let below = image_at(prepared, &moved, &mut near)?;
+        for row in 0..MUTUAL {
             jacobian[row][column] = (above[row] - below[row]) / (2.0 * GAIN_STEP);
         }
     }
     Ok(spectral_radius(jacobian))
 }
 
-/// Spectral radius as the limit of |A^m|^(1/m), by 16 squarings.
-fn spectral_radius(mut a: [[f64; NODES]; NODES]) -> f64 {
-    let mut logarithm = 0.0;
-    let mut power = 1.0;
-    for _ in 0..16 {
-        let norm = a.iter().flatten().fold(0.0, |norm: f64, x| norm.max(x.abs()));
-        if norm == 0.0 {
+/// Squarings of the matrix for its spectral radius: they leave an error of some parts in 1e5.
+const SQUARINGS: usize = 16;
+
+/// Spectral radius as the limit of |A^m|^(1/m) by squarings: n0 √(n1 √(n2 …)) with the norm n of each square.
+fn spectral_radius(mut a: [[f64; MUTUAL]; MUTUAL]) -> f64 {
+    let mut norms = [0.0; SQUARINGS];
+    for norm in &mut norms {
+        *norm = a.as_flattened().iter().fold(0.0, |norm: f64, x| norm.max(x.abs()));
+        if *norm == 0.0 {
             return 0.0;
         }
-        logarithm += norm.ln() / power;
-        let unit = a.map(|row| row.map(|x| x / norm));
-        let mut square = [[0.0; NODES]; NODES];
-        for row in 0..NODES {
-            for column in 0..NODES {
-                square[row][column] = (0..NODES).map(|k| unit[row][k] * unit[k][column]).sum();
-            }
-        }
-        a = square;
-        power *= 2.0;
+        let scale = 1.0 / *norm;
+        let unit = a.map(|row| row.map(|x| x * scale));
+        a = unit.map(|row| std::array::from_fn(|column| (0..MUTUAL).map(|k| row[k] * unit[k][column]).sum()));
     }
-    logarithm.exp()
+    norms.iter().rev().fold(1.0, |radius: f64, norm| norm * radius.sqrt())
 }
 
 /// Temperature and ledger of a linear regulator: its loss does not depend on its temperature.
@@ -404,15 +397,15 @@ mod tests {
 
     #[test]
     fn spectral_radius_of_known_matrices() {
-        let mut a = [[0.0; NODES]; NODES];
+        let mut a = [[0.0; MUTUAL]; MUTUAL];
         a[0][0] = 0.3;
         a[1][1] = -0.7;
         assert!((spectral_radius(a) - 0.7).abs() < 1e-4);
         // eigenvalues ±√(0.4·0.1)
-        let mut b = [[0.0; NODES]; NODES];
+        let mut b = [[0.0; MUTUAL]; MUTUAL];
         b[0][1] = 0.4;
         b[1][0] = 0.1;
         assert!((spectral_radius(b) - 0.2).abs() < 1e-4);
-        assert_eq!(spectral_radius([[0.0; NODES]; NODES]), 0.0);
+        assert_eq!(spectral_radius([[0.0; MUTUAL]; MUTUAL]), 0.0);
     }
 }

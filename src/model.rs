@@ -236,8 +236,7 @@ impl<'a> Prepared<'a> {
             inductance: self.inductance,
             ripple_per_volt: self.ripple_per_volt,
             r_high: self.drive.r_high * hot.high_side + board.high_side_path * self.board_ratio,
-            r_series: stage.inductor.dcr * hot.winding
-                + (board.output_path + board.sense) * self.board_ratio,
+            r_series: stage.inductor.dcr * hot.winding + (board.output_path + board.sense) * self.board_ratio,
             off,
         }
     }
@@ -292,7 +291,8 @@ impl<'a> Prepared<'a> {
 
         // high side
         let i_on = waveform.valley.max(0.0);
-        let durations = edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak], near);
+        let durations =
+            edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak], near);
         let conditions = EdgeConditions {
             v_in,
             i_on,
@@ -308,8 +308,7 @@ impl<'a> Prepared<'a> {
             controller.t_2,
             self.idle_swing,
         );
-        let met =
-            if v_node > 0.0 { self.node.capacitive_energy(v_in, v_node) } else { self.node_energy };
+        let met = if v_node > 0.0 { self.node.capacitive_energy(v_in, v_node) } else { self.node_energy };
         let r_high = self.drive.r_high * hot.high_side;
         let high_gate = gate_drive::gate_power(self.drive.q_high, &self.drive.high_gate, frequency);
 

@@ -45,7 +45,8 @@ impl HotLaw {
         let place = (t_j - (FIRST - 0.5 * STEP)) * (1.0 / STEP);
         // places below the first and numbers that are none are sorted out here
         let index = place as i32 as usize;
-        let (true, Some(ratio), Some(per_kelvin)) = (place >= 0.0, self.ratios.get(index), PER_KELVIN.get(index))
+        let (true, Some(ratio), Some(per_kelvin)) =
+            (place >= 0.0, self.ratios.get(index), PER_KELVIN.get(index))
         else {
             return ((t_j + ZERO_KELVIN) / COLD_KELVIN).powf(self.exponent);
         };
