@@ -215,8 +215,8 @@ impl<'t> Guard<'t> {
         frame.after_key = true;
         if depth == 1 {
             self.top.push((text.as_ref().into(), spot));
-        } else if depth == 2 && !frame.flow {
-            self.entries.push((self.top.len() - 1, spot));
+        } else if let Some(top) = self.top.len().checked_sub(1).filter(|_| depth == 2 && !frame.flow) {
+            self.entries.push((top, spot));
         }
         if text == "<<" {
             self.fault(spot, "merge keys are not read", "write the keys out");
