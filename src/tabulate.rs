@@ -6,7 +6,6 @@ use crate::answer::Answer;
 use crate::budget::Budget;
 use crate::candidate::Candidate;
 use crate::columns::Columns;
-use crate::compare::TYPICAL;
 use crate::record::Record;
 use crate::requirements;
 use crate::sweep::{self, Watch};
@@ -105,7 +104,7 @@ impl Answer for Question<'_> {
             "{{\"lossbook\": {}, \"budget\": {}, \"values\": {}, \"points\": [",
             text(env!("CARGO_PKG_VERSION"))?,
             text(&self.budget.name)?,
-            text(TYPICAL)?
+            text(self.budget.values.name())?
         )?;
         // each point is preceded by its separator; that of the very first one is cut off
         let mut first = Beheaded { out, left: 1 };

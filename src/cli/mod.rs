@@ -8,9 +8,12 @@ mod compare;
 mod desk;
 mod failure;
 pub(crate) mod interrupt;
+mod justify;
 mod load;
 mod options;
 mod progress;
+mod sensitivity;
+mod spread;
 mod tabulate;
 mod template;
 pub(crate) mod terminal;
@@ -58,9 +61,12 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 #[derive(Debug, Subcommand)]
 pub(crate) enum Verb {
     Compare(compare::Options),
+    Justify(justify::Options),
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
+    Spread(spread::Options),
+    Sensitivity(sensitivity::Options),
 }
 
 impl Verb {
@@ -68,9 +74,12 @@ impl Verb {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         match self {
             Verb::Compare(options) => options.run(common),
+            Verb::Justify(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
+            Verb::Spread(options) => options.run(common),
+            Verb::Sensitivity(options) => options.run(common),
         }
     }
 }

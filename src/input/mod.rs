@@ -3,7 +3,10 @@
 //! A text is guarded first (`outline`: nesting, doubled keys, aliases), then read (`yaml`) into nodes, then into forms
 //! (`reader`) or sections of a budget. Nobody stops at the first fault: each is noted by its key path (`notes`), and
 //! only when there are notes are their lines looked up (`place`) and drawn ([`render`]).
+
+pub mod at;
 mod budget;
+mod budget_checks;
 mod budget_grid;
 mod budget_keys;
 mod budget_stages;
@@ -14,6 +17,7 @@ pub mod error;
 mod fields;
 mod gaps;
 mod inherit;
+mod keys;
 mod kind;
 mod library;
 mod listed;
@@ -32,6 +36,7 @@ mod sample;
 mod shelf;
 mod shortlist;
 mod show;
+mod stretches;
 pub mod template;
 mod units;
 mod yaml;
