@@ -54,6 +54,7 @@ pub mod record;
 pub mod render;
 pub mod report;
 pub mod requirements;
+pub mod review;
 pub mod sheet;
 pub mod stage;
 pub mod sweep;
