@@ -4,7 +4,8 @@ use crate::candidate::Candidate;
 use crate::compare::Comparison;
 use crate::findings::Severity;
 use crate::grid::{Axis, AxisName, OperatingPoint};
-use crate::ledger::{ALL_MECHANISMS, ALL_SLOTS};
+use crate::infeasible::Infeasible;
+use crate::ledger::{ALL_MECHANISMS, ALL_SLOTS, Mechanism};
 use crate::loads;
 use crate::model::Solved;
 use crate::ratings;
@@ -150,22 +151,7 @@ fn stacked(comparison: &Comparison<'_>, candidate: &Candidate<'_>, loads: &[f64]
     let headline = &comparison.budget.headline;
     let fixed = format!("V_IN {}, {}", words::set(headline.input_voltage, D::Voltage), at(comparison));
     let places: Vec<String> = loads.iter().map(|load| words::set(*load, D::Current)).collect();
-    let mut columns = vec![Column::quantity("load"), Column::quantity("loss")];
-    columns.extend(mechanisms.iter().map(|mechanism| Column::quantity(mechanism.words())));
-    let mut table = Table::new(caption::stage(candidate, &fixed), columns);
-    for (load, solved) in loads.iter().zip(&solved) {
-        let mut cells = vec![Cell::setting(*load, D::Current)];
-        match solved {
-            Ok(solved) => {
-                cells.push(Cell::watts(solved.loss()));
-                cells.extend(
-                    mechanisms.iter().map(|mechanism| Cell::watts(solved.ledger.mechanism(*mechanism))),
-                );
-            }
-            Err(reason) => cells.push(Cell::missing(reason.to_string())),
-        }
-        table.row(cells);
-    }
+    let table = mechanisms_down(candidate, &fixed, &mechanisms, (&places, &solved));
     let largest = solved.iter().flatten().map(Solved::loss).fold(0.0, f64::max);
     let figure = Figure {
         title: format!("Loss of {} against load, stacked by mechanism", candidate.name()),
@@ -184,6 +170,32 @@ fn stacked(comparison: &Comparison<'_>, candidate: &Candidate<'_>, loads: &[f64]
         }),
     };
     (figure, table)
+}
+
+/// Loss by mechanism, loads across.
+fn mechanisms_down(
+    candidate: &Candidate<'_>,
+    fixed: &str,
+    mechanisms: &[Mechanism],
+    (places, solved): (&[String], &[Result<Solved, Infeasible>]),
+) -> Table {
+    let mut columns = vec![Column::text("mechanism")];
+    columns.extend(places.iter().map(Column::quantity));
+    let mut table = Table::new(caption::stage(candidate, fixed), columns);
+    let row = |name: String, watts: &dyn Fn(&Solved) -> f64, say_why: bool| {
+        let mut cells = vec![Cell::text(name)];
+        cells.extend(solved.iter().map(|solved| match solved {
+            Ok(solved) => Cell::watts(watts(solved)),
+            Err(reason) if say_why => Cell::missing(reason.to_string()),
+            Err(_) => Cell::missing(""),
+        }));
+        cells
+    };
+    for mechanism in mechanisms {
+        table.row(row(mechanism.words(), &|solved| solved.ledger.mechanism(*mechanism), false));
+    }
+    table.total(row("loss".into(), &Solved::loss, true));
+    table
 }
 
 /// Share of each part in the loss at the headline, one bar a stage.

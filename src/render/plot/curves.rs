@@ -22,12 +22,7 @@ pub(super) fn draw(curves: &Curves, canvas: &mut Canvas) -> f64 {
     let y = Axis::around(&curves.y, ys, limits);
     let height = |value: f64| y.place(value).map(|share| TOP + HEIGHT * (1.0 - share));
     frame(&x, &y, canvas);
-    for (place, words) in &curves.marks {
-        if let Some(at) = x.at(*place).filter(|_| x.axis.holds(*place)) {
-            canvas.line([at, TOP], [at, TOP + HEIGHT], "m");
-            canvas.text([at, TOP - 6.0], Anchor::Middle, "t", words);
-        }
-    }
+    marks(curves, &x, canvas);
     let ends: Vec<Option<[f64; 2]>> = curves
         .series
         .iter()
@@ -44,6 +39,18 @@ pub(super) fn draw(curves: &Curves, canvas: &mut Canvas) -> f64 {
         .collect();
     ends_in_words(curves, &ends, canvas);
     TOP + HEIGHT + 46.0
+}
+
+/// Upright lines with their words above, side by side where lines are close.
+fn marks(curves: &Curves, x: &XAxis<'_>, canvas: &mut Canvas) {
+    let held = curves.marks.iter().filter(|(place, _)| x.axis.holds(*place));
+    let shown: Vec<(f64, &String)> = held.filter_map(|(place, words)| Some((x.at(*place)?, words))).collect();
+    let wanted: Vec<f64> = shown.iter().map(|(at, _)| *at).collect();
+    let places = labels::spread(&wanted, 60.0, [LEFT + 100.0, WIDTH - RIGHT + 40.0]);
+    for ((at, words), middle) in shown.iter().zip(places) {
+        canvas.line([*at, TOP], [*at, TOP + HEIGHT], "m");
+        canvas.text([middle, TOP - 6.0], Anchor::Middle, "t", words);
+    }
 }
 
 struct XAxis<'a> {
@@ -107,6 +114,11 @@ fn ends_in_words(curves: &Curves, ends: &[Option<[f64; 2]>], canvas: &mut Canvas
             round(start),
             round(height)
         ));
-        canvas.text([start + 31.0, height + 4.0], Anchor::Start, "t", &line.label);
+        canvas.text(
+            [start + 31.0, height + 4.0],
+            Anchor::Start,
+            "t",
+            &labels::fit(&line.label, RIGHT - 48.0),
+        );
     }
 }

@@ -19,9 +19,34 @@ pub(super) fn spread(wanted: &[f64], gap: f64, [top, bottom]: [f64; 2]) -> Vec<f
     places
 }
 
+/// Width of a letter, generously: drawings know no fonts.
+const LETTER: f64 = 6.9;
+
+/// Words cut to a width; what follows the last comma stays: "a-very-long-na…, 24 V".
+pub(super) fn fit(words: &str, width: f64) -> String {
+    let room = (width / LETTER) as usize;
+    let count = words.chars().count();
+    if count <= room {
+        return words.to_owned();
+    }
+    let (head, tail) = match words.rfind(", ") {
+        Some(comma) if words[comma..].chars().count() + 2 < room => words.split_at(comma),
+        _ => (words, ""),
+    };
+    let kept = room.saturating_sub(tail.chars().count() + 1);
+    format!("{}…{tail}", head.chars().take(kept).collect::<String>())
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn long_words_are_cut_and_keep_their_end() {
+        assert_eq!(fit("synchronous, 24 V", 140.0), "synchronous, 24 V");
+        assert_eq!(fit("synchronous with everything, 24 V", 140.0), "synchronous w…, 24 V");
+        assert_eq!(fit("synchronous with everything", 70.0), "synchrono…");
+    }
 
     #[test]
     fn labels_keep_their_distance() {

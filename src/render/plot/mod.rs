@@ -18,7 +18,7 @@ const WIDTH: f64 = 760.0;
 
 /// The figure as an SVG element; `id` is unique in the document.
 pub fn svg(figure: &Figure, id: &str) -> String {
-    let mut canvas = Canvas { body: String::new(), id: id.to_owned() };
+    let mut canvas = Canvas { body: String::new() };
     let height = match &figure.plot {
         Plot::Curves(curves) => curves::draw(curves, &mut canvas),
         Plot::Stack(stack) => stack::draw(stack, &mut canvas),
@@ -37,7 +37,6 @@ pub fn svg(figure: &Figure, id: &str) -> String {
 /// What is drawn so far.
 struct Canvas {
     body: String,
-    id: String,
 }
 
 /// Where words stand beside their place.

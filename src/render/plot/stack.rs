@@ -11,25 +11,24 @@ const RIGHT: f64 = 158.0;
 const TOP: f64 = 34.0;
 const HEIGHT: f64 = 300.0;
 
-/// Fills that differ without colour: a shade with a hatch of a direction and a width.
-const FILLS: [(&str, &str); 12] = [
-    ("#2f4858", ""),
-    ("#f2f4f6", "M0 8L8 0M-2 2L2 -2M6 10L10 6"),
-    ("#9fb3c1", ""),
-    ("#fff7e0", "M0 4H8"),
-    ("#7a8b99", "M0 0L8 8M-2 6L2 10M6 -2L10 2"),
-    ("#dfe7ec", ""),
-    ("#c98b5c", "M4 0V8"),
-    ("#f7e9df", "M0 0L8 8M0 8L8 0"),
-    ("#55606b", "M0 4H8M4 0V8"),
-    ("#e9eef1", "M2 2h1M6 6h1"),
-    ("#b9a98f", "M0 8L8 0"),
-    ("#ffffff", "M4 0V8"),
+/// Fills that differ without colour: a shade and a hatch.
+const FILLS: [(&str, &[Hatch]); 12] = [
+    ("#2f4858", &[]),
+    ("#f2f4f6", &[Hatch::Rising]),
+    ("#9fb3c1", &[]),
+    ("#fff7e0", &[Hatch::Level]),
+    ("#8d9ba7", &[Hatch::Falling]),
+    ("#dfe7ec", &[]),
+    ("#c98b5c", &[Hatch::Upright]),
+    ("#f7e9df", &[Hatch::Rising, Hatch::Falling]),
+    ("#6f7b86", &[]),
+    ("#ffffff", &[Hatch::Level, Hatch::Upright]),
+    ("#b9a98f", &[Hatch::Rising]),
+    ("#ffffff", &[Hatch::Upright]),
 ];
 
 /// Draws the bars; returns the height used.
 pub(super) fn draw(stack: &Stack, canvas: &mut Canvas) -> f64 {
-    patterns(stack.layers.len(), canvas);
     let total = |place: usize| -> Option<f64> {
         let values = stack.layers.iter().map(|(_, values)| values.get(place).copied().flatten());
         values.fold(None, |sum, value| match (sum, value) {
@@ -52,7 +51,7 @@ pub(super) fn draw(stack: &Stack, canvas: &mut Canvas) -> f64 {
     let mut last: Option<Vec<(usize, f64)>> = None;
     for (place, name) in stack.places.iter().enumerate() {
         let middle = LEFT + step * (place as f64 + 0.5);
-        canvas.text([middle, bottom + 17.0], Anchor::Middle, "t", name);
+        canvas.text([middle, bottom + 17.0], Anchor::Middle, "t", &labels::fit(name, step));
         let Some(total) = totals[place] else {
             canvas.text([middle, bottom - 6.0], Anchor::Middle, "t", "—");
             continue;
@@ -64,14 +63,11 @@ pub(super) fn draw(stack: &Stack, canvas: &mut Canvas) -> f64 {
                 continue;
             };
             let (low, high) = (height(below), height(below + value));
-            canvas.add(format_args!(
-                "<rect x=\"{}\" y=\"{}\" width=\"{}\" height=\"{}\" fill=\"url(#{}-{layer})\" class=\"b\"/>",
-                round(middle - 0.5 * bar),
-                round(high),
-                round(bar),
-                round(low - high),
-                canvas.id.clone()
-            ));
+            filled(
+                layer,
+                Area { left: middle - 0.5 * bar, top: high, width: bar, height: low - high },
+                canvas,
+            );
             middles.push((layer, 0.5 * (low + high)));
             below += value;
         }
@@ -101,24 +97,83 @@ fn names(stack: &Stack, last: &[(usize, f64)], canvas: &mut Canvas) {
     let heights = labels::spread(&ordered, 16.0, [TOP, TOP + HEIGHT]);
     let start = WIDTH - RIGHT + 12.0;
     for (layer, (name, _)) in stack.layers.iter().enumerate() {
-        canvas.add(format_args!(
-            "<rect x=\"{}\" y=\"{}\" width=\"16\" height=\"11\" fill=\"url(#{}-{layer})\" class=\"b\"/>",
-            round(start),
-            round(heights[layer] - 6.0),
-            canvas.id.clone()
-        ));
-        canvas.text([start + 21.0, heights[layer] + 4.0], Anchor::Start, "t", name);
+        let area = Area { left: start, top: heights[layer] - 6.0, width: 16.0, height: 11.0 };
+        filled(layer, area, canvas);
+        canvas.text(
+            [start + 21.0, heights[layer] + 4.0],
+            Anchor::Start,
+            "t",
+            &labels::fit(name, RIGHT - 36.0),
+        );
     }
 }
 
-fn patterns(count: usize, canvas: &mut Canvas) {
-    canvas.add(format_args!("<defs>"));
-    for layer in 0..count {
-        let (shade, hatch) = FILLS[layer % FILLS.len()];
-        let id = canvas.id.clone();
-        canvas.add(format_args!(
-            "<pattern id=\"{id}-{layer}\" width=\"8\" height=\"8\" patternUnits=\"userSpaceOnUse\"><rect width=\"8\" height=\"8\" fill=\"{shade}\"/><path d=\"{hatch}\" stroke=\"#1b2430\" stroke-width=\"1\"/></pattern>"
-        ));
+/// A rectangle.
+struct Area {
+    left: f64,
+    top: f64,
+    width: f64,
+    height: f64,
+}
+
+/// A rectangle in the fill of a layer.
+fn filled(layer: usize, area: Area, canvas: &mut Canvas) {
+    let (shade, hatches) = FILLS[layer % FILLS.len()];
+    let [x, y, width, height] = [area.left, area.top, area.width, area.height].map(round);
+    canvas.add(format_args!(
+        "<rect x=\"{x}\" y=\"{y}\" width=\"{width}\" height=\"{height}\" fill=\"{shade}\" class=\"b\"/>"
+    ));
+    let lines: String = hatches.iter().map(|hatch| hatch.lines(&area)).collect();
+    if !lines.is_empty() {
+        canvas.add(format_args!("<path d=\"{lines}\" class=\"b\"/>"));
     }
-    canvas.add(format_args!("</defs>"));
+}
+
+/// Direction of the lines of a hatch.
+#[derive(Clone, Copy)]
+enum Hatch {
+    Level,
+    Upright,
+    Rising,
+    Falling,
+}
+
+/// Distance between two lines.
+const PITCH: f64 = 5.0;
+
+impl Hatch {
+    /// Lines that fill an area to its edges.
+    fn lines(self, area: &Area) -> String {
+        let Area { left, top, width, height } = *area;
+        let (right, bottom) = (left + width, top + height);
+        let count = |length: f64| (length / PITCH) as i32;
+        let line = |[x1, y1]: [f64; 2], [x2, y2]: [f64; 2]| {
+            format!("M{} {}L{} {}", round(x1), round(y1), round(x2), round(y2))
+        };
+        match self {
+            Hatch::Level => (1..=count(height))
+                .map(|k| bottom - PITCH * f64::from(k))
+                .map(|y| line([left, y], [right, y]))
+                .collect(),
+            Hatch::Upright => (1..=count(width))
+                .map(|k| left + PITCH * f64::from(k))
+                .map(|x| line([x, top], [x, bottom]))
+                .collect(),
+            // x + y constant, or x - y constant, cut off at the four edges
+            Hatch::Rising => (1..=count(width + height))
+                .map(|k| PITCH * f64::from(k))
+                .map(|s| {
+                    let (a, b) = ((s - height).max(0.0), s.min(width));
+                    line([left + a, top + s - a], [left + b, top + s - b])
+                })
+                .collect(),
+            Hatch::Falling => (1..=count(width + height))
+                .map(|k| PITCH * f64::from(k))
+                .map(|s| {
+                    let (a, b) = ((s - height).max(0.0), s.min(width));
+                    line([left + a, bottom - s + a], [left + b, bottom - s + b])
+                })
+                .collect(),
+        }
+    }
 }
