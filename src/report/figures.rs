@@ -9,7 +9,7 @@ use crate::ledger::{ALL_MECHANISMS, ALL_SLOTS, Mechanism};
 use crate::loads;
 use crate::model::Solved;
 use crate::ratings;
-use crate::report::figure::{Curves, Heat, HeatCell, Plot, Scale, Series, Stack};
+use crate::report::figure::{Curves, Heat, HeatCell, Layer, Plot, Scale, Series, Stack};
 use crate::report::number::Form;
 use crate::report::{Cell, Column, Figure, Table, caption, tables, words};
 use crate::sweep;
@@ -146,7 +146,7 @@ fn stacked(comparison: &Comparison<'_>, candidate: &Candidate<'_>, loads: &[f64]
         .collect();
     let layers = mechanisms.iter().map(|mechanism| {
         let watts = solved.iter().map(|solved| Some(solved.as_ref().ok()?.ledger.mechanism(*mechanism)));
-        (mechanism.words(), watts.collect())
+        Layer { name: mechanism.words(), fill: *mechanism as usize, values: watts.collect() }
     });
     let headline = &comparison.budget.headline;
     let fixed = format!("V_IN {}, {}", words::set(headline.input_voltage, D::Voltage), at(comparison));
@@ -213,7 +213,7 @@ pub(super) fn loss_by_part(comparison: &Comparison<'_>) -> Option<Figure> {
         ALL_SLOTS.into_iter().filter(|slot| any(&|solved| solved.ledger.slot(*slot) > 0.0)).map(|slot| {
             let share =
                 |solved: &Option<&Solved>| solved.map(|solved| solved.ledger.slot(slot) / solved.loss());
-            (slot.words(), solved.iter().map(share).collect())
+            Layer { name: slot.words(), fill: slot.index(), values: solved.iter().map(share).collect() }
         });
     let places = comparison.candidates.iter().zip(&solved).map(|(candidate, solved)| match solved {
         Some(solved) => format!("{}, {}", candidate.name(), Cell::watts(solved.loss()).shown()),
@@ -284,8 +284,8 @@ fn margin_map(
                     );
                     let cell = Cell::text(words);
                     cells.push(severity.map_or(cell.clone(), |severity| cell.flagged(severity, "")));
-                    // no shade from three times the wanted margin on, the darkest below the rating
-                    let shade = (1.0 - margin / (3.0 * wanted.max(1.0))).clamp(0.0, 1.0);
+                    // no shade from twice the wanted margin on, the darkest below the rating
+                    let shade = (1.0 - margin / (2.0 * wanted.max(1.0))).clamp(0.0, 1.0);
                     HeatCell { text: format!("{margin:.0}"), shade: Some(shade), severity }
                 }
             }

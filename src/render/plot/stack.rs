@@ -12,7 +12,7 @@ const TOP: f64 = 34.0;
 const HEIGHT: f64 = 300.0;
 
 /// Fills that differ without colour: a shade and a hatch.
-const FILLS: [(&str, &[Hatch]); 12] = [
+const FILLS: [(&str, &[Hatch]); 18] = [
     ("#2f4858", &[]),
     ("#f2f4f6", &[Hatch::Rising]),
     ("#9fb3c1", &[]),
@@ -25,12 +25,18 @@ const FILLS: [(&str, &[Hatch]); 12] = [
     ("#ffffff", &[Hatch::Level, Hatch::Upright]),
     ("#b9a98f", &[Hatch::Rising]),
     ("#ffffff", &[Hatch::Upright]),
+    ("#d8c3a5", &[]),
+    ("#b8cfc4", &[Hatch::Level]),
+    ("#7d5a4f", &[]),
+    ("#e3dbee", &[Hatch::Falling]),
+    ("#c9ced3", &[Hatch::Level, Hatch::Upright]),
+    ("#fbe3c0", &[Hatch::Upright]),
 ];
 
 /// Draws the bars; returns the height used.
 pub(super) fn draw(stack: &Stack, canvas: &mut Canvas) -> f64 {
     let total = |place: usize| -> Option<f64> {
-        let values = stack.layers.iter().map(|(_, values)| values.get(place).copied().flatten());
+        let values = stack.layers.iter().map(|layer| layer.values.get(place).copied().flatten());
         values.fold(None, |sum, value| match (sum, value) {
             (None, None) => None,
             (sum, value) => Some(sum.unwrap_or(0.0) + value.unwrap_or(0.0)),
@@ -58,17 +64,17 @@ pub(super) fn draw(stack: &Stack, canvas: &mut Canvas) -> f64 {
         };
         let mut middles = Vec::new();
         let mut below = 0.0;
-        for (layer, (_, values)) in stack.layers.iter().enumerate() {
-            let Some(value) = values.get(place).copied().flatten().filter(|value| *value > 0.0) else {
+        for (at, layer) in stack.layers.iter().enumerate() {
+            let Some(value) = layer.values.get(place).copied().flatten().filter(|value| *value > 0.0) else {
                 continue;
             };
             let (low, high) = (height(below), height(below + value));
             filled(
-                layer,
+                layer.fill,
                 Area { left: middle - 0.5 * bar, top: high, width: bar, height: low - high },
                 canvas,
             );
-            middles.push((layer, 0.5 * (low + high)));
+            middles.push((at, 0.5 * (low + high)));
             below += value;
         }
         let form = if stack.y.form == Form::Share { Form::Share } else { Form::Result(Dimension::Power) };
@@ -96,14 +102,14 @@ fn names(stack: &Stack, last: &[(usize, f64)], canvas: &mut Canvas) {
     }
     let heights = labels::spread(&ordered, 16.0, [TOP, TOP + HEIGHT]);
     let start = WIDTH - RIGHT + 12.0;
-    for (layer, (name, _)) in stack.layers.iter().enumerate() {
-        let area = Area { left: start, top: heights[layer] - 6.0, width: 16.0, height: 11.0 };
-        filled(layer, area, canvas);
+    for (at, layer) in stack.layers.iter().enumerate() {
+        let area = Area { left: start, top: heights[at] - 6.0, width: 16.0, height: 11.0 };
+        filled(layer.fill, area, canvas);
         canvas.text(
-            [start + 21.0, heights[layer] + 4.0],
+            [start + 21.0, heights[at] + 4.0],
             Anchor::Start,
             "t",
-            &labels::fit(name, RIGHT - 36.0),
+            &labels::fit(&layer.name, RIGHT - 36.0),
         );
     }
 }
@@ -117,8 +123,8 @@ struct Area {
 }
 
 /// A rectangle in the fill of a layer.
-fn filled(layer: usize, area: Area, canvas: &mut Canvas) {
-    let (shade, hatches) = FILLS[layer % FILLS.len()];
+fn filled(fill: usize, area: Area, canvas: &mut Canvas) {
+    let (shade, hatches) = FILLS[fill % FILLS.len()];
     let [x, y, width, height] = [area.left, area.top, area.width, area.height].map(round);
     canvas.add(format_args!(
         "<rect x=\"{x}\" y=\"{y}\" width=\"{width}\" height=\"{height}\" fill=\"{shade}\" class=\"b\"/>"
