@@ -58,6 +58,7 @@ pub mod record;
 pub mod render;
 pub mod report;
 pub mod requirements;
+pub mod review;
 pub mod sensitivity;
 pub mod sheet;
 pub mod spread;

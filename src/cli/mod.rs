@@ -12,6 +12,7 @@ mod justify;
 mod load;
 mod options;
 mod progress;
+mod report;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -62,6 +63,7 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 pub(crate) enum Verb {
     Compare(compare::Options),
     Justify(justify::Options),
+    Report(report::Options),
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
@@ -75,6 +77,7 @@ impl Verb {
         match self {
             Verb::Compare(options) => options.run(common),
             Verb::Justify(options) => options.run(common),
+            Verb::Report(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
