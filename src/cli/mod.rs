@@ -9,6 +9,7 @@ mod failure;
 pub(crate) mod interrupt;
 mod load;
 mod options;
+mod pick;
 mod progress;
 mod tabulate;
 pub(crate) mod terminal;
@@ -57,6 +58,7 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 pub(crate) enum Verb {
     Compare(compare::Options),
     Tabulate(tabulate::Options),
+    Pick(pick::Options),
 }
 
 impl Verb {
@@ -65,6 +67,7 @@ impl Verb {
         match self {
             Verb::Compare(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Pick(options) => options.run(common),
         }
     }
 }

@@ -25,6 +25,8 @@ pub mod comparison;
 mod layout;
 pub mod needs;
 pub mod number;
+pub mod shortlist;
+mod shortlist_insight;
 mod table;
 pub mod tables;
 pub mod verdict;
