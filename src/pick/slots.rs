@@ -68,13 +68,32 @@ pub fn choices(budget: &Budget, stage: &StageSheet, listed: &[(Slot, Vec<Arc<str
             let price = price(&sheet).map(|price| price * f64::from(count));
             let mut with = stage.clone();
             put_sheet(&mut with, slot, &name, &sheet);
-            let missing = findings::not_modelled(&Stage::fit(&with, budget));
-            let needs = missing.iter().filter(|missing| missing.lacking == slot);
-            Some(Part { needs: needs.map(|missing| missing.needs).collect(), name, sheet, price })
+            let needs = needs(&Stage::fit(&with, budget), slot);
+            Some(Part { name, sheet, price, needs })
         });
         choices.push(Choice { slot, options: options.collect() });
     }
     choices
+}
+
+/// Data that the part in a slot lacks; a resistance that is not stated at the drive counts, for a stronger drive's is used.
+fn needs(stage: &Stage, slot: Slot) -> Vec<&'static str> {
+    let missing = findings::not_modelled(stage);
+    let lacking = missing.iter().filter(|missing| missing.lacking == slot);
+    let mut needs: Vec<&'static str> = lacking.map(|missing| missing.needs).collect();
+    if let Kind::Switched(stage) = &stage.kind {
+        let undriven = match (slot, &stage.rectifier) {
+            (Slot::HighSide, _) => stage.full_drive.v_high < stage.high_side.on_resistance.lowest_specified(),
+            (Slot::LowSide, Rectifier::Synchronous { low_side, .. }) => {
+                stage.full_drive.v_low < low_side.on_resistance.lowest_specified()
+            }
+            _ => false,
+        };
+        if undriven {
+            needs.push("r_ds_on at this drive voltage");
+        }
+    }
+    needs
 }
 
 /// Number of pieces in a slot; `None` when the stage has no such slot, or a bank that is not of one kind.

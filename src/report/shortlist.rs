@@ -4,7 +4,7 @@ use crate::budget::Budget;
 use crate::compare::TYPICAL;
 use crate::ledger::Slot;
 use crate::pick::entry::{Disqualified, Entry, Outcome};
-use crate::pick::{By, Picked, merit};
+use crate::pick::{By, NAMED, Picked, merit};
 use crate::report::number::{Form, show};
 use crate::report::{Cell, Column, Document, Severity, Table, shortlist_insight, words};
 use crate::units::Dimension as D;
@@ -79,15 +79,21 @@ fn ways(outcome: &Outcome) -> String {
     text
 }
 
-/// Names of the parts that differ, and the frequency.
-pub(super) fn combination(entry: &Entry) -> String {
-    let mut names: Vec<String> = entry.parts.iter().map(|(_, part)| part.clone()).collect();
-    let frequency = entry.switching_frequency.map(|f| words::set(f, D::Frequency));
-    names.dedup();
-    match frequency {
-        Some(frequency) => format!("{} at {frequency}", names.join(" + ")),
+/// Names of the parts that were a choice, and the frequency.
+pub(super) fn combination(outcome: &Outcome, entry: &Entry) -> String {
+    let chosen = entry.parts.iter().filter(|(slot, _)| NAMED.contains(slot) || varies(outcome, *slot));
+    let names: Vec<&str> = chosen.map(|(_, part)| part.as_str()).collect();
+    match entry.switching_frequency {
+        Some(frequency) => format!("{} at {}", names.join(" + "), words::set(frequency, D::Frequency)),
         None => names.join(" + "),
     }
+}
+
+/// True when the ranking has several parts in a slot.
+fn varies(outcome: &Outcome, slot: Slot) -> bool {
+    let mut parts = outcome.ranking.iter().chain(&outcome.not_comparable).map(|entry| entry.part(slot));
+    let first = parts.next();
+    parts.any(|part| Some(part) != first)
 }
 
 /// A value that was ranked by.
@@ -116,7 +122,7 @@ fn verdict(picked: &Picked) -> String {
             _ => "no combination runs at every point within its ratings; see what was left out".into(),
         };
     };
-    let mut text = format!("{}, {}", combination(first), value(outcome, first.value).shown());
+    let mut text = format!("{}, {}", combination(outcome, first), value(outcome, first.value).shown());
     if let Some(second) = outcome.ranking.get(1) {
         let lead = (second.value - first.value).abs();
         let close = picked.insight.as_ref().and_then(|insight| insight.lead.as_ref());
@@ -124,10 +130,10 @@ fn verdict(picked: &Picked) -> String {
         match close.filter(|lead| lead.too_close_to_call).and_then(|lead| lead.spread) {
             Some(spread) => text.push_str(&format!(
                 "; too close to call against {}: {ahead} apart, while the model's spread in overlap and output charge is {}",
-                combination(second),
+                combination(outcome, second),
                 show(spread, Form::Result(D::Power))
             )),
-            None => text.push_str(&format!(", {ahead} ahead of {}", combination(second))),
+            None => text.push_str(&format!(", {ahead} ahead of {}", combination(outcome, second))),
         }
     }
     match first.missed.len() {
@@ -140,18 +146,8 @@ fn verdict(picked: &Picked) -> String {
 fn ranking(outcome: &Outcome, entries: &[Entry], budget: Option<&Budget>) -> Table {
     let Some(first) = entries.first() else { return Table::default() };
     let ranked = &outcome.ranking;
-    let varies = |slot: Slot| {
-        let mut parts = outcome.ranking.iter().chain(&outcome.not_comparable).map(|entry| entry.part(slot));
-        let one = parts.next();
-        parts.any(|part| Some(part) != one)
-    };
-    let always = [Slot::HighSide, Slot::LowSide, Slot::FreewheelDiode, Slot::Inductor, Slot::Regulator];
-    let slots: Vec<Slot> = first
-        .parts
-        .iter()
-        .map(|(slot, _)| *slot)
-        .filter(|slot| always.contains(slot) || varies(*slot))
-        .collect();
+    let named = |slot: &Slot| NAMED.contains(slot) || varies(outcome, *slot);
+    let slots: Vec<Slot> = first.parts.iter().map(|(slot, _)| *slot).filter(named).collect();
     let apart = entries.iter().any(|entry| !entry.needs.is_empty());
     let missed = entries.iter().any(|entry| !entry.missed.is_empty());
     let mut columns = vec![Column::quantity("rank")];
@@ -252,7 +248,7 @@ fn unbeaten(outcome: &Outcome) -> Table {
     let mut table = Table::new(caption(outcome, outcome.by.words()), columns);
     for entry in outcome.unbeaten.iter().take(MOST_ROWS) {
         table.row(vec![
-            Cell::text(combination(entry)),
+            Cell::text(combination(outcome, entry)),
             price(outcome, entry.price),
             value(outcome, entry.value),
         ]);
