@@ -11,6 +11,7 @@ pub(crate) mod interrupt;
 mod justify;
 mod load;
 mod options;
+mod pick;
 mod progress;
 mod report;
 mod sensitivity;
@@ -69,6 +70,7 @@ pub(crate) enum Verb {
     Template(template::Options),
     Spread(spread::Options),
     Sensitivity(sensitivity::Options),
+    Pick(pick::Options),
 }
 
 impl Verb {
@@ -83,6 +85,7 @@ impl Verb {
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
+            Verb::Pick(options) => options.run(common),
         }
     }
 }

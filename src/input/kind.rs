@@ -158,7 +158,7 @@ impl PartKind {
 
 /// A sheet of any kind.
 #[derive(Clone, Debug, PartialEq)]
-pub(crate) enum AnySheet {
+pub enum AnySheet {
     /// A MOSFET.
     Mosfet(Arc<MosfetSheet>),
     /// A diode.

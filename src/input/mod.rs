@@ -18,7 +18,7 @@ mod fields;
 mod gaps;
 mod inherit;
 mod keys;
-mod kind;
+pub mod kind;
 mod library;
 mod listed;
 mod node;

@@ -31,6 +31,8 @@ pub mod needs;
 pub mod number;
 pub mod review;
 pub mod sensitivity;
+pub mod shortlist;
+mod shortlist_insight;
 pub mod spread;
 mod table;
 pub mod tables;
