@@ -37,6 +37,7 @@ pub mod files;
 pub mod findings;
 pub mod fit;
 pub mod fitted;
+pub mod gaps;
 pub mod grid;
 pub mod heat;
 pub mod hints;

@@ -15,7 +15,6 @@ pub mod check;
 mod datum;
 pub mod error;
 mod fields;
-mod gaps;
 mod inherit;
 mod keys;
 pub mod kind;
