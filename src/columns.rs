@@ -1,7 +1,5 @@
 //! Points as rows of a CSV file: units in the headers, full precision, one column an account of the stages present.
 
-use std::io::Write;
-
 use crate::candidate::Candidate;
 use crate::findings::Severity;
 use crate::ledger::{ALL_SLOTS, Account, Slot};
@@ -12,6 +10,20 @@ use crate::record::Record;
 pub struct Columns {
     accounts: Vec<Account>,
     temperatures: Vec<Slot>,
+    stages: Vec<StageCells>,
+}
+
+/// What all rows of a stage have in common.
+#[derive(Clone, Debug)]
+struct StageCells {
+    /// Name in the budget.
+    stage: String,
+    /// Its name as a cell.
+    name: Vec<u8>,
+    /// Which of the accounts it books to.
+    booked: Vec<bool>,
+    /// Cell of the mechanisms that lack data.
+    not_modelled: Vec<u8>,
 }
 
 /// Columns before those of the accounts.
@@ -29,7 +41,8 @@ impl Columns {
             let unheated = matches!(slot, Slot::InputCapacitors | Slot::OutputCapacitors | Slot::Board);
             !unheated && candidates.iter().any(|candidate| candidate.part_names[slot.index()].is_some())
         };
-        Columns { accounts, temperatures: ALL_SLOTS.into_iter().filter(warm).collect() }
+        let stages = candidates.iter().map(|candidate| StageCells::of(candidate, &accounts)).collect();
+        Columns { temperatures: ALL_SLOTS.into_iter().filter(warm).collect(), stages, accounts }
     }
 
     /// The header line.
@@ -48,7 +61,8 @@ impl Columns {
     /// Adds the line of one point.
     pub fn row(&self, record: &Record<'_>, line: &mut Vec<u8>) {
         let (candidate, point) = (record.candidate, &record.point);
-        text(line, candidate.name());
+        let Some(cells) = self.stages.iter().find(|cells| cells.stage == candidate.name()) else { return };
+        line.extend_from_slice(&cells.name);
         match &record.outcome {
             Err(reason) => {
                 line.extend_from_slice(b",infeasible,");
@@ -76,25 +90,47 @@ impl Columns {
         number(line, solved.map(|solved| solved.output_power()));
         number(line, solved.map(|solved| solved.loss()));
         number(line, solved.and_then(|solved| solved.efficiency()));
-        for account in &self.accounts {
-            let booked = candidate.accounts.contains(account);
-            number(line, solved.filter(|_| booked).map(|solved| solved.ledger.get(*account)));
+        for (account, booked) in self.accounts.iter().zip(&cells.booked) {
+            number(line, solved.filter(|_| *booked).map(|solved| solved.ledger.get(*account)));
         }
         for slot in &self.temperatures {
             number(line, solved.and_then(|solved| solved.temperatures[slot.index()]));
         }
         number(line, record.outcome.as_ref().ok().map(|detail| detail.loop_gain));
         line.push(b',');
-        let missing =
-            candidate.not_modelled.iter().map(|m| format!("{}.{}", m.slot.name(), m.mechanism.name()));
-        text(line, &missing.collect::<Vec<_>>().join(" "));
+        line.extend_from_slice(&cells.not_modelled);
         line.push(b',');
         if let Ok(detail) = &record.outcome {
             let grave = detail.findings.iter().filter(|finding| finding.severity > Severity::Note);
-            let kinds = grave.map(|f| format!("{}.{}:{}", f.slot.name(), f.kind, f.severity.name()));
-            text(line, &kinds.collect::<Vec<_>>().join(" "));
+            for (place, f) in grave.enumerate() {
+                // names of the program's own: nothing to quote
+                let gap = if place == 0 { "" } else { " " };
+                let parts = [gap, f.slot.name(), ".", f.kind, ":", f.severity.name()];
+                parts.iter().for_each(|part| line.extend_from_slice(part.as_bytes()));
+            }
         }
         line.push(b'\n');
+    }
+}
+
+impl StageCells {
+    fn of(candidate: &Candidate<'_>, accounts: &[Account]) -> Self {
+        let cell = |content: &str| {
+            let mut cell = Vec::new();
+            text(&mut cell, content);
+            cell
+        };
+        let missing: Vec<String> = candidate
+            .not_modelled
+            .iter()
+            .map(|m| format!("{}.{}", m.slot.name(), m.mechanism.name()))
+            .collect();
+        StageCells {
+            stage: candidate.name().to_owned(),
+            name: cell(candidate.name()),
+            booked: accounts.iter().map(|account| candidate.accounts.contains(account)).collect(),
+            not_modelled: cell(&missing.join(" ")),
+        }
     }
 }
 
@@ -102,12 +138,10 @@ impl Columns {
 fn number(line: &mut Vec<u8>, value: Option<f64>) {
     line.push(b',');
     if let Some(value) = value.filter(|value| value.is_finite()) {
-        let _ = match value.abs() {
-            // short for whole numbers, exponents for the very small: both read back to the same bits
-            0.0 => line.write_all(b"0"),
-            size if !(1e-5..1e15).contains(&size) => write!(line, "{value:e}"),
-            _ => write!(line, "{value}"),
-        };
+        // the shortest digits that read back to the same bits, whole numbers without their ".0"; no negative zero
+        let mut digits = zmij::Buffer::new();
+        let digits = digits.format_finite(value + 0.0);
+        line.extend_from_slice(digits.strip_suffix(".0").unwrap_or(digits).as_bytes());
     }
 }
 
