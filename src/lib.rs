@@ -8,6 +8,7 @@ pub mod columns;
 pub mod compare;
 pub mod crossover;
 pub mod edges;
+pub mod evidence;
 pub mod files;
 pub mod findings;
 pub mod fit;

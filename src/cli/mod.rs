@@ -5,6 +5,7 @@
 pub(crate) mod bug;
 mod compare;
 mod desk;
+mod evidence;
 mod failure;
 pub(crate) mod interrupt;
 mod load;
@@ -56,6 +57,7 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 #[derive(Debug, Subcommand)]
 pub(crate) enum Verb {
     Compare(compare::Options),
+    Evidence(evidence::Options),
     Tabulate(tabulate::Options),
 }
 
@@ -64,6 +66,7 @@ impl Verb {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         match self {
             Verb::Compare(options) => options.run(common),
+            Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
         }
     }

@@ -22,6 +22,7 @@ mod balance;
 pub mod caption;
 mod cell;
 pub mod comparison;
+pub mod evidence;
 mod layout;
 pub mod needs;
 pub mod number;
