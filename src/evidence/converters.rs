@@ -139,11 +139,19 @@ pub fn limit(column: usize) -> f64 {
 }
 
 /// Relative differences of the model, column by column; none where neither has anything. A valley is compared to the peak,
-/// since it passes through zero.
+/// since it passes through zero, and the dead time of the high side to that of both sides.
 pub fn differences(ours: &Steady, exact: &Steady) -> Vec<(usize, f64)> {
-    let scale = |place: usize| if place == 2 { exact[1] } else { exact[place] };
-    let compared = (0..COLUMNS.len()).filter(|place| exact[*place] != 0.0 || ours[*place] != 0.0);
-    compared.map(|place| (place, (ours[place] - exact[place]) / scale(place))).collect()
+    let compared = (0..COLUMNS.len()).filter(|place| exact[*place].abs() > 1e-9 || ours[*place].abs() > 1e-9);
+    compared.map(|place| (place, (ours[place] - exact[place]) / scale(exact, place))).collect()
+}
+
+/// What a difference in a column is judged against.
+fn scale(exact: &Steady, column: usize) -> f64 {
+    match column {
+        2 => exact[1],
+        6 => exact[5] + exact[6],
+        _ => exact[column],
+    }
 }
 
 /// Two converters computed elsewhere: D1, high side, rectifier, winding, output ESR.
@@ -216,8 +224,7 @@ fn recorded(list: &mut Vec<Check>) {
         for (column, difference) in differences(&ours, exact) {
             by_column[column].push(difference);
             let (name, dimension) = COLUMNS[column];
-            // a valley is judged against the peak
-            let own = limit(column) * if column == 2 { (exact[1] / exact[2]).abs() } else { 1.0 };
+            let own = limit(column) * (scale(exact, column) / exact[column]).abs();
             details.push(
                 Check::within(exact[column], own, dimension, ours[column])
                     .because("drops are taken at the load current, the output voltage as constant")
@@ -229,22 +236,27 @@ fn recorded(list: &mut Vec<Check>) {
     let count = super::recorded::CONVERTERS.len();
     for (column, differences) in by_column.iter().enumerate() {
         let name = COLUMNS[column].0;
-        let judged = if column == 2 { ", as a share of the peak" } else { "" };
+        let count_of = differences.len();
+        let judged = match column {
+            2 => ", as a share of the peak",
+            6 => ", as a share of both dead times",
+            _ => "",
+        };
         list.push(
             Check::of(limit(column), worst(differences), D::Ratio, Bound::AtMost)
                 .because("drops are taken at the load current, the output voltage as constant")
                 .about(
                     Subject::SteadyState,
-                    format!("{name}: worst difference in {} of {count} converters{judged}", differences.len()),
+                    format!("{name}: worst difference in {count_of} of {count} converters{judged}"),
                     source,
                 ),
         );
     }
-    let entries: Vec<f64> = by_column.iter().skip(3).flatten().map(|difference| difference.abs()).collect();
+    let entries: Vec<f64> = by_column.iter().flatten().map(|difference| difference.abs()).collect();
     list.push(
         Check::of(LIMIT_MEAN, mean(&entries), D::Ratio, Bound::AtMost)
-            .because("mean of the magnitudes")
-            .about(Subject::SteadyState, format!("mean difference of {} conduction entries", entries.len()), source),
+            .because("duty, peak, valley and every conduction entry")
+            .about(Subject::SteadyState, format!("mean size of all {} differences", entries.len()), source),
     );
     list.append(&mut details);
 }

@@ -3,7 +3,7 @@
 use lossbook::evidence::switching::{CHARGE_VOLTAGE, Cell, Motion, Swing};
 
 /// Step of the edges, s.
-pub const STEP: f64 = 2e-12;
+pub(crate) const STEP: f64 = 2e-12;
 
 /// One step of the classical Runge-Kutta method.
 fn step<const N: usize>(x: [f64; N], h: f64, slope: &impl Fn(&[f64; N]) -> [f64; N]) -> [f64; N] {
@@ -75,7 +75,7 @@ fn edge(cell: &Cell, current: f64, on: bool, h: f64) -> f64 {
 }
 
 /// Energy of both edges in the channel, J.
-pub fn energy(cell: &Cell, h: f64) -> f64 {
+pub(crate) fn energy(cell: &Cell, h: f64) -> f64 {
     edge(cell, cell.i_on, true, h) + edge(cell, cell.i_off, false, h)
 }
 
@@ -101,7 +101,7 @@ fn pulled(c_high: &Junction, c_low: &Junction, v_in: f64, v: f64, target: f64) -
 /// Energy of a swing, J.
 ///
 /// States: inductor current into the node, node voltage, energy in the winding. The inductor leads to the output voltage.
-pub fn swing(s: &Swing) -> f64 {
+pub(crate) fn swing(s: &Swing) -> f64 {
     let (c_high, c_low) = (Junction::new(s.q_high, s.junction), Junction::new(s.q_low, s.junction));
     let moved = |start: [f64; 3], winding: f64, time: f64, h: f64| {
         let slope = |x: &[f64; 3]| {

@@ -3,19 +3,19 @@
 //! State z = (inductor current, capacitor voltage, 1); in each interval z' = M z with a constant M, so that
 //! z(t) = exp(M t) z(0) without any error of integration.
 
-pub type Matrix = [[f64; 3]; 3];
-pub type State = [f64; 3];
+pub(crate) type Matrix = [[f64; 3]; 3];
+pub(crate) type State = [f64; 3];
 
-pub fn product(a: &Matrix, b: &Matrix) -> Matrix {
+pub(crate) fn product(a: &Matrix, b: &Matrix) -> Matrix {
     std::array::from_fn(|i| std::array::from_fn(|j| (0..3).map(|k| a[i][k] * b[k][j]).sum()))
 }
 
-pub fn apply(a: &Matrix, z: &State) -> State {
+pub(crate) fn apply(a: &Matrix, z: &State) -> State {
     std::array::from_fn(|i| (0..3).map(|k| a[i][k] * z[k]).sum())
 }
 
 /// exp(M t): Taylor series of M t / 2^k, squared k times.
-pub fn exponential(m: &Matrix, t: f64) -> Matrix {
+pub(crate) fn exponential(m: &Matrix, t: f64) -> Matrix {
     let norm = m.iter().flatten().fold(0.0, |norm: f64, x| norm.max((x * t).abs()));
     let halvings = (norm.max(1e-3).log2().ceil() as i32 + 6).max(0);
     let scale = t / f64::from(halvings).exp2();
@@ -33,7 +33,7 @@ pub fn exponential(m: &Matrix, t: f64) -> Matrix {
 }
 
 /// Solution of a x = b for three unknowns, by elimination with the largest pivot.
-pub fn solve(mut a: Matrix, mut b: State) -> State {
+pub(crate) fn solve(mut a: Matrix, mut b: State) -> State {
     for column in 0..3 {
         let pivot = (column..3).max_by(|p, q| a[*p][column].abs().total_cmp(&a[*q][column].abs())).unwrap();
         a.swap(column, pivot);

@@ -22,11 +22,18 @@ enum Part {
     Idle,
 }
 
+/// The load is a resistance V_o/I: output voltage = share · capacitor voltage + parallel · inductor current.
+fn divider(c: &Converter) -> (f64, f64) {
+    let load = c.v_out / c.load;
+    (load / (load + c.esr_out), load * c.esr_out / (load + c.esr_out))
+}
+
 /// What a period adds up to.
 #[derive(Default)]
 struct Sums {
     current: f64,
     voltage: f64,
+    output_energy: f64,
     charge_in: f64,
     square_in: f64,
     energy: [f64; 4],
@@ -48,16 +55,17 @@ impl Period<'_> {
     /// z' = M z with the node at `source` through `resistance`.
     fn matrix(&self, source: f64, resistance: f64) -> Matrix {
         let c = self.c;
-        let r = resistance + c.dcr + c.esr_out;
+        let (share, parallel) = divider(c);
         [
-            [-r / c.inductance, -1.0 / c.inductance, (source + c.esr_out * c.load) / c.inductance],
-            [1.0 / c.c_out, 0.0, -c.load / c.c_out],
+            [-(resistance + c.dcr + parallel) / c.inductance, -share / c.inductance, source / c.inductance],
+            [share / c.c_out, -share * c.load / (c.v_out * c.c_out), 0.0],
             [0.0; 3],
         ]
     }
 
     fn idle_matrix(&self) -> Matrix {
-        [[0.0; 3], [0.0, 0.0, -self.c.load / self.c.c_out], [0.0; 3]]
+        let c = self.c;
+        [[0.0; 3], [0.0, -divider(c).0 * c.load / (c.v_out * c.c_out), 0.0], [0.0; 3]]
     }
 
     /// Runs an interval, adding up with Simpson's rule.
@@ -73,9 +81,12 @@ impl Period<'_> {
             } * duration / (3.0 * STEPS as f64);
             let (i, v) = (z[0], z[1]);
             self.sums.current += weight * i;
-            self.sums.voltage += weight * (v + c.esr_out * (i - c.load));
+            let (share, parallel) = divider(c);
+            let v_out = share * v + parallel * i;
+            self.sums.voltage += weight * v_out;
+            self.sums.output_energy += weight * v_out * v_out * c.load / c.v_out;
             self.sums.square += weight * i * i;
-            self.sums.ripple_square += weight * (i - c.load).powi(2);
+            self.sums.ripple_square += weight * (i - v_out * c.load / c.v_out).powi(2);
             let lost = weight * (i.abs() * threshold + i * i * slope);
             match part {
                 Part::High => self.sums.energy[0] += lost,
@@ -162,7 +173,7 @@ fn period(c: &Converter, start: State, t_on: f64) -> (State, Sums) {
 }
 
 /// The periodic steady state, column by column, and by how much the powers do not balance, W.
-pub fn steady(c: &Converter) -> (Steady, f64) {
+pub(crate) fn steady(c: &Converter) -> (Steady, f64) {
     let guess = 0.5 * (c.v_in - c.v_out) * (c.v_out / c.v_in) / (c.inductance * c.frequency);
     let mut x = [(c.load - guess).max(if blocks(c) { 0.0 } else { f64::NEG_INFINITY }), c.v_out, 0.0];
     let peak = (2.0 * c.load * (c.v_in - c.v_out) * c.v_out / (c.v_in * c.inductance * c.frequency)).sqrt();
@@ -219,7 +230,7 @@ pub fn steady(c: &Converter) -> (Steady, f64) {
     ];
     // everything that enters leaves again; the input capacitor's loss is outside of the loop integrated here
     let lost: f64 = steady[3..9].iter().sum();
-    let balance = c.v_in * input_mean - c.v_out * c.load - lost;
+    let balance = c.v_in * input_mean - s.output_energy * f - lost;
     assert_eq!(COLUMNS.len(), steady.len());
     (steady, balance)
 }
