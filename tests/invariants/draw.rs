@@ -110,7 +110,7 @@ impl Draw {
             RectifierSheet::Diode { freewheel_diode } => Draw::edit(freewheel_diode, |diode| diode.q_c = None),
         }
         Draw::edit(&mut self.circuit.inductor, |inductor| {
-            inductor.inductance = Datum::of(1e3);
+            inductor.inductance = Datum::of(1e8);
             inductor.saturation = Some(Saturation { i: Datum::of(1e6), drop: Datum::of(0.0) });
         });
     }
