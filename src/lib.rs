@@ -33,6 +33,7 @@ pub mod compare;
 pub mod crossover;
 pub mod draws;
 pub mod edges;
+pub mod evidence;
 pub mod files;
 pub mod findings;
 pub mod fit;

@@ -6,6 +6,7 @@ pub(crate) mod bug;
 mod check;
 mod compare;
 mod desk;
+mod evidence;
 mod failure;
 pub(crate) mod interrupt;
 mod justify;
@@ -65,6 +66,7 @@ pub(crate) enum Verb {
     Compare(compare::Options),
     Justify(justify::Options),
     Report(report::Options),
+    Evidence(evidence::Options),
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
@@ -80,6 +82,7 @@ impl Verb {
             Verb::Compare(options) => options.run(common),
             Verb::Justify(options) => options.run(common),
             Verb::Report(options) => options.run(common),
+            Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),

@@ -26,6 +26,7 @@ pub mod comparison;
 pub mod derivation;
 pub mod figure;
 mod figures;
+pub mod evidence;
 mod layout;
 pub mod needs;
 pub mod number;
