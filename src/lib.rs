@@ -24,8 +24,10 @@
 //! # }
 //! ```
 
+pub mod absorb;
 pub mod answer;
 pub mod average;
+pub mod bench;
 pub mod budget;
 pub mod candidate;
 pub mod columns;
@@ -48,12 +50,15 @@ pub mod loss;
 pub mod model;
 pub mod model_spread;
 pub mod near;
+pub mod nnls;
 pub mod parts;
 pub mod printable;
 pub mod purchase;
 pub mod random;
 pub mod ratings;
+pub mod reconcile;
 pub mod record;
+pub mod rehearse;
 pub mod render;
 pub mod report;
 pub mod requirements;

@@ -11,6 +11,8 @@ pub(crate) mod interrupt;
 mod load;
 mod options;
 mod progress;
+mod reconcile;
+mod rehearse;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -65,6 +67,8 @@ pub(crate) enum Verb {
     Template(template::Options),
     Spread(spread::Options),
     Sensitivity(sensitivity::Options),
+    Reconcile(reconcile::Options),
+    Rehearse(rehearse::Options),
 }
 
 impl Verb {
@@ -77,6 +81,8 @@ impl Verb {
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
+            Verb::Reconcile(options) => options.run(common),
+            Verb::Rehearse(options) => options.run(common),
         }
     }
 }

@@ -9,12 +9,14 @@ use super::notes::{Blame, Notes};
 use super::path::Trail;
 use super::reader::read_fields;
 use super::sample::key_names;
+use crate::bench::Accuracy;
 use crate::budget::{BenchAccuracy, Coupling, Derating, Limit, ProfilePoint, Requirement};
 use crate::grid::{ALL_AXES, AxisName};
 use crate::hints::{Vocabulary, nearest};
 use crate::ledger::{ALL_SLOTS, Slot};
 use crate::sheet::BoardSheet;
 use crate::sheet::form::Key;
+use crate::units::Dimension as D;
 
 /// Items of a list, each with its trail; a single mapping counts as a list of one.
 fn each<'n>(
@@ -136,7 +138,7 @@ pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchA
     let mut fields = Fields::open(node, trail, like, notes)?;
     let read = KEYS.each_ref().map(|key| {
         let node = fields.require(key.name, key.example, notes)?;
-        value(node, key, &trail.key(key.name), notes)
+        accuracy(node, key, &trail.key(key.name), notes)
     });
     fields.close(|| KEYS.map(|key| key.name).to_vec(), notes);
     let [input_voltage, input_current, output_voltage, output_current] = read;
@@ -146,6 +148,27 @@ pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchA
         output_voltage: output_voltage?,
         output_current: output_current?,
     })
+}
+
+/// Accuracy of one instrument: of reading, or of reading and of range with its full scale.
+fn accuracy(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<Accuracy> {
+    if !matches!(node, Node::Map(_)) {
+        let of_reading = value(node, key, trail, notes)?;
+        return Some(Accuracy { of_reading, of_range: 0.0 });
+    }
+    let dimension = if key.name.ends_with("voltage") { D::Voltage } else { D::Current };
+    let full_scale = Key::new("full_scale", dimension, "full scale of the range");
+    let like = "`{reading: 0.1 %, range: 0.05 %, full_scale: 40 V}`";
+    let mut fields = Fields::open(node, trail, like, notes)?;
+    let mut read = |key: &Key, notes: &mut Notes| {
+        let node = fields.require(key.name, key.example, notes)?;
+        value(node, key, &trail.key(key.name), notes)
+    };
+    let reading = read(&keys::accuracy("reading"), notes);
+    let range = read(&keys::accuracy("range"), notes);
+    let full_scale = read(&full_scale, notes);
+    fields.close(|| vec!["reading", "range", "full_scale"], notes);
+    Some(Accuracy { of_reading: reading?, of_range: range? * full_scale? })
 }
 
 /// Margins to ratings.
@@ -158,7 +181,7 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
     ];
     const MARGIN: Key = Key::new(
         "junction_margin",
-        crate::units::Dimension::TemperatureDifference,
+        D::TemperatureDifference,
         "distance to a junction rating",
     )
     .zero()

@@ -1,5 +1,6 @@
 //! Files in, validated types out.
 pub mod at;
+pub mod bench;
 pub mod budget;
 pub mod budget_grid;
 pub mod budget_keys;

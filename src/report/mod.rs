@@ -26,6 +26,7 @@ pub mod comparison;
 mod layout;
 pub mod needs;
 pub mod number;
+pub mod reconcile;
 pub mod sensitivity;
 pub mod spread;
 mod table;
