@@ -105,7 +105,8 @@ impl Handle {
 
     fn change(&self, x: f64, sigma: f64) -> Change {
         let booked = self.lever.value();
-        let (fitted, sigma) = if self.added { (x, sigma) } else { (booked * (1.0 + x), booked.abs() * sigma) };
+        let (fitted, sigma) =
+            if self.added { (x, sigma) } else { (booked * (1.0 + x), booked.abs() * sigma) };
         Change {
             path: self.lever.path.clone(),
             part: self.lever.part.clone(),
@@ -201,10 +202,8 @@ fn handle(rig: &Rig, lever: Lever, rows: &[Row], base: &[Solved]) -> Option<Hand
         solved.iter().zip(rows).map(|(solved, row)| solved.ledger.get(account) / row.sigma).sum()
     };
     let moved = |account| booked(&above, account) - booked(&below, account);
-    let account = ALL_ACCOUNTS
-        .iter()
-        .map(|row| row.0)
-        .max_by(|a, b| moved(*a).abs().total_cmp(&moved(*b).abs()))?;
+    let account =
+        ALL_ACCOUNTS.iter().map(|row| row.0).max_by(|a, b| moved(*a).abs().total_cmp(&moved(*b).abs()))?;
     let elasticity = moved(account) / (high - low) / booked(base, account);
     let unlike = if added { 1.0 } else { (elasticity - 1.0).abs() };
     let handle = Handle { lever, added, slope, account, unlike };
@@ -274,7 +273,8 @@ fn refine(rig: &Rig, rows: &[Row], handles: &[&Handle], left: &[f64]) -> Option<
                 return None;
             }
         }
-        let settings: Settings = handles.iter().zip(&at).flat_map(|(handle, x)| handle.settings(*x)).collect();
+        let settings: Settings =
+            handles.iter().zip(&at).flat_map(|(handle, x)| handle.settings(*x)).collect();
         left = deviations(&solve(&rig.fit(&settings).ok()?, rows)?, rows);
         let small = found.iter().all(|(step, sigma)| step.abs() < 0.01 * sigma);
         sigmas = found.iter().map(|(_, sigma)| *sigma).collect();

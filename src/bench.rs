@@ -98,7 +98,8 @@ impl Reading {
         if self.output_power() > self.input_power() {
             let efficiency = 100.0 * self.output_power() / self.input_power();
             let swapped = near(self.input_voltage) || self.input_voltage < self.output_voltage;
-            let hint = if swapped { "input and output look swapped" } else { "check ranges, leads and columns" };
+            let hint =
+                if swapped { "input and output look swapped" } else { "check ranges, leads and columns" };
             return Some(format!("more power leaves than enters (efficiency {efficiency:.2} %): {hint}"));
         }
         None
@@ -159,6 +160,10 @@ mod tests {
         let above = Reading { input_current: 0.7, ..row };
         assert!(above.absurdity(3.3).is_some_and(|reason| reason.contains("efficiency 117.86 %")));
         let swapped = Reading { output_voltage: 6.0, output_current: 3.3, ..row };
-        assert!(swapped.absurdity(3.3).is_some_and(|reason| reason.contains("output_current 3.3: the two columns")));
+        assert!(
+            swapped
+                .absurdity(3.3)
+                .is_some_and(|reason| reason.contains("output_current 3.3: the two columns"))
+        );
     }
 }

@@ -249,7 +249,18 @@ impl Answer for Question<'_> {
 
     fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
         let mut writer = csv::Writer::from_writer(out);
-        writer.write_record(["stage", "path", "part", "value [SI]", "unit", "loss change [%]", "per", "doubtful", "needed for the gain [SI]", "gain is out of reach because"])?;
+        writer.write_record([
+            "stage",
+            "path",
+            "part",
+            "value [SI]",
+            "unit",
+            "loss change [%]",
+            "per",
+            "doubtful",
+            "needed for the gain [SI]",
+            "gain is out of reach because",
+        ])?;
         for stage in self.ask().stages {
             for slope in &stage.slopes {
                 let bought = stage.purchases.iter().find(|purchase| purchase.path == slope.path);

@@ -319,12 +319,14 @@ impl Answer for Question<'_> {
 
     fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
         let mut writer = csv::Writer::from_writer(out);
-        let mut header: Vec<String> = ["stage", "input_voltage [V]", "load [A]", "ambient [°C]"].map(String::from).into();
+        let mut header: Vec<String> =
+            ["stage", "input_voltage [V]", "load [A]", "ambient [°C]"].map(String::from).into();
         header.push("typical loss [W]".into());
         for (name, unit) in [("loss", " [W]"), ("efficiency", ""), ("hottest", " [°C]")] {
             header.extend(["mean", "p5", "p95"].map(|what| format!("{name} {what}{unit}")));
         }
-        header.extend(["rss minus [W]", "rss plus [W]", "worst loss [W]", "unusable draws"].map(String::from));
+        header
+            .extend(["rss minus [W]", "rss plus [W]", "worst loss [W]", "unusable draws"].map(String::from));
         writer.write_record(&header)?;
         for point in self.ask().points {
             let number = |value: Option<f64>| value.map_or_else(String::new, |value| value.to_string());

@@ -173,7 +173,8 @@ fn the_json_has_the_keys_that_were_promised() -> Outcome {
     Reconciled { budget: &budget, result }.json(&mut bytes)?;
     let json: serde_json::Value = serde_json::from_slice(&bytes)?;
     let point = &json["points"][0];
-    for key in ["input_voltage", "load", "measured_loss", "measured_loss_sigma", "booked_loss", "difference"] {
+    for key in ["input_voltage", "load", "measured_loss", "measured_loss_sigma", "booked_loss", "difference"]
+    {
         assert!(point[key].is_f64(), "{key}");
     }
     assert_eq!(point["verdict"], "disagrees");

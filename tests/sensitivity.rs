@@ -41,7 +41,11 @@ fn a_linear_regulator_by_hand() -> Outcome {
     // central differences of a linear law: only rounding remains
     assert!((percent(&stage, "input_voltage")? / expected - 1.0).abs() < 1e-6);
     assert!((percent(&stage, "regulator.i_gnd.i_gnd")? / (v_in * ground / loss) - 1.0).abs() < 1e-6);
-    assert!(stage["slopes"].as_array().is_some_and(|slopes| slopes.iter().all(|slope| slope["path"] != "ambient")));
+    assert!(
+        stage["slopes"]
+            .as_array()
+            .is_some_and(|slopes| slopes.iter().all(|slope| slope["path"] != "ambient"))
+    );
     Ok(())
 }
 
@@ -52,7 +56,9 @@ fn what_is_bought_is_gained() -> Outcome {
     let before = stage["efficiency"].as_f64().ok_or("efficiency")?;
     let mut bought = 0;
     for purchase in purchases {
-        let (Some(path), Some(needed)) = (purchase["path"].as_str(), purchase["needed"].as_f64()) else { continue };
+        let (Some(path), Some(needed)) = (purchase["path"].as_str(), purchase["needed"].as_f64()) else {
+            continue;
+        };
         let (mut sheet, mut board) = (budget.stages[0].clone(), budget.board.clone());
         // curves of several points move together and are not set by one path
         if !values::set(&mut sheet, &mut board, path, needed) {
@@ -72,7 +78,9 @@ fn what_is_bought_is_gained() -> Outcome {
 fn signs_of_the_trade() -> Outcome {
     // more resistance, more charge, more frequency: more loss; more inductance: less ripple and less loss at full load
     let (_, stage) = ask("synchronous")?;
-    for path in ["inductor.dcr", "high_side.r_ds_on", "low_side.q_g", "switching_frequency", "load", "ambient"] {
+    for path in
+        ["inductor.dcr", "high_side.r_ds_on", "low_side.q_g", "switching_frequency", "load", "ambient"]
+    {
         assert!(percent(&stage, path)? > 0.0, "{path}");
     }
     assert!(percent(&stage, "inductor.inductance")? < 0.0);

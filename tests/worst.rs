@@ -57,7 +57,12 @@ fn no_single_limit_and_no_corner_beats_the_worst_values() -> Result<(), Box<dyn 
                 let Ok(solved) = model::evaluate(&stage, point) else { continue };
                 // signs are found one value at a time; products of two small changes may beat them by a little
                 let limit = worst * 1.005;
-                assert!(solved.loss() <= limit, "{} at {load} A: {} above {worst}", sheet.name, solved.loss());
+                assert!(
+                    solved.loss() <= limit,
+                    "{} at {load} A: {} above {worst}",
+                    sheet.name,
+                    solved.loss()
+                );
             }
         }
     }

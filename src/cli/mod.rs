@@ -6,7 +6,9 @@ pub(crate) mod bug;
 mod check;
 mod compare;
 mod desk;
+mod energy;
 mod failure;
+mod headroom;
 pub(crate) mod interrupt;
 mod load;
 mod options;
@@ -67,6 +69,8 @@ pub(crate) enum Verb {
     Template(template::Options),
     Spread(spread::Options),
     Sensitivity(sensitivity::Options),
+    Headroom(headroom::Options),
+    Energy(energy::Options),
     Reconcile(reconcile::Options),
     Rehearse(rehearse::Options),
 }
@@ -81,6 +85,8 @@ impl Verb {
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
+            Verb::Headroom(options) => options.run(common),
+            Verb::Energy(options) => options.run(common),
             Verb::Reconcile(options) => options.run(common),
             Verb::Rehearse(options) => options.run(common),
         }

@@ -45,11 +45,18 @@ impl Options {
         let readings = input::bench::load_bench(&self.bench).map_err(Failure::Input)?;
         let request = Request { stage, readings, accuracy };
         let Some(result) = reconcile::reconcile(&budget, &request) else {
-            return Err(Failure::asked("the budget has no such stage", "see `lossbook compare` for its stages"));
+            return Err(Failure::asked(
+                "the budget has no such stage",
+                "see `lossbook compare` for its stages",
+            ));
         };
         if result.points.is_empty() {
-            let reasons: Vec<String> =
-                result.rejected.iter().take(5).map(|one| format!("line {}: {}", one.line, one.reason)).collect();
+            let reasons: Vec<String> = result
+                .rejected
+                .iter()
+                .take(5)
+                .map(|one| format!("line {}: {}", one.line, one.reason))
+                .collect();
             let file = terminal::shown(&self.bench);
             return Err(Failure::asked(
                 format!("no row of {file} is a possible reading: {}", reasons.join("; ")),

@@ -66,8 +66,9 @@ impl Options {
             hidden.push((path.to_owned(), value));
         }
         let request = Request { stage, at: self.at.unwrap_or_default(), hidden, accuracy, seed: self.seed };
-        let text = rehearse::file(&budget, &request)
-            .map_err(|reason| Failure::asked(format!("nothing to rehearse: {reason}"), "check the values given"))?;
+        let text = rehearse::file(&budget, &request).map_err(|reason| {
+            Failure::asked(format!("nothing to rehearse: {reason}"), "check the values given")
+        })?;
         let file = self.output.as_deref().filter(|path| *path != Path::new("-"));
         desk::to(file, |out| out.write_all(text.as_bytes()))?;
         Ok(Exit::Done)

@@ -39,11 +39,8 @@ pub(crate) struct Options {
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         let budget = self.subject.load()?;
-        let request = Request {
-            stage: self.subject.stage.clone(),
-            at: self.at.unwrap_or_default(),
-            gain: self.gain,
-        };
+        let request =
+            Request { stage: self.subject.stage.clone(), at: self.at.unwrap_or_default(), gain: self.gain };
         let watch = Arc::new(Watch::default());
         desk::give(&sensitivity::answer(&budget, &request), &self.writing, common, &watch)
     }

@@ -100,7 +100,14 @@ impl Faults<'_> {
         }
         let fault = InputError::of_file(self.path, reason, hint);
         let value = value.map(str::to_owned);
-        self.list.push(InputError { severity: Severity::Error, line, column, path: path.into(), value, ..fault });
+        self.list.push(InputError {
+            severity: Severity::Error,
+            line,
+            column,
+            path: path.into(),
+            value,
+            ..fault
+        });
     }
 
     fn finish(mut self, readings: Vec<Reading>) -> Result<Vec<Reading>, InputErrors> {
@@ -137,7 +144,12 @@ impl Header {
                 match Self::title(text) {
                     Ok((place, _)) if places[place].is_some() => {
                         let hint = "keep one of the two columns".to_owned();
-                        faults.add(at, COLUMNS[place].name, None, ("stands twice in the header".into(), hint));
+                        faults.add(
+                            at,
+                            COLUMNS[place].name,
+                            None,
+                            ("stands twice in the header".into(), hint),
+                        );
                     }
                     Ok((place, unit)) => places[place] = Some((field, unit)),
                     Err(fault) => faults.add(at, "", Some(text), fault),
@@ -209,7 +221,8 @@ impl Header {
         if faults.list.len() > before {
             return None;
         }
-        let [input_voltage, input_current, output_voltage, output_current, ambient, switching_frequency] = values;
+        let [input_voltage, input_current, output_voltage, output_current, ambient, switching_frequency] =
+            values;
         Some(Reading {
             line,
             input_voltage: input_voltage?,
@@ -262,7 +275,11 @@ mod tests {
     fn all_faults_at_once_with_row_and_column() {
         let text = format!("{EXAMPLE}\n24,0.9,3.3,6\n24,-0.9,3.3,x\n24,0.9,3.3\n");
         let errors = read(&text).expect_err("three faults");
-        for part in ["bench.csv:3:4: `input_current`", "bench.csv:3:13: `output_current`", "bench.csv:4:1: has 3 fields"] {
+        for part in [
+            "bench.csv:3:4: `input_current`",
+            "bench.csv:3:13: `output_current`",
+            "bench.csv:4:1: has 3 fields",
+        ] {
             assert!(errors.contains(part), "{part} in {errors}");
         }
     }
@@ -271,10 +288,13 @@ mod tests {
     fn headers_are_held_to_their_units() {
         let errors = read("input_voltage,input_curent [A],output_voltage [mA],output_current [A]\n1,1,1,1\n");
         let errors = errors.expect_err("faults");
-        for part in ["has no unit", "did you mean `input_current`", "mA is a current, a voltage is expected"] {
+        for part in ["has no unit", "did you mean `input_current`", "mA is a current, a voltage is expected"]
+        {
             assert!(errors.contains(part), "{part} in {errors}");
         }
         assert!(read("").is_err_and(|errors| errors.contains("is empty")));
-        assert!(read("input_voltage [V];input_current [A]\n").is_err_and(|errors| errors.contains("semicolons")));
+        assert!(
+            read("input_voltage [V];input_current [A]\n").is_err_and(|errors| errors.contains("semicolons"))
+        );
     }
 }

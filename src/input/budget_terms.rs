@@ -179,13 +179,10 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
         keys::derated("saturation"),
         keys::derated("ripple_current"),
     ];
-    const MARGIN: Key = Key::new(
-        "junction_margin",
-        D::TemperatureDifference,
-        "distance to a junction rating",
-    )
-    .zero()
-    .example("25 K");
+    const MARGIN: Key =
+        Key::new("junction_margin", D::TemperatureDifference, "distance to a junction rating")
+            .zero()
+            .example("25 K");
     let mut derating = Derating::default();
     let like = "`{voltage: 80 %, junction_margin: 25 K}`";
     let Some(mut fields) = Fields::open(node, trail, like, notes) else { return derating };

@@ -23,6 +23,8 @@ pub mod bars;
 pub mod caption;
 mod cell;
 pub mod comparison;
+pub mod energy;
+pub mod headroom;
 mod layout;
 pub mod needs;
 pub mod number;

@@ -69,7 +69,8 @@ fn points(result: &Reconciliation) -> Table {
         Column::text("verdict"),
         Column::text("less │ more"),
     ];
-    let mut table = Table::new(format!("{} · booked with typical values", result.stage), columns).with_keys(1);
+    let mut table =
+        Table::new(format!("{} · booked with typical values", result.stage), columns).with_keys(1);
     let end = |point: &Point| point.deviation.map_or(0.0, |deviation| deviation.abs() + COVERAGE);
     // very large deviations would squeeze the others to nothing
     let largest = result.points.iter().map(end).fold(0.0, f64::max).min(12.0);
@@ -86,10 +87,14 @@ fn points(result: &Reconciliation) -> Table {
             watts(point.booked_loss),
             watts(point.difference),
             point.deviation.map_or_else(none, |deviation| Cell::text(format!("{deviation:+.1}"))),
-            if point.verdict == Verdict::Disagrees { verdict.flagged(Severity::Warning, "") } else { verdict },
-            point.deviation.map_or(Cell::Blank, |deviation| {
-                Cell::text(bars::error_bar(deviation, COVERAGE, largest))
-            }),
+            if point.verdict == Verdict::Disagrees {
+                verdict.flagged(Severity::Warning, "")
+            } else {
+                verdict
+            },
+            point
+                .deviation
+                .map_or(Cell::Blank, |deviation| Cell::text(bars::error_bar(deviation, COVERAGE, largest))),
         ]);
     }
     table
@@ -103,9 +108,11 @@ fn with_sigma(value: f64, sigma: f64, dimension: D) -> String {
 /// The terms of the remainder in the words of the trade.
 fn remainder(budget: &Budget, result: &Reconciliation) -> Vec<String> {
     let Some(fit) = &result.remainder else {
-        return vec!["Too few points, or too similar loads, to tell how the difference grows with the load: four or \
+        return vec![
+            "Too few points, or too similar loads, to tell how the difference grows with the load: four or \
                      more points over a decade of load do."
-            .into()];
+                .into(),
+        ];
     };
     let mut lines = Vec::new();
     let stands_out = |value: f64, sigma: f64| value > COVERAGE * sigma;
@@ -203,6 +210,7 @@ fn absorbers(absorbers: &Absorbers, result: &Reconciliation, document: &mut Docu
     let more = absorbers.pairs.len().saturating_sub(LISTED);
     if more > 0 {
         let pairs = words::count(more, "other pair");
-        document.paragraph(format!("{pairs} in the JSON output fit as well: this bench cannot tell them apart."));
+        document
+            .paragraph(format!("{pairs} in the JSON output fit as well: this bench cannot tell them apart."));
     }
 }

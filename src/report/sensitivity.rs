@@ -57,8 +57,7 @@ fn slopes(stage: &StageSensitivity) -> Table {
         Column::text("less │ more loss"),
     ];
     let what = format!("{} · {}", stage.stage, at(stage));
-    let mut table =
-        Table::new(format!("{what} · around typical values"), columns).with_keys(2);
+    let mut table = Table::new(format!("{what} · around typical values"), columns).with_keys(2);
     let largest = stage.slopes.iter().map(|slope| slope.percent.abs()).fold(0.0, f64::max);
     for slope in stage.slopes.iter().take(LISTED) {
         let percent = Cell::text(format!("{:+.3} %", slope.percent));

@@ -111,8 +111,7 @@ fn contributors(budget: &Budget, spread: &Spread, stage: &str, document: &mut Do
         Column::text("less │ more loss"),
     ];
     let what = format!("{stage} · {}", words::point(&headline(budget, stage)));
-    let mut table =
-        Table::new(format!("{what} · typical values but for the one named"), columns);
+    let mut table = Table::new(format!("{what} · typical values but for the one named"), columns);
     let signed = |value: Option<f64>| match value {
         None => Cell::missing("cannot run there"),
         Some(value) => Cell::watts(value),
@@ -152,8 +151,7 @@ fn interior(spread: &Spread, document: &mut Document) {
         Column::quantity("loss at the worse end"),
         Column::text("lies"),
     ];
-    let mut table =
-        Table::new("over the input voltage · worst values", columns).with_keys(2);
+    let mut table = Table::new("over the input voltage · worst values", columns).with_keys(2);
     for scan in &spread.interior {
         table.row(vec![
             Cell::text(scan.stage.clone()),
