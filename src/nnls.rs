@@ -67,7 +67,7 @@ pub fn fit(rows: &[[f64; 3]], values: &[f64], sigmas: &[f64]) -> Option<Fit> {
     let freedom = rows.len() - pick.len();
     let widened = (chi_square / freedom as f64).max(1.0).sqrt();
     let mut terms = [Coefficient::default(); 3];
-    for column in 0..3 {
+    for (column, term) in terms.iter_mut().enumerate() {
         // the uncertainty of a term at zero is that with it beside the others
         let mut with = pick.clone();
         if !with.contains(&column) {
@@ -76,7 +76,7 @@ pub fn fit(rows: &[[f64; 3]], values: &[f64], sigmas: &[f64]) -> Option<Fit> {
         let place = with.iter().position(|one| *one == column)?;
         let variance = inverse_diagonal(&weighted(&with), with.len(), place)?;
         let value = pick.iter().position(|one| *one == column).map_or(0.0, |place| x[place]);
-        terms[column] = Coefficient { value, sigma: widened * variance.sqrt() };
+        *term = Coefficient { value, sigma: widened * variance.sqrt() };
     }
     Some(Fit { terms, chi_square, widened })
 }
@@ -109,7 +109,7 @@ fn inverse_diagonal(rows: &[[f64; 3]], count: usize, place: usize) -> Option<f64
     // Gauss and Jordan on a positive definite matrix of at most three rows
     for pivot in 0..count {
         let head = a[pivot][pivot];
-        if !(head > 0.0) {
+        if head <= 0.0 || head.is_nan() {
             return None;
         }
         for cell in &mut a[pivot] {

@@ -10,11 +10,14 @@ mod energy;
 mod failure;
 mod headroom;
 pub(crate) mod interrupt;
+mod justify;
 mod load;
 mod options;
+mod pick;
 mod progress;
 mod reconcile;
 mod rehearse;
+mod report;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -64,6 +67,8 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 #[derive(Debug, Subcommand)]
 pub(crate) enum Verb {
     Compare(compare::Options),
+    Justify(justify::Options),
+    Report(report::Options),
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
@@ -73,6 +78,7 @@ pub(crate) enum Verb {
     Energy(energy::Options),
     Reconcile(reconcile::Options),
     Rehearse(rehearse::Options),
+    Pick(pick::Options),
 }
 
 impl Verb {
@@ -80,13 +86,16 @@ impl Verb {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         match self {
             Verb::Compare(options) => options.run(common),
+            Verb::Justify(options) => options.run(common),
+            Verb::Report(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
-            Verb::Headroom(options) => options.run(common),
             Verb::Energy(options) => options.run(common),
+            Verb::Headroom(options) => options.run(common),
+            Verb::Pick(options) => options.run(common),
             Verb::Reconcile(options) => options.run(common),
             Verb::Rehearse(options) => options.run(common),
         }
