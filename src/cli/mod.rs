@@ -7,13 +7,17 @@ mod check;
 mod compare;
 mod desk;
 mod evidence;
+mod energy;
 mod failure;
+mod headroom;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
 mod options;
 mod pick;
 mod progress;
+mod reconcile;
+mod rehearse;
 mod report;
 mod sensitivity;
 mod spread;
@@ -72,6 +76,10 @@ pub(crate) enum Verb {
     Template(template::Options),
     Spread(spread::Options),
     Sensitivity(sensitivity::Options),
+    Headroom(headroom::Options),
+    Energy(energy::Options),
+    Reconcile(reconcile::Options),
+    Rehearse(rehearse::Options),
     Pick(pick::Options),
 }
 
@@ -88,7 +96,11 @@ impl Verb {
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
+            Verb::Energy(options) => options.run(common),
+            Verb::Headroom(options) => options.run(common),
             Verb::Pick(options) => options.run(common),
+            Verb::Reconcile(options) => options.run(common),
+            Verb::Rehearse(options) => options.run(common),
         }
     }
 }

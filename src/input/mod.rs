@@ -5,6 +5,7 @@
 //! only when there are notes are their lines looked up (`place`) and drawn ([`render`]).
 
 pub mod at;
+pub mod bench;
 mod budget;
 mod budget_checks;
 mod budget_grid;
