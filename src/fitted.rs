@@ -58,6 +58,7 @@ pub struct Switched {
 
 /// What carries the inductor current while the high side is off.
 #[derive(Clone, Debug, PartialEq)]
+#[allow(clippy::large_enum_variant)] // one a stage; a box would cost the heat loop an indirection
 pub enum Rectifier {
     /// A MOSFET, perhaps with a Schottky diode across it.
     Synchronous {

@@ -207,8 +207,8 @@ fn estimated_slopes(prepared: &Prepared<'_>, heated: &Heated, t: &Nodes) -> Node
     }
     let copper = heated.winding.watts + heated.ac_winding.map_or(0.0, |ac| ac.watts);
     slopes[INDUCTOR] = copper * PER_KELVIN / (1.0 + PER_KELVIN * (t[INDUCTOR] - 20.0));
-    for node in 0..NODES {
-        slopes[node] *= stage.heat.to_ambient[node].unwrap_or(0.0);
+    for (slope, to_ambient) in slopes.iter_mut().zip(&stage.heat.to_ambient) {
+        *slope *= to_ambient.unwrap_or(0.0);
     }
     slopes
 }
@@ -248,7 +248,7 @@ fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
         for node in 0..NODES {
             t[node] += weight * difference[node];
         }
-        if !(largest(&t) < HOTTEST) {
+        if !t.iter().all(|t| *t < HOTTEST) {
             let hottest = t.map(|t| if t.is_finite() { t.min(HOTTEST) } else { HOTTEST });
             let gain = loop_gain(prepared, &hottest).unwrap_or(f64::INFINITY);
             return Err(unstable(prepared, &t, gain));
@@ -318,7 +318,7 @@ pub fn settle_linear(
     let ledger = linear(regulator, output_voltage, &point)?.ledger();
     let rise = regulator.r_th.map_or(0.0, |r_th| r_th / regulator.n * ledger.loss());
     let temperature = point.ambient + rise;
-    if !(temperature < HOTTEST) {
+    if temperature >= HOTTEST {
         return Err(Infeasible::NoStableTemperature { slot: Slot::Regulator, gain: 0.0 });
     }
     let mut temperatures = [None; SLOTS];

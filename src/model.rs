@@ -1,4 +1,9 @@
-//! The model: from a fitted stage, an operating point and temperatures to every contribution of the ledger.
+#![doc = include_str!("model.md")]
+//!
+//! # In code
+//!
+//! From a fitted stage, an operating point and temperatures to every contribution of the ledger: [`Prepared`] holds what
+//! temperatures do not change, [`Prepared::heated`] calls the mechanisms of [`crate::loss`], [`evaluate`] settles the heat.
 
 use crate::edges::{self, GateLoop, NodeCapacitance};
 use crate::fitted::{

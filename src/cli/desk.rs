@@ -7,10 +7,9 @@ use std::sync::Arc;
 use lossbook::answer::Answer;
 use lossbook::files::{Draft, FileFault};
 use lossbook::render::{Markdown, Render, Text};
-use lossbook::report::Document;
 use lossbook::sweep::Watch;
 
-use super::options::{Common, Format, Writing};
+use super::options::{Colour, Common, Format, Writing};
 use super::progress::Progress;
 use super::{Exit, Failure, interrupt, terminal};
 
@@ -31,18 +30,14 @@ pub(crate) fn give(
         Format::Text | Format::Markdown => {
             let document = answer.document();
             drop(progress);
-            render(&document, writing, common).render(&document, out)
+            page(writing, common).render(&document, out)
         }
     })?;
     Ok(if answer.met() { Exit::Done } else { Exit::Missed })
 }
 
-/// Writes a document as text.
-pub(crate) fn give_text(document: &Document, common: &Common) -> Result<(), Failure> {
-    to(None, |out| text(common, None).render(document, out))
-}
-
-fn render(_: &Document, writing: &Writing, common: &Common) -> Box<dyn Render> {
+/// The format of a page for people.
+fn page(writing: &Writing, common: &Common) -> Box<dyn Render> {
     match writing.format {
         Format::Markdown => Box::new(Markdown),
         _ => Box::new(text(common, writing.output.as_deref())),
@@ -51,7 +46,6 @@ fn render(_: &Document, writing: &Writing, common: &Common) -> Box<dyn Render> {
 
 /// Text for a terminal, or for a file, which has no colour of its own.
 fn text(common: &Common, file: Option<&Path>) -> Text {
-    use super::options::Colour;
     let colour = match file {
         Some(_) => common.colour == Colour::Always,
         None => terminal::colour(common.colour),

@@ -2,15 +2,17 @@
 
 use super::budget_grid::{RatedLoad, point, value};
 use super::budget_keys as keys;
+use super::error::Blame;
 use super::fields::Fields;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_fields;
 use super::sample::key_names;
 use crate::budget::{BenchAccuracy, Coupling, Derating, Limit, ProfilePoint, Requirement};
 use crate::grid::{ALL_AXES, AxisName};
+use crate::hints::{Vocabulary, nearest};
 use crate::ledger::{ALL_SLOTS, Slot};
 use crate::sheet::BoardSheet;
 use crate::sheet::form::Key;
@@ -40,7 +42,12 @@ fn each<'n>(
 }
 
 /// What the rail must do.
-pub fn requirements(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Vec<Requirement> {
+pub(crate) fn requirements(
+    node: &Node,
+    rated: RatedLoad,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Vec<Requirement> {
     let mut all = Vec::new();
     each(node, trail, notes, |item, trail, notes| all.extend(requirement(item, rated, trail, notes)));
     all
@@ -71,7 +78,11 @@ fn requirement(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
     }
     let at = point(&mut fields, rated, notes);
     let names = LIMITS.map(|(key, _)| key.name);
-    fields.close(|| names.into_iter().chain(ALL_AXES.map(AxisName::name)).collect(), notes);
+    fields.close_with(
+        Some(Vocabulary::Axis),
+        || names.into_iter().chain(ALL_AXES.map(AxisName::name)).collect(),
+        notes,
+    );
     if given != 1 {
         let blame = match given {
             0 => Blame::new("sets no limit", format!("add one of {}", listed(names))),
@@ -83,7 +94,12 @@ fn requirement(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
 }
 
 /// Time shares of operating points.
-pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Vec<ProfilePoint> {
+pub(crate) fn profile(
+    node: &Node,
+    rated: RatedLoad,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Vec<ProfilePoint> {
     let before = notes.errors();
     let mut all = Vec::new();
     each(node, trail, notes, |item, trail, notes| {
@@ -92,7 +108,11 @@ pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
             .require("share", keys::SHARE.example, notes)
             .and_then(|node| value(node, &keys::SHARE, &trail.key("share"), notes));
         let at = point(&mut fields, rated, notes);
-        fields.close(|| ["share"].into_iter().chain(ALL_AXES.map(AxisName::name)).collect(), notes);
+        fields.close_with(
+            Some(Vocabulary::Axis),
+            || ["share"].into_iter().chain(ALL_AXES.map(AxisName::name)).collect(),
+            notes,
+        );
         all.extend(share.map(|share| ProfilePoint { share, at }));
     });
     let sum: f64 = all.iter().map(|point| point.share).sum();
@@ -106,7 +126,7 @@ pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
 }
 
 /// Energy of the battery, J.
-pub fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
+pub(crate) fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
     let mut fields = Fields::open(node, trail, "`battery: {energy: 50 Wh}`", notes)?;
     let energy = fields
         .require("energy", keys::BATTERY_ENERGY.example, notes)
@@ -116,7 +136,7 @@ pub fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64>
 }
 
 /// Accuracies of the bench's instruments.
-pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchAccuracy> {
+pub(crate) fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchAccuracy> {
     const KEYS: [Key; 4] = [
         keys::accuracy("input_voltage"),
         keys::accuracy("input_current"),
@@ -140,7 +160,7 @@ pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchA
 }
 
 /// Margins to ratings.
-pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
+pub(crate) fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
     const RATIOS: [Key; 4] = [
         keys::derated("voltage"),
         keys::derated("gate_voltage"),
@@ -184,7 +204,7 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
 }
 
 /// Copper, sense, snubber and heat from slot to slot.
-pub fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
+pub(crate) fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
     let (mut sheet, mut coupling) = (BoardSheet::default(), Vec::new());
     let Some(mut fields) = Fields::open(node, trail, "`{high_side_path: 0.5 mΩ, input_path: 2 mΩ}`", notes)
     else {

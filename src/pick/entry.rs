@@ -3,8 +3,9 @@
 use serde::Serialize;
 use serde::ser::{SerializeMap, Serializer};
 
-use crate::compare::TYPICAL;
 use crate::ledger::{Mechanism, Slot};
+
+use crate::worst::ValueSet;
 
 use super::slice::Slice;
 use super::{By, slots};
@@ -148,7 +149,7 @@ impl Outcome {
     pub fn entries<M: SerializeMap>(&self, map: &mut M) -> Result<(), M::Error> {
         map.serialize_entry("lossbook", &self.version)?;
         map.serialize_entry("budget", &self.budget)?;
-        map.serialize_entry("values", TYPICAL)?;
+        map.serialize_entry("values", ValueSet::Typical.name())?;
         map.serialize_entry("input", &self.input)?;
         map.serialize_entry("currency", &self.currency)?;
         map.serialize_entry("stage", &self.stage)?;
