@@ -18,7 +18,7 @@ pub mod error;
 mod fields;
 mod inherit;
 mod keys;
-pub mod kind;
+pub(crate) mod kind;
 mod library;
 mod listed;
 mod node;

@@ -22,8 +22,9 @@ pub fn read(text: &str) -> Result<Outcome, String> {
     let json: Value = serde_json::from_str(text).map_err(|error| format!("it is no JSON: {error}"))?;
     let text = |key: &str| string(&json, key);
     let by = By::from_name(&text("by")?).ok_or("`by` is no known order of ranking")?;
-    if text("values")? != ValueSet::Typical.name() {
-        return Err(format!("its values are not {}", ValueSet::Typical.name()));
+    let values = ValueSet::Typical.name();
+    if text("values")? != values {
+        return Err(format!("its values are not {values}"));
     }
     let slice = match json.get("slice").and_then(Value::as_array).map(Vec::as_slice) {
         Some([number, of]) => Slice {
