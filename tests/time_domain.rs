@@ -71,7 +71,11 @@ fn conduction_agrees_with_the_exact_steady_state() {
         for (column, difference) in converters::differences(&ours, exact) {
             let name = COLUMNS[column].0;
             let limit = converters::limit(column);
-            assert!(difference.abs() <= limit, "{}: {name} {difference:+.4}, {ours:?} {exact:?}", converter.words());
+            assert!(
+                difference.abs() <= limit,
+                "{}: {name} {difference:+.4}, {ours:?} {exact:?}",
+                converter.words()
+            );
             all.push(difference);
         }
     }
@@ -86,7 +90,11 @@ fn recorded_cells_are_those_of_the_solver() {
     for (place, (own, recorded)) in CELLS.iter().chain(FAST_CELLS).enumerate() {
         let energy = cell::energy(own, cell::STEP);
         if recording() {
-            println!("C {place} {energy:.5e} model {:.4} book {:.4}", own.model() / energy, own.textbook() / energy);
+            println!(
+                "C {place} {energy:.5e} model {:.4} book {:.4}",
+                own.model() / energy,
+                own.textbook() / energy
+            );
             continue;
         }
         assert!((energy / recorded - 1.0).abs() < 1e-3, "{own:?}: {energy} {recorded}");

@@ -6,8 +6,6 @@ use serde::ser::{SerializeMap, Serializer};
 use crate::ledger::{Mechanism, Slot};
 use crate::worst::ValueSet;
 
-use crate::worst::ValueSet;
-
 use super::slice::Slice;
 use super::{By, slots};
 
