@@ -230,6 +230,13 @@ impl Switched {
         switched
     }
 
+    /// Draws the consequences of parts that were exchanged: what the gates see and how heat flows.
+    pub fn reassemble(&mut self, coupling: &[Coupling]) {
+        self.heat =
+            heat_flow(&self.high_side, &self.rectifier, &self.inductor, self.controller.r_th, coupling);
+        self.full_drive = self.drive_of(self.controller.v_drive);
+    }
+
     /// True with a MOSFET as rectifier.
     pub fn is_synchronous(&self) -> bool {
         matches!(self.rectifier, Rectifier::Synchronous { .. })

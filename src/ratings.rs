@@ -334,7 +334,7 @@ fn inductor(checker: &mut Checker<'_>, placed: &Placed<InductorSheet>, waveform:
 }
 
 /// Current at which the inductance has dropped, and by how much: as stated, else the last point of the curve.
-fn saturation_current(sheet: &InductorSheet) -> Option<(f64, f64)> {
+pub fn saturation_current(sheet: &InductorSheet) -> Option<(f64, f64)> {
     if let Some(saturation) = &sheet.saturation {
         return Some((saturation.i.value, saturation.drop.value));
     }

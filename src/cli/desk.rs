@@ -6,7 +6,7 @@ use std::sync::Arc;
 
 use lossbook::answer::Answer;
 use lossbook::files::{Draft, FileFault};
-use lossbook::render::{Markdown, Render, Text};
+use lossbook::render::{Html, Markdown, Render, Text};
 use lossbook::sweep::Watch;
 
 use super::options::{Colour, Common, Format, Writing};
@@ -27,7 +27,7 @@ pub(crate) fn give(
     to(file, |out| match writing.format {
         Format::Csv => answer.csv(out),
         Format::Json => answer.json(out),
-        Format::Text | Format::Markdown => {
+        Format::Text | Format::Markdown | Format::Html => {
             let document = answer.document();
             drop(progress);
             page(writing, common).render(&document, out)
@@ -40,6 +40,7 @@ pub(crate) fn give(
 fn page(writing: &Writing, common: &Common) -> Box<dyn Render> {
     match writing.format {
         Format::Markdown => Box::new(Markdown),
+        Format::Html => Box::new(Html),
         _ => Box::new(text(common, writing.output.as_deref())),
     }
 }

@@ -75,4 +75,7 @@ pub(crate) enum Format {
     /// Pipe tables to paste into a report, rounded.
     #[value(alias = "md")]
     Markdown,
+    /// One page for a browser, without script, rounded.
+    #[value(alias = "htm")]
+    Html,
 }
