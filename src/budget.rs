@@ -9,6 +9,7 @@ use crate::sheet::{
     BoardSheet, CapacitorSheet, ControllerSheet, DiodeSheet, InductorSheet, LinearRegulatorSheet, MosfetSheet,
 };
 use crate::stage::StageSheet;
+use crate::worst::ValueSet;
 
 /// A budget file with the parts it names.
 #[derive(Clone, Debug)]
@@ -47,6 +48,8 @@ pub struct Budget {
     pub shortlist: Option<Shortlist>,
     /// Margins that findings are measured against.
     pub derating: Derating,
+    /// Which set of data-sheet values every question about it takes; the verbs set it, the file does not.
+    pub values: ValueSet,
     /// Every file that was read, with its SHA-256.
     pub inputs: Vec<InputFile>,
     /// All parts of the folders named.

@@ -306,15 +306,12 @@ fn input_voltages(budget: &Budget) -> Vec<f64> {
     voltages
 }
 
-/// Which set of data-sheet values an answer was computed with.
-pub const TYPICAL: &str = "typical";
-
 impl Serialize for Comparison<'_> {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         let mut map = serializer.serialize_map(None)?;
         map.serialize_entry("lossbook", env!("CARGO_PKG_VERSION"))?;
         map.serialize_entry("budget", &self.budget.name)?;
-        map.serialize_entry("values", TYPICAL)?;
+        map.serialize_entry("values", &self.budget.values)?;
         map.serialize_entry("headline", &Headline(&self.budget.headline))?;
         map.serialize_entry("stages", &self.headline)?;
         map.serialize_entry("crossovers", &self.crossovers)?;

@@ -4,7 +4,7 @@
 //! with the text file of its name. After a change of wording, `REWRITE=1 cargo test --test bad_input` writes the
 //! messages anew; read them before committing.
 
-#![allow(clippy::disallowed_methods)] // tests read and write their own files
+#![expect(clippy::disallowed_methods, reason = "a test reads and writes its own files")]
 
 use std::fs;
 use std::path::{Path, PathBuf};

@@ -2,13 +2,41 @@
 
 use std::path::{Path, PathBuf};
 
-use clap::Args;
+use clap::{Args, ValueEnum};
 use lossbook::budget::Budget;
 use lossbook::hints;
 use lossbook::input;
 use lossbook::printable::printable;
+use lossbook::worst::ValueSet;
 
 use super::{Failure, terminal};
+
+/// Which data-sheet values are taken.
+#[derive(Args, Debug)]
+pub(crate) struct Values {
+    /// Data-sheet values: typical, or of each printed limit the side that raises the loss at that point.
+    #[arg(long, value_name = "SET", default_value = "typical")]
+    pub(crate) values: Set,
+}
+
+/// A set of data-sheet values.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub(crate) enum Set {
+    /// The typical value of everything.
+    Typical,
+    /// Of each value with a printed limit, the side that raises the loss at that point.
+    Worst,
+}
+
+impl Values {
+    /// Makes every question about the budget take this set.
+    pub(crate) fn apply(&self, budget: &mut Budget) {
+        budget.values = match self.values {
+            Set::Typical => ValueSet::Typical,
+            Set::Worst => ValueSet::Worst,
+        };
+    }
+}
 
 /// The budget, and the stage that is meant.
 #[derive(Args, Debug)]

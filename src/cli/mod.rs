@@ -13,6 +13,8 @@ mod load;
 mod options;
 mod progress;
 mod report;
+mod sensitivity;
+mod spread;
 mod tabulate;
 mod template;
 pub(crate) mod terminal;
@@ -65,6 +67,8 @@ pub(crate) enum Verb {
     Tabulate(tabulate::Options),
     Check(check::Options),
     Template(template::Options),
+    Spread(spread::Options),
+    Sensitivity(sensitivity::Options),
 }
 
 impl Verb {
@@ -77,6 +81,8 @@ impl Verb {
             Verb::Tabulate(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
+            Verb::Spread(options) => options.run(common),
+            Verb::Sensitivity(options) => options.run(common),
         }
     }
 }

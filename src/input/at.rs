@@ -1,6 +1,6 @@
 //! Points on the command line: "input_voltage=24V load=6A ambient=60degC".
 
-use super::notes::Blame;
+use super::error::Blame;
 use super::quantity::{self, Expected};
 use crate::grid::{ALL_AXES, AxisName, PartialPoint};
 use crate::hints::{self, Vocabulary};

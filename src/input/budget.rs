@@ -6,27 +6,29 @@ use std::sync::Arc;
 
 use super::budget_grid::{self, MOST_POINTS, RatedLoad, value};
 use super::budget_keys as keys;
+use super::error::Blame;
 use super::error::InputError;
 use super::fields::Fields;
 use super::kind::PartKind;
 use super::library::{self, Loaded};
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::outline::{Outline, guard};
 use super::part_file::{Attention, is_budget};
 use super::path::Trail;
 use super::place::{Source, resolve};
 use super::shelf::Shelf;
 use super::{budget_stages, budget_terms as terms, shortlist, yaml};
-use crate::budget::{Budget, InputFile};
+use crate::budget::{Budget, Coupling, InputFile};
 use crate::files;
 use crate::grid::{AxisName, Grid, OperatingPoint};
 use crate::hints::Vocabulary;
+use crate::ledger::Slot;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 
 /// Keys at the top of a budget, in the order of the documentation.
-pub const KEYS: [&str; 17] = [
+pub(crate) const KEYS: [&str; 17] = [
     "budget",
     "about",
     "source",
@@ -47,7 +49,7 @@ pub const KEYS: [&str; 17] = [
 ];
 
 /// Reads a budget and the library it names; the budget is there when none of the faults is an error.
-pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
+pub(crate) fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
     let file = match files::read_text(path) {
         Ok(file) => file,
         Err(fault) => {
@@ -61,7 +63,7 @@ pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
 }
 
 /// Reads the text of a budget that has passed the guard.
-pub fn load_text(
+pub(crate) fn load_text(
     path: &Path,
     file: &files::TextFile,
     outline: &Outline,
@@ -186,6 +188,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
         let shortlist = self.shortlist(&shelf, &stages);
         let derating = self.optional("derating", terms::derating).unwrap_or_default();
         let (board, coupling) = board.unwrap_or((BoardSheet::default(), Vec::new()));
+        self.coupled_slots(&stages, &coupling);
         let fields = std::mem::replace(&mut self.fields, Fields::empty());
         fields.close(|| KEYS.to_vec(), self.notes);
         if self.notes.errors() > 0 {
@@ -216,6 +219,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             profile: profile.unwrap_or_default(),
             battery,
             bench,
+            values: crate::worst::ValueSet::default(),
             shortlist,
             derating,
             inputs,
@@ -310,6 +314,27 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
     fn headline_frequency(&self) -> bool {
         let headline = self.fields.peek("headline");
         headline.is_none_or(|node| node.get(AxisName::SwitchingFrequency.name()).is_some())
+    }
+
+    /// Heat between slots that no stage has together.
+    fn coupled_slots(&mut self, stages: &[StageSheet], coupling: &[Coupling]) {
+        let of_stage = |stage: &StageSheet, slot: Slot| {
+            slot == Slot::Board || budget_stages::slots(stage.rectifier_name()).contains(&slot)
+        };
+        // stages with errors are not among them
+        if self.notes.errors() > 0 {
+            return;
+        }
+        let top = Trail::TOP;
+        let board = top.key("board");
+        let trail = board.key(keys::COUPLING.name);
+        for pair in coupling {
+            let together = |stage: &StageSheet| of_stage(stage, pair.heated) && of_stage(stage, pair.heating);
+            if !stages.iter().any(together) {
+                let blame = Blame::new("no stage has both slots", "take it out, or check the names");
+                self.notes.doubt(&trail.key(pair.heated.name()).key(pair.heating.name()), blame);
+            }
+        }
     }
 
     fn count(&mut self, stages: &[StageSheet], grid: &Grid) {

@@ -2,10 +2,11 @@
 
 use super::budget_grid::{RatedLoad, point, value};
 use super::budget_keys as keys;
+use super::error::Blame;
 use super::fields::Fields;
 use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_fields;
 use super::sample::key_names;
@@ -41,7 +42,12 @@ fn each<'n>(
 }
 
 /// What the rail must do.
-pub fn requirements(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Vec<Requirement> {
+pub(crate) fn requirements(
+    node: &Node,
+    rated: RatedLoad,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Vec<Requirement> {
     let mut all = Vec::new();
     each(node, trail, notes, |item, trail, notes| all.extend(requirement(item, rated, trail, notes)));
     all
@@ -88,7 +94,12 @@ fn requirement(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
 }
 
 /// Time shares of operating points.
-pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Vec<ProfilePoint> {
+pub(crate) fn profile(
+    node: &Node,
+    rated: RatedLoad,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Vec<ProfilePoint> {
     let before = notes.errors();
     let mut all = Vec::new();
     each(node, trail, notes, |item, trail, notes| {
@@ -115,7 +126,7 @@ pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
 }
 
 /// Energy of the battery, J.
-pub fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
+pub(crate) fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
     let mut fields = Fields::open(node, trail, "`battery: {energy: 50 Wh}`", notes)?;
     let energy = fields
         .require("energy", keys::BATTERY_ENERGY.example, notes)
@@ -125,7 +136,7 @@ pub fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64>
 }
 
 /// Accuracies of the bench's instruments.
-pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchAccuracy> {
+pub(crate) fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchAccuracy> {
     const KEYS: [Key; 4] = [
         keys::accuracy("input_voltage"),
         keys::accuracy("input_current"),
@@ -149,7 +160,7 @@ pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchA
 }
 
 /// Margins to ratings.
-pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
+pub(crate) fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
     const RATIOS: [Key; 4] = [
         keys::derated("voltage"),
         keys::derated("gate_voltage"),
@@ -193,7 +204,7 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
 }
 
 /// Copper, sense, snubber and heat from slot to slot.
-pub fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
+pub(crate) fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
     let (mut sheet, mut coupling) = (BoardSheet::default(), Vec::new());
     let Some(mut fields) = Fields::open(node, trail, "`{high_side_path: 0.5 mΩ, input_path: 2 mΩ}`", notes)
     else {

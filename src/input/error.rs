@@ -118,6 +118,22 @@ impl InputError {
     }
 }
 
+/// Reason and way out of a fault.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Blame {
+    /// What is wrong.
+    pub reason: String,
+    /// The way out.
+    pub hint: String,
+}
+
+impl Blame {
+    /// Both texts.
+    pub fn new(reason: impl Into<String>, hint: impl Into<String>) -> Self {
+        Blame { reason: reason.into(), hint: hint.into() }
+    }
+}
+
 /// All faults found in one go; at least one of them is an error.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct InputErrors(pub Vec<InputError>);

@@ -23,7 +23,7 @@ fn at_ambient(r_th: Option<&Datum>, gaps: &mut Faults) {
 }
 
 /// Gaps of a MOSFET.
-pub fn mosfet(sheet: &MosfetSheet, gaps: &mut Faults) {
+pub(crate) fn mosfet(sheet: &MosfetSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
     if sheet.r_ds_on_hot.is_none() {
         gaps.warn(
@@ -52,7 +52,7 @@ pub fn mosfet(sheet: &MosfetSheet, gaps: &mut Faults) {
 }
 
 /// Gaps of a diode.
-pub fn diode(sheet: &DiodeSheet, gaps: &mut Faults) {
+pub(crate) fn diode(sheet: &DiodeSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
     match sheet.i_r.len() {
         0 => gaps.warn("", "gives no i_r: leakage is not modelled", "add `i_r`, best at two temperatures"),
@@ -70,7 +70,7 @@ pub fn diode(sheet: &DiodeSheet, gaps: &mut Faults) {
 }
 
 /// Gaps of an inductor.
-pub fn inductor(sheet: &InductorSheet, gaps: &mut Faults) {
+pub(crate) fn inductor(sheet: &InductorSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
     if sheet.core.is_none() && sheet.core_loss.is_empty() {
         gaps.warn("", "gives no core data: core loss is not modelled", "add `core` or `core_loss`");
@@ -85,12 +85,12 @@ pub fn inductor(sheet: &InductorSheet, gaps: &mut Faults) {
 }
 
 /// Gaps of a capacitor.
-pub fn capacitor(sheet: &CapacitorSheet, gaps: &mut Faults) {
+pub(crate) fn capacitor(sheet: &CapacitorSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
 }
 
 /// Gaps of a controller.
-pub fn controller(sheet: &ControllerSheet, gaps: &mut Faults) {
+pub(crate) fn controller(sheet: &ControllerSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
     let drivers = [("high_side", Some(&sheet.high_side)), ("low_side", sheet.low_side.as_ref())];
     for (name, driver) in drivers {
@@ -105,7 +105,7 @@ pub fn controller(sheet: &ControllerSheet, gaps: &mut Faults) {
 }
 
 /// Gaps of a linear regulator.
-pub fn linear_regulator(sheet: &LinearRegulatorSheet, gaps: &mut Faults) {
+pub(crate) fn linear_regulator(sheet: &LinearRegulatorSheet, gaps: &mut Faults) {
     source(&sheet.descriptive, gaps);
     at_ambient(sheet.r_th_ja.as_ref(), gaps);
 }

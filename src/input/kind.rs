@@ -15,7 +15,7 @@ use crate::sheet::{
 
 /// A kind of part.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
-pub enum PartKind {
+pub(crate) enum PartKind {
     /// `mosfets`
     Mosfet,
     /// `diodes`
@@ -31,7 +31,7 @@ pub enum PartKind {
 }
 
 /// All kinds in the order of the documentation.
-pub const ALL_KINDS: [PartKind; 6] = [
+pub(crate) const ALL_KINDS: [PartKind; 6] = [
     PartKind::Mosfet,
     PartKind::Diode,
     PartKind::Inductor,
@@ -42,7 +42,7 @@ pub const ALL_KINDS: [PartKind; 6] = [
 
 impl PartKind {
     /// Key at the top of a library file.
-    pub const fn key(self) -> &'static str {
+    pub(crate) const fn key(self) -> &'static str {
         match self {
             PartKind::Mosfet => "mosfets",
             PartKind::Diode => "diodes",
@@ -54,7 +54,7 @@ impl PartKind {
     }
 
     /// In prose: "a MOSFET".
-    pub const fn words(self) -> &'static str {
+    pub(crate) const fn words(self) -> &'static str {
         match self {
             PartKind::Mosfet => "a MOSFET",
             PartKind::Diode => "a diode",
@@ -66,7 +66,7 @@ impl PartKind {
     }
 
     /// In prose, several: "MOSFETs".
-    pub const fn plural(self) -> &'static str {
+    pub(crate) const fn plural(self) -> &'static str {
         match self {
             PartKind::Mosfet => "MOSFETs",
             PartKind::Diode => "diodes",
@@ -78,12 +78,12 @@ impl PartKind {
     }
 
     /// The kind of a key.
-    pub fn from_key(key: &str) -> Option<PartKind> {
+    pub(crate) fn from_key(key: &str) -> Option<PartKind> {
         ALL_KINDS.into_iter().find(|kind| kind.key() == key)
     }
 
     /// The kind that fits a slot; `None` for the board.
-    pub const fn of_slot(slot: Slot) -> Option<PartKind> {
+    pub(crate) const fn of_slot(slot: Slot) -> Option<PartKind> {
         match slot {
             Slot::HighSide | Slot::LowSide => Some(PartKind::Mosfet),
             Slot::ParallelSchottky | Slot::FreewheelDiode => Some(PartKind::Diode),
@@ -96,7 +96,7 @@ impl PartKind {
     }
 
     /// Reads a part of this kind.
-    pub fn read(self, node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> AnySheet {
+    pub(crate) fn read(self, node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> AnySheet {
         fn read<T: Form + Default>(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Arc<T> {
             let mut sheet = T::default();
             read_checked(&mut sheet, node, trail, notes);
@@ -113,7 +113,7 @@ impl PartKind {
     }
 
     /// An empty sheet of this kind, for asking its keys.
-    pub fn empty_form(self) -> Box<dyn Form> {
+    pub(crate) fn empty_form(self) -> Box<dyn Form> {
         match self {
             PartKind::Mosfet => Box::<MosfetSheet>::default(),
             PartKind::Diode => Box::<DiodeSheet>::default(),
@@ -125,7 +125,7 @@ impl PartKind {
     }
 
     /// Names of the library's parts of this kind, in its order.
-    pub fn names(self, library: &Library) -> Vec<&Arc<str>> {
+    pub(crate) fn names(self, library: &Library) -> Vec<&Arc<str>> {
         match self {
             PartKind::Mosfet => library.mosfets.iter().map(|(name, _)| name).collect(),
             PartKind::Diode => library.diodes.iter().map(|(name, _)| name).collect(),
@@ -137,7 +137,7 @@ impl PartKind {
     }
 
     /// The part of a name with the name as the library keeps it.
-    pub fn find(self, library: &Library, name: &str) -> Option<(Arc<str>, AnySheet)> {
+    pub(crate) fn find(self, library: &Library, name: &str) -> Option<(Arc<str>, AnySheet)> {
         fn wrap<T>(found: (Arc<str>, Arc<T>), make: fn(Arc<T>) -> AnySheet) -> (Arc<str>, AnySheet) {
             (found.0, make(found.1))
         }
@@ -158,7 +158,7 @@ impl PartKind {
 
 /// A sheet of any kind.
 #[derive(Clone, Debug, PartialEq)]
-pub enum AnySheet {
+pub(crate) enum AnySheet {
     /// A MOSFET.
     Mosfet(Arc<MosfetSheet>),
     /// A diode.
@@ -175,7 +175,7 @@ pub enum AnySheet {
 
 impl AnySheet {
     /// Adds the part to a library; false when its name is taken.
-    pub fn add_to(self, library: &mut Library, name: Arc<str>) -> bool {
+    pub(crate) fn add_to(self, library: &mut Library, name: Arc<str>) -> bool {
         match self {
             AnySheet::Mosfet(sheet) => library.mosfets.add(name, sheet),
             AnySheet::Diode(sheet) => library.diodes.add(name, sheet),
@@ -187,7 +187,7 @@ impl AnySheet {
     }
 
     /// A copy of the form, for visitors.
-    pub fn form(&self) -> Box<dyn Form> {
+    pub(crate) fn form(&self) -> Box<dyn Form> {
         match self {
             AnySheet::Mosfet(sheet) => Box::new(MosfetSheet::clone(sheet)),
             AnySheet::Diode(sheet) => Box::new(DiodeSheet::clone(sheet)),
@@ -199,7 +199,7 @@ impl AnySheet {
     }
 
     /// What the model assumes or leaves out because the sheet does not say it.
-    pub fn gaps(&self, gaps: &mut Faults) {
+    pub(crate) fn gaps(&self, gaps: &mut Faults) {
         match self {
             AnySheet::Mosfet(sheet) => super::gaps::mosfet(sheet, gaps),
             AnySheet::Diode(sheet) => super::gaps::diode(sheet, gaps),

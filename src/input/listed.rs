@@ -1,7 +1,7 @@
 //! Lists of words in messages.
 
 /// Words in backticks, the first forty of them.
-pub fn listed<'a>(words: impl IntoIterator<Item = &'a str>) -> String {
+pub(crate) fn listed<'a>(words: impl IntoIterator<Item = &'a str>) -> String {
     const SHOWN: usize = 40;
     let words: Vec<&str> = words.into_iter().collect();
     let mut text = words.iter().take(SHOWN).map(|word| format!("`{word}`")).collect::<Vec<_>>().join(", ");

@@ -10,41 +10,49 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, ScanError, Span};
 
+use super::error::Blame;
 use super::error::{InputError, OtherPlace};
-use super::notes::{Blame, MOST};
+use super::notes::MOST;
 use super::place::{Spot, excerpt};
 use crate::printable::printable;
 
+/// Most keys of one mapping: parts of one kind in one file.
+const MOST_KEYS: usize = 1_000_000;
+
 /// Deepest nesting of mappings and lists.
-pub const DEEPEST: usize = 64;
+pub(crate) const DEEPEST: usize = 64;
+
+/// Length from which a stretch is not extended, in bytes: long enough to be worth a parser, short enough to be
+/// shared among cores.
+const STRETCH: usize = 32 * 1024;
 
 /// Stretches of a text that can be read on their own.
 #[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Stretch {
+pub(crate) struct Stretch {
     /// First byte.
-    pub start: usize,
+    pub(crate) start: usize,
     /// First byte after it.
-    pub end: usize,
+    pub(crate) end: usize,
     /// Line on which it begins, from 1.
-    pub line: usize,
+    pub(crate) line: usize,
     /// Key at the top of the file to which it belongs; `None` when the stretch repeats that key itself.
-    pub kind: Option<Box<str>>,
+    pub(crate) kind: Option<Box<str>>,
 }
 
 /// What the guard learnt of a text.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
-pub struct Outline {
+pub(crate) struct Outline {
     /// Keys at the top with their lines.
-    pub top: Vec<(Box<str>, usize)>,
-    /// The text in stretches: an entry of a block mapping under a top key each, or the whole of a top key.
-    pub stretches: Vec<Stretch>,
+    pub(crate) top: Vec<(Box<str>, usize)>,
+    /// The text in stretches: some entries of a block mapping under a top key, or the whole of a top key.
+    pub(crate) stretches: Vec<Stretch>,
 }
 
 /// Checks a text and finds its outline.
 ///
 /// # Errors
 /// All faults found, each with its place.
-pub fn guard(file: &Path, text: &str) -> Result<Outline, Vec<InputError>> {
+pub(crate) fn guard(file: &Path, text: &str) -> Result<Outline, Vec<InputError>> {
     let mut guard = Guard::new(file, text);
     if let Some((line, column)) = separator(text) {
         let spot = Spot { line, start: column, end: column + 1 };
@@ -212,6 +220,10 @@ impl<'t> Guard<'t> {
         }
         if text == "<<" {
             self.fault(spot, "merge keys are not read", "write the keys out");
+        } else if frame.keys.list.len() >= MOST_KEYS {
+            let reason = format!("more than {MOST_KEYS} keys stand in one mapping");
+            self.fault(spot, reason, "split it into several files");
+            self.stop = true;
         } else if let Some(first) = frame.keys.add(text.clone(), spot) {
             self.doubled(&text, first, spot);
         }
@@ -318,11 +330,18 @@ impl<'t> Guard<'t> {
             if own.is_empty() {
                 stretches.push(Stretch { start: self.byte(spot.line), end, line: spot.line, kind: None });
             }
+            let mut open: Option<Stretch> = None;
             for (place, (_, entry)) in own.iter().enumerate() {
                 let end = own.get(place + 1).map_or(end, |(_, next)| self.byte(next.line));
                 let start = self.byte(entry.line);
-                stretches.push(Stretch { start, end, line: entry.line, kind: Some(name.clone()) });
+                let own =
+                    open.get_or_insert(Stretch { start, end, line: entry.line, kind: Some(name.clone()) });
+                own.end = end;
+                if own.end - own.start >= STRETCH {
+                    stretches.extend(open.take());
+                }
             }
+            stretches.extend(open);
         }
         let top = self.top.into_iter().map(|(name, spot)| (name, spot.line)).collect();
         Outline { top, stretches }
@@ -394,6 +413,18 @@ mod tests {
     }
 
     #[test]
+    fn long_files_are_cut_between_parts() {
+        let part = format!("  a: {{x: {}}}\n", "1".repeat(STRETCH / 3));
+        let text =
+            format!("mosfets:\n{}", (0..9).map(|i| part.replace('a', &format!("a{i}"))).collect::<String>());
+        let outline = guard(Path::new("x"), &text).expect("sound");
+        let pieces: Vec<&str> = outline.stretches.iter().map(|s| &text[s.start..s.end]).collect();
+        assert_eq!(pieces.len(), 3);
+        assert_eq!(format!("mosfets:\n{}", pieces.concat()), text);
+        assert_eq!(outline.stretches.iter().map(|s| s.line).collect::<Vec<_>>(), [2, 5, 8]);
+    }
+
+    #[test]
     fn parts_can_be_read_one_by_one() {
         let text = "# head\nmosfets:\n  a:\n    x: 1\n  # note\n  b: {x: 2}\ndiodes: {c: {x: 3}}\nempty:\n";
         let outline = guard(Path::new("x"), text).expect("sound");
@@ -402,8 +433,7 @@ mod tests {
         assert_eq!(
             seen,
             [
-                (3, Some("mosfets"), "  a:\n    x: 1\n  # note\n"),
-                (6, Some("mosfets"), "  b: {x: 2}\n"),
+                (3, Some("mosfets"), "  a:\n    x: 1\n  # note\n  b: {x: 2}\n"),
                 (7, None, "diodes: {c: {x: 3}}\n"),
                 (8, None, "empty:\n"),
             ]

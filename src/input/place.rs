@@ -12,55 +12,62 @@ use crate::printable::is_unprintable;
 
 /// A stretch of a file that holds whole values.
 #[derive(Clone, Copy, Debug)]
-pub struct Source<'a> {
+pub(crate) struct Source<'a> {
     /// The file, for messages.
-    pub file: &'a Path,
+    pub(crate) file: &'a Path,
     /// The text of the stretch.
-    pub text: &'a str,
+    pub(crate) text: &'a str,
     /// Line of the file on which it begins, from 1.
-    pub first_line: usize,
+    pub(crate) first_line: usize,
     /// Steps of a key path that lead to the stretch and are not repeated in it.
-    pub above: usize,
+    pub(crate) above: usize,
     /// True when the first two steps of a path are a kind of part and a part.
-    pub library: bool,
+    pub(crate) library: bool,
 }
 
 impl Source<'_> {
     /// What the second parser says of a text that the first one let pass.
-    pub fn yaml_fault(&self, fault: &YamlFault) -> InputError {
+    pub(crate) fn yaml_fault(&self, fault: &YamlFault) -> InputError {
         let spot = Spot { line: fault.line, start: fault.column.saturating_sub(1), end: fault.column };
         let line = fault.line.checked_sub(1).and_then(|place| self.text.split('\n').nth(place));
-        let hint = "check the indentation and the quotes near this place";
+        let hint = match fault.line {
+            0 => "write each part on lines of its own below its kind, or split the file",
+            _ => "check the indentation and the quotes near this place",
+        };
+        let reason = match fault.line {
+            0 => format!("cannot be read: {}", fault.reason),
+            _ => format!("this is no YAML: {}", fault.reason),
+        };
         InputError {
             line: if fault.line == 0 { 0 } else { fault.line + self.first_line - 1 },
             column: fault.column,
             excerpt: line.map(|line| excerpt(line, spot)),
-            ..InputError::of_file(self.file, format!("this is no YAML: {}", fault.reason), hint)
+            ..InputError::of_file(self.file, reason, hint)
         }
     }
 }
 
 /// Where something stands in a text: line from 1, columns from 0 in characters; `end` on the same line.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub struct Spot {
+pub(crate) struct Spot {
     /// Line from 1.
-    pub line: usize,
+    pub(crate) line: usize,
     /// First column.
-    pub start: usize,
+    pub(crate) start: usize,
     /// First column after it.
-    pub end: usize,
+    pub(crate) end: usize,
 }
 
 impl Spot {
     /// From a mark to the end of what begins there; one character when it goes on to the next line.
-    pub fn new(start: Marker, end: Marker) -> Spot {
+    pub(crate) fn new(start: Marker, end: Marker) -> Spot {
         let end = if end.line() == start.line() { end.col() } else { start.col() + 1 };
         Spot { line: start.line(), start: start.col(), end: end.max(start.col() + 1) }
     }
 }
 
 /// Gives every note its line, column and excerpt.
-pub fn resolve(notes: Vec<Note>, source: &Source<'_>) -> Vec<InputError> {
+pub(crate) fn resolve(notes: Vec<Note>, source: &Source<'_>) -> Vec<InputError> {
     let spots = find(&notes, source);
     let lines: Vec<&str> = if notes.is_empty() { Vec::new() } else { source.text.split('\n').collect() };
     notes.into_iter().zip(spots).map(|(note, spot)| place(note, spot, &lines, source)).collect()
@@ -114,7 +121,7 @@ fn names(path: &KeyPath, library: bool) -> (String, String) {
 const CONTEXT: usize = 2000;
 
 /// A line with a mark; control characters replaced, long lines cut around the mark.
-pub fn excerpt(line: &str, spot: Spot) -> Excerpt {
+pub(crate) fn excerpt(line: &str, spot: Spot) -> Excerpt {
     let (mut text, mut start, mut end) = (String::new(), None, None);
     let first = spot.start.saturating_sub(CONTEXT);
     let last = spot.end.min(spot.start + 2 * CONTEXT) + CONTEXT;

@@ -5,11 +5,12 @@ use std::sync::Arc;
 use super::budget_grid::{self, RatedLoad, word};
 use super::budget_stages::slots;
 use super::datum::bounded;
+use super::error::Blame;
 use super::fields::Fields;
 use super::kind::PartKind;
 use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::probe::Probe;
 use super::sample::key_names;
@@ -23,17 +24,22 @@ use crate::stage::{Circuit, StageSheet};
 
 /// What the shortlist refers to.
 #[derive(Clone, Copy, Debug)]
-pub struct Context<'a> {
+pub(crate) struct Context<'a> {
     /// The library.
-    pub shelf: &'a Shelf<'a>,
+    pub(crate) shelf: &'a Shelf<'a>,
     /// Names of the stages as written, and those that were read without error.
-    pub names: &'a [&'a str],
+    pub(crate) names: &'a [&'a str],
     /// Stages without errors.
-    pub stages: &'a [StageSheet],
+    pub(crate) stages: &'a [StageSheet],
 }
 
 /// Reads the shortlist.
-pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut Notes) -> Option<Shortlist> {
+pub(crate) fn read(
+    node: &Node,
+    context: Context<'_>,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Option<Shortlist> {
     let like = "`{stage: synchronous, high_side: all}`";
     let mut fields = Fields::open(node, trail, like, notes)?;
     let example = context.names.first().copied().unwrap_or("synchronous");

@@ -27,7 +27,6 @@ use serde::ser::{Serialize, SerializeMap, Serializer};
 use crate::answer::Answer;
 use crate::budget::Budget;
 use crate::candidate::Candidate;
-use crate::compare::TYPICAL;
 use crate::fitted::Kind;
 use crate::grid::{OperatingPoint, PartialPoint};
 use crate::heat::nodes_of;
@@ -253,7 +252,7 @@ impl Serialize for Derivation<'_> {
 fn head<M: SerializeMap>(map: &mut M, budget: &Budget) -> Result<(), M::Error> {
     map.serialize_entry("lossbook", env!("CARGO_PKG_VERSION"))?;
     map.serialize_entry("budget", &budget.name)?;
-    map.serialize_entry("values", TYPICAL)
+    map.serialize_entry("values", &budget.values)
 }
 
 fn body<M: SerializeMap>(map: &mut M, derivation: &Derivation<'_>) -> Result<(), M::Error> {

@@ -91,9 +91,7 @@ pub(super) fn row(
 }
 
 pub(super) fn summary(comparison: &Comparison<'_>) -> Table {
-    let at = words::point(&comparison.budget.headline);
-    let mut table =
-        Table::new(caption::budget(comparison.budget, &at), stage_columns(comparison, "at the headline"));
+    let mut table = Table::new("", stage_columns(comparison, "at the headline"));
     table.row(row(comparison, "efficiency", |record, detail| {
         let efficiency = detail.solved.efficiency().map_or(Cell::missing("no load"), Cell::efficiency);
         gravest(efficiency, record, detail)
@@ -175,9 +173,7 @@ fn watts_and_share(watts: f64, solved: &Solved) -> Cell {
 }
 
 pub(super) fn by_mechanism(comparison: &Comparison<'_>) -> Table {
-    let at = words::point(&comparison.budget.headline);
-    let mut table =
-        Table::new(caption::budget(comparison.budget, &at), stage_columns(comparison, "mechanism"));
+    let mut table = Table::new("", stage_columns(comparison, "mechanism"));
     let largest = |watts: &dyn Fn(&Solved) -> f64| {
         let solved = comparison.headline.iter().filter_map(|record| record.outcome.as_ref().ok());
         solved.map(|detail| watts(&detail.solved)).fold(0.0, f64::max)

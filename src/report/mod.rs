@@ -19,6 +19,7 @@
 //! ```
 
 mod balance;
+pub mod bars;
 pub mod caption;
 mod cell;
 pub mod comparison;
@@ -29,6 +30,8 @@ mod layout;
 pub mod needs;
 pub mod number;
 pub mod review;
+pub mod sensitivity;
+pub mod spread;
 mod table;
 pub mod tables;
 pub mod verdict;

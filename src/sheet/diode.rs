@@ -38,10 +38,12 @@ const I_F_MAX: Key =
     Key::new("i_f_max", D::Current, "forward current rating").sane(0.01, 1e3).example("10 A");
 const T_J_MAX: Key =
     Key::new("t_j_max", D::Temperature, "junction temperature rating").sane(70.0, 250.0).example("125 °C");
-const V_F: Key = Key::new("v_f", D::Voltage, "forward voltage, points at one or two junction temperatures");
+const V_F: Key = Key::new("v_f", D::Voltage, "forward voltage, points at one or two junction temperatures")
+    .example("[{t_j: 25 °C, points: [{i: 1 A, v: 0.36 V}, {i: 10 A, v: 0.50 V}]}]");
 const I_R: Key = Key::new("i_r", D::Current, "reverse leakage at voltages and temperatures")
     .absent("leakage not modelled when absent; one point: doubling per 10 K assumed")
-    .starter();
+    .starter()
+    .example("[{v_r: 40 V, t_j: 25 °C, i: 60 µA}, {v_r: 40 V, t_j: 125 °C, i: 15 mA}]");
 const Q_C: Key = Key::new("q_c", D::Charge, "junction charge; or c_j")
     .at(&["v_r"])
     .sane(1e-12, 1e-6)

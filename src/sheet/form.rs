@@ -163,6 +163,8 @@ impl<T: Form + Default> OptionalForm for Option<T> {
 pub trait FormList {
     /// Adds an empty form and returns it.
     fn push(&mut self) -> &mut dyn Form;
+    /// Makes room for so many forms more, and no more than that.
+    fn reserve(&mut self, count: usize);
     /// Number of forms.
     fn len(&self) -> usize;
     /// True without any.
@@ -178,6 +180,10 @@ impl<T: Form + Default> FormList for Vec<T> {
         self.push(T::default());
         let last = self.len() - 1;
         &mut self[last]
+    }
+
+    fn reserve(&mut self, count: usize) {
+        self.reserve_exact(count);
     }
 
     fn len(&self) -> usize {

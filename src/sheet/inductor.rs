@@ -43,7 +43,8 @@ const SATURATION: Key =
     Key::new("saturation", D::Current, "current at which the inductance has dropped; or inductance_curve")
         .starter();
 const INDUCTANCE_CURVE: Key =
-    Key::new("inductance_curve", D::Inductance, "inductance against current, instead of saturation");
+    Key::new("inductance_curve", D::Inductance, "inductance against current, instead of saturation")
+        .example("[{i: 0 A, l: 3.3 µH}, {i: 16 A, l: 2.3 µH}]");
 const I_RMS_MAX: Key =
     Key::new("i_rms_max", D::Current, "RMS current rating").sane(0.01, 500.0).example("12 A").starter();
 const TEMPERATURE_RISE: Key = Key::new(
@@ -70,7 +71,7 @@ const CORE: Key = Key::new(
 .absent("core loss not modelled when core and core_loss are absent")
 .starter();
 const CORE_LOSS: Key =
-    Key::new("core_loss", D::Power, "maker's core loss points at D = 1/2, three or more, instead of core");
+    Key::new("core_loss", D::Power, "maker's core loss points at D = 1/2, three or more, instead of core").example("[{frequency: 300 kHz, ripple: 2 A, loss: 40 mW}, {frequency: 300 kHz, ripple: 4 A, loss: 220 mW}, {frequency: 500 kHz, ripple: 2 A, loss: 85 mW}]");
 
 impl Form for InductorSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {

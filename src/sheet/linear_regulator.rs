@@ -30,8 +30,10 @@ const V_IN_MAX: Key =
     Key::new("v_in_max", D::Voltage, "input voltage rating").sane(1.5, 500.0).example("36 V");
 const I_OUT_MAX: Key =
     Key::new("i_out_max", D::Current, "output current rating").sane(1e-3, 100.0).example("5 A");
-const DROPOUT: Key = Key::new("dropout", D::Voltage, "drop-out voltage against load");
-const I_GND: Key = Key::new("i_gnd", D::Current, "ground current against load");
+const DROPOUT: Key = Key::new("dropout", D::Voltage, "drop-out voltage against load")
+    .example("[{i: 0.1 A, v: 0.15 V}, {i: 5 A, v: 0.9 V}]");
+const I_GND: Key = Key::new("i_gnd", D::Current, "ground current against load")
+    .example("[{i: 0 A, i_gnd: 1 mA}, {i: 5 A, i_gnd: 60 mA}]");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)
     .absent("the part stays at ambient when absent")

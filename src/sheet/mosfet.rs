@@ -88,8 +88,9 @@ const Q_GS2: Key = Key::new("q_gs2", D::Charge, "its part after the threshold; o
     .absent("estimated from q_gs, threshold and plateau when absent")
     .example("1.3 nC")
     .starter();
-const Q_G_TH: Key =
-    Key::new("q_g_th", D::Charge, "gate charge at threshold (q_gs2 = q_gs - q_g_th)").sane(1e-12, 1e-6);
+const Q_G_TH: Key = Key::new("q_g_th", D::Charge, "gate charge at threshold (q_gs2 = q_gs - q_g_th)")
+    .sane(1e-12, 1e-6)
+    .example("1.9 nC");
 const Q_SW: Key =
     Key::new("q_sw", D::Charge, "switching charge (q_gs2 + q_gd)").sane(1e-12, 1e-6).example("3.4 nC");
 const Q_GD: Key = Key::new("q_gd", D::Charge, "gate-drain charge at its test voltage")
@@ -122,7 +123,8 @@ const L_SOURCE: Key = Key::new("l_source", D::Inductance, "common-source inducta
     .sane(0.0, 2e-8)
     .absent("0 nH assumed when absent")
     .example("0.2 nH");
-const V_SD: Key = Key::new("v_sd", D::Voltage, "body diode forward voltage, one or more points");
+const V_SD: Key = Key::new("v_sd", D::Voltage, "body diode forward voltage, one or more points")
+    .example("[{i: 1 A, v: 0.70 V}, {i: 20 A, v: 0.84 V}]");
 const Q_RR: Key = Key::new("q_rr", D::Charge, "reverse recovery charge of the body diode")
     .at(&["i"])
     .sane(1e-11, 1e-4)
