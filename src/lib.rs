@@ -70,3 +70,5 @@ pub mod units;
 pub mod values;
 pub mod waveform;
 pub mod worst;
+#[cfg(feature = "xlsx")]
+pub mod workbook;
