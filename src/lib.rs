@@ -81,4 +81,6 @@ pub mod tolerance;
 pub mod units;
 pub mod values;
 pub mod waveform;
+#[cfg(feature = "xlsx")]
+pub mod workbook;
 pub mod worst;

@@ -81,7 +81,6 @@ pub(crate) enum Verb {
     Energy(energy::Options),
     Reconcile(reconcile::Options),
     Rehearse(rehearse::Options),
-    Pick(pick::Options),
 }
 
 impl Verb {
@@ -100,7 +99,6 @@ impl Verb {
             Verb::Sensitivity(options) => options.run(common),
             Verb::Energy(options) => options.run(common),
             Verb::Headroom(options) => options.run(common),
-            Verb::Pick(options) => options.run(common),
             Verb::Reconcile(options) => options.run(common),
             Verb::Rehearse(options) => options.run(common),
         }

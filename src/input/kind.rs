@@ -159,7 +159,7 @@ impl PartKind {
 
 /// A sheet of any kind.
 #[derive(Clone, Debug, PartialEq)]
-pub enum AnySheet {
+pub(crate) enum AnySheet {
     /// A MOSFET.
     Mosfet(Arc<MosfetSheet>),
     /// A diode.
