@@ -5,7 +5,8 @@
 //! for the triangles, through a stage of the model.
 
 use lossbook::evidence::core::{
-    MATERIALS, Measured, at_duty, errors, material_core, measured, sines, steinmetz, steinmetz_core, triangles,
+    MATERIALS, Measured, at_duty, errors, material_core, measured, sines, steinmetz, steinmetz_core,
+    triangles,
 };
 
 type Outcome = Result<(), String>;
@@ -89,8 +90,10 @@ fn a_material_table_is_nearer_everywhere_that_matters() -> Outcome {
 fn a_material_table_passes_through_its_points() -> Outcome {
     use lossbook::parts::core::MaterialLaw;
     for material in MATERIALS {
-        let logs: Vec<[f64; 3]> =
-            sines(material).iter().map(|row| [row.frequency.ln(), row.amplitude.ln(), row.density.ln()]).collect();
+        let logs: Vec<[f64; 3]> = sines(material)
+            .iter()
+            .map(|row| [row.frequency.ln(), row.amplitude.ln(), row.density.ln()])
+            .collect();
         let law = MaterialLaw::fit(&logs, 1.0, 1.0).ok_or("no fit")?;
         let residuals: Vec<f64> = logs.iter().map(|[f, b, p]| law.sine(*f, *b).0 - p).collect();
         assert!(rms(&residuals) < 0.05, "{material}: {}", rms(&residuals));

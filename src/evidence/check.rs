@@ -118,7 +118,10 @@ impl Check {
     /// A value printed with a last digit worth `last_digit`: ours rounds to it.
     pub fn printed(outside: f64, last_digit: f64, dimension: Dimension, ours: f64) -> Self {
         let bound = Bound::Within(0.5 * last_digit / outside.abs() * (1.0 + 1e-9));
-        Check { reason: "half a unit of the last printed digit".into(), ..Self::of(outside, ours, dimension, bound) }
+        Check {
+            reason: "half a unit of the last printed digit".into(),
+            ..Self::of(outside, ours, dimension, bound)
+        }
     }
 
     /// A value that ours may differ from by a fraction of it.

@@ -203,13 +203,11 @@ pub(super) fn checks(list: &mut Vec<Check>) {
                 (_, true) => (0.01, "discontinuous currents neglect the resistances (E5)"),
                 _ => (0.003, "drops are taken at the load current"),
             };
-            list.push(
-                Check::within(outside, tolerance, dimension, ours[column]).because(reason).about(
-                    Subject::SteadyState,
-                    format!("{name}, {}", converter.words()),
-                    source,
-                ),
-            );
+            list.push(Check::within(outside, tolerance, dimension, ours[column]).because(reason).about(
+                Subject::SteadyState,
+                format!("{name}, {}", converter.words()),
+                source,
+            ));
         }
     }
     recorded(list);

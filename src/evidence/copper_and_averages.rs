@@ -15,7 +15,9 @@ pub(super) fn checks(list: &mut Vec<Check>) {
     };
     let cold = at(20.0);
     let standard = "IEC 60028: 0.00393 /K at 20 °C";
-    for (temperature, ratio, last_digit) in [(60.0, 1.1572, 1e-4), (100.0, 1.3144, 1e-4), (125.0, 1.41265, 1e-5)] {
+    for (temperature, ratio, last_digit) in
+        [(60.0, 1.1572, 1e-4), (100.0, 1.3144, 1e-4), (125.0, 1.41265, 1e-5)]
+    {
         list.push(Check::printed(ratio, last_digit, D::Number, at(temperature) / cold).about(
             Subject::Copper,
             format!("winding at {temperature} °C over 20 °C"),

@@ -41,7 +41,8 @@ pub fn measured() -> Vec<Measured> {
         let is_sine = cells.nth(1)? == "sine";
         let mut number = || cells.next()?.parse::<f64>().ok();
         let (frequency, amplitude) = (number()?, number()?);
-        let duty = if is_sine { cells.next().map(|_| None)? } else { Some(cells.next()?.parse::<f64>().ok()?) };
+        let duty =
+            if is_sine { cells.next().map(|_| None)? } else { Some(cells.next()?.parse::<f64>().ok()?) };
         let density = cells.next()?.parse::<f64>().ok()?;
         Some(Measured { material, duty, frequency, amplitude, density })
     })
@@ -60,8 +61,10 @@ pub fn triangles(material: &str) -> Vec<Measured> {
 
 /// Steinmetz k, alpha, beta through the sines of a material.
 pub fn steinmetz(material: &str) -> Option<[f64; 3]> {
-    let logs: Vec<[f64; 3]> =
-        sines(material).iter().map(|row| [row.frequency.ln(), row.amplitude.ln(), row.density.ln()]).collect();
+    let logs: Vec<[f64; 3]> = sines(material)
+        .iter()
+        .map(|row| [row.frequency.ln(), row.amplitude.ln(), row.density.ln()])
+        .collect();
     fit::plane(&logs).map(|[a, alpha, beta]| [a.exp(), alpha, beta])
 }
 
@@ -152,7 +155,8 @@ fn closed_form(list: &mut Vec<Check>) {
 }
 
 fn measurements(list: &mut Vec<Check>) {
-    let source = "measured, 25 °C, no bias, 50-500 kHz: open dataset of the PyPI package mag-net 0.1.0, MIT license";
+    let source =
+        "measured, 25 °C, no bias, 50-500 kHz: open dataset of the PyPI package mag-net 0.1.0, MIT license";
     let mut add = |what: String, check: Check| list.push(check.about(Subject::Core, what, source));
     let fits = [[7.421, 1.3771, 2.5523], [2.067, 1.4672, 2.6104]];
     for (material, fitted) in MATERIALS.into_iter().zip(fits) {
@@ -170,7 +174,8 @@ fn measurements(list: &mut Vec<Check>) {
         let all = |errors: &[f64], limit: f64| Check::of(limit, rms(errors), D::Ratio, Bound::AtMost);
         add(
             format!("{material}: rms error over {} triangles, k, alpha, beta (iGSE)", rows.len()),
-            all(&single, 0.22).because("a single exponent cannot follow the material: 20-22 % is what it gives"),
+            all(&single, 0.22)
+                .because("a single exponent cannot follow the material: 20-22 % is what it gives"),
         );
         let steep = errors(&steinmetz_core(ours), &at_duty(&rows, 0.1));
         add(

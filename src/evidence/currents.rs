@@ -101,9 +101,12 @@ pub(super) fn checks(list: &mut Vec<Check>) {
         list.push(
             Check::of(3e-8, worst, D::Number, Bound::AtMost)
                 .because("nine printed digits, and a nano-ohm in the probes")
-                .about(Subject::Currents, format!("duties, ripple, five RMS currents, {at}: worst difference"), SOURCE),
+                .about(
+                    Subject::Currents,
+                    format!("duties, ripple, five RMS currents, {at}: worst difference"),
+                    SOURCE,
+                ),
         );
         list.append(&mut details);
     }
 }
-

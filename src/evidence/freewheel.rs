@@ -48,7 +48,8 @@ pub(super) fn checks(list: &mut Vec<Check>) {
         list.push(check.about(Subject::Freewheel, what, source));
     };
 
-    let at = Example { v_in: 12.0, v_out: 5.0, load: 1.0, frequency: 500e3, switch: 0.3, v_f: 0.63, winding: 0.1 };
+    let at =
+        Example { v_in: 12.0, v_out: 5.0, load: 1.0, frequency: 500e3, switch: 0.3, v_f: 0.63, winding: 0.1 };
     let sheet = "LT1956 data sheet (Linear Technology), p. 19";
     let rig = at.rig();
     add("switch of 0.3 Ω, 12 V to 5 V, 1 A", sheet, {
@@ -67,7 +68,8 @@ pub(super) fn checks(list: &mut Vec<Check>) {
         (1.2, 1.0, 0.22, [0.03, 0.07, 0.36, 0.05], 0.005),
     ];
     for (v_out, load, r_switch, [conduction, overlap, forward, winding], half) in rows {
-        let at = Example { v_in: 8.0, v_out, load, frequency: 500e3, switch: r_switch, v_f: 0.45, winding: 0.05 };
+        let at =
+            Example { v_in: 8.0, v_out, load, frequency: 500e3, switch: r_switch, v_f: 0.45, winding: 0.05 };
         let rig = at.rig();
         // the sheet adds the forward voltage to the output alone
         let raised = Example { v_out: v_out + 0.45, ..at };
@@ -131,10 +133,19 @@ fn fits(add: &mut impl FnMut(&str, &str, Check)) {
         rig.watts(A::FreewheelDiodeConduction) / 0.5
     };
     let mean_square = (8.0 * 8.0 + 8.0 * 16.0 + 16.0 * 16.0) / 3.0;
-    add("STPS16L40CT from its points, 0.45 V at 8 A and 0.64 V at 16 A, ramp of 8-16 A", "data sheet (ST)", {
-        Check::within(0.26 * 12.0 + 0.024 * mean_square, 0.011, D::Power, mean(&[(8.0, 0.45), (16.0, 0.64)]))
+    add(
+        "STPS16L40CT from its points, 0.45 V at 8 A and 0.64 V at 16 A, ramp of 8-16 A",
+        "data sheet (ST)",
+        {
+            Check::within(
+                0.26 * 12.0 + 0.024 * mean_square,
+                0.011,
+                D::Power,
+                mean(&[(8.0, 0.45), (16.0, 0.64)]),
+            )
             .because("0.024 Ω is rounded to 2 %, and makes half of the loss")
-    });
+        },
+    );
     add("STPS10L40C, threshold and slope given as points, ramp of 8-16 A", "data sheet (ST)", {
         let ours = mean(&[(0.0, 0.33), (20.0, 0.33 + 20.0 * 0.026)]);
         Check::within(0.33 * 12.0 + 0.026 * mean_square, 1e-5, D::Power, ours)

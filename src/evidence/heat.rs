@@ -18,10 +18,7 @@ pub(super) fn checks(list: &mut Vec<Check>) {
     };
 
     // R_25 (T/298.15 K)^2.3 with a constant loss beside it
-    let rows = [
-        (3.0, 20e-3, 0.1, 50.0, 25.0, 40.081694867),
-        (5.0, 10e-3, 0.2, 40.0, 60.0, 83.056121065),
-    ];
+    let rows = [(3.0, 20e-3, 0.1, 50.0, 25.0, 40.081694867), (5.0, 10e-3, 0.2, 40.0, 60.0, 83.056121065)];
     for (load, resistance, constant, r_th, ambient, outside) in rows {
         // duty of one half, undisturbed by the drops: voltages of a million
         let mut rig = Rig::ideal(2e6, 1e6, load, 100e3);
@@ -33,10 +30,14 @@ pub(super) fn checks(list: &mut Vec<Check>) {
         rig.high_side.r_th_ja = Some(Datum::of(r_th));
         rig.controller.i_q = Datum::of(constant / 2e6);
         rig.coupling = vec![Coupling { heated: Slot::HighSide, heating: Slot::Controller, resistance: r_th }];
-        let what = format!("switch, {load} A in {} mΩ, {constant} W more, {r_th} K/W from {ambient} °C", 1e3 * resistance);
+        let what = format!(
+            "switch, {load} A in {} mΩ, {constant} W more, {r_th} K/W from {ambient} °C",
+            1e3 * resistance
+        );
         add(&what, "calc: root of T = T_a + R_th P(T), SciPy", {
-            Check::within(outside, 1e-6, D::Temperature, rig.temperature(Slot::HighSide))
-                .because("temperatures settle to a millionth of a kelvin; the duty is one half to a millionth")
+            Check::within(outside, 1e-6, D::Temperature, rig.temperature(Slot::HighSide)).because(
+                "temperatures settle to a millionth of a kelvin; the duty is one half to a millionth",
+            )
         });
     }
 
@@ -54,10 +55,14 @@ pub(super) fn checks(list: &mut Vec<Check>) {
     rig.point.load = 10.0;
     rig.inductor.dcr = Datum::of(30e-3);
     rig.inductor.r_th = Some(Datum::of(1.08 / (COPPER_AT_25 * 3.0)));
-    add("winding that cannot settle: thermal loop gain reported", "loop gain of a linear law, a R_th I² R", {
-        Check::within(1.08, 1e-4, D::Number, rig.loop_gain())
-            .because("the gain is a central difference over 2 mK and 16 squarings")
-    });
+    add(
+        "winding that cannot settle: thermal loop gain reported",
+        "loop gain of a linear law, a R_th I² R",
+        {
+            Check::within(1.08, 1e-4, D::Number, rig.loop_gain())
+                .because("the gain is a central difference over 2 mK and 16 squarings")
+        },
+    );
     add("... and no temperature", "no fixed point of a linear law with a gain above 1", {
         let refused = if rig.solve().is_err() { 1.0 } else { 0.0 };
         Check::within(1.0, 0.0, D::Number, refused).because("yes or no")
@@ -71,7 +76,8 @@ fn leakage(add: &mut impl FnMut(&str, &str, Check)) {
     let sheet = "AN869 (ST, 2004): 1/(V_R (1 - δ) c R_th)";
     // V_R 15 V for half the time, 0.055 /K, 10 K/W; 100 mA at the junction temperature that settles
     let mut rig = Rig::ideal(15.0, 7.0, 6.0, 100e3);
-    let leak_at = |i: f64, t_j: f64| LeakagePoint { v_r: Datum::of(15.0), t_j: Datum::of(t_j), i: Datum::of(i) };
+    let leak_at =
+        |i: f64, t_j: f64| LeakagePoint { v_r: Datum::of(15.0), t_j: Datum::of(t_j), i: Datum::of(i) };
     let law = |i_125: f64| vec![leak_at(i_125, 125.0), leak_at(i_125 * (-5.5f64).exp(), 25.0)];
     let forward = |v: f64| vec![ForwardCurve { t_j: Datum::of(25.0), points: points(&[(1.0, v)]) }];
     let mut sheet_of = diode(&[]);
@@ -94,7 +100,8 @@ fn leakage(add: &mut impl FnMut(&str, &str, Check)) {
     let source = "calc: root of T = T_a + R_th P(T), SciPy, with the data of AN869";
     for (ambient, outside) in rows {
         rig.point.ambient = ambient;
-        let what = format!("Schottky with 210 mA leakage at 125 °C, 3 W forward, 10.1 K/W, ambient {ambient} °C");
+        let what =
+            format!("Schottky with 210 mA leakage at 125 °C, 3 W forward, 10.1 K/W, ambient {ambient} °C");
         add(&what, source, {
             Check::printed(outside, 1e-4, D::Temperature, rig.temperature(Slot::FreewheelDiode))
         });

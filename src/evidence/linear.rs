@@ -101,7 +101,10 @@ pub(super) fn checks(list: &mut Vec<Check>) {
         "common practice",
         Check::of(
             5.0 / 12.0,
-            Example { v_in: 12.0, load: 1.0, ..base }.solve().and_then(|s| s.efficiency()).unwrap_or(f64::NAN),
+            Example { v_in: 12.0, load: 1.0, ..base }
+                .solve()
+                .and_then(|s| s.efficiency())
+                .unwrap_or(f64::NAN),
             D::Ratio,
             Bound::AtMost,
         )

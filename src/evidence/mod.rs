@@ -6,8 +6,8 @@
 
 mod check;
 pub mod converters;
-pub mod core;
 mod copper_and_averages;
+pub mod core;
 mod currents;
 mod discontinuous;
 mod freewheel;
@@ -17,8 +17,8 @@ mod question;
 pub mod recorded;
 pub mod rig;
 mod statistics;
-mod synchronous;
 pub mod switching;
+mod synchronous;
 
 pub use check::{ALL_SUBJECTS, Bound, Check, Subject};
 pub use question::{Evidence, Request, answer};

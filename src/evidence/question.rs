@@ -64,7 +64,17 @@ impl Answer for Question {
     fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
         let mut sheet = csv::Writer::from_writer(out);
         sheet.write_record([
-            "subject", "what", "source", "unit", "outside", "ours", "difference", "bound", "tolerance", "reason", "holds",
+            "subject",
+            "what",
+            "source",
+            "unit",
+            "outside",
+            "ours",
+            "difference",
+            "bound",
+            "tolerance",
+            "reason",
+            "holds",
         ])?;
         for check in &self.evidence().checks {
             let difference = check.difference().to_string();

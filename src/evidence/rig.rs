@@ -75,9 +75,7 @@ impl Rig {
     pub fn stage(&self) -> Stage {
         let rectifier = match &self.diode {
             Some(diode) => RectifierSheet::Diode { freewheel_diode: placed(diode) },
-            None => {
-                RectifierSheet::Synchronous { low_side: placed(&self.low_side), parallel_schottky: None }
-            }
+            None => RectifierSheet::Synchronous { low_side: placed(&self.low_side), parallel_schottky: None },
         };
         let circuit = Circuit::Switched(SwitchedSheet {
             high_side: placed(&self.high_side),

@@ -192,23 +192,35 @@ const WHY: &str = "edges are taken one after another; in truth they overlap";
 
 pub(super) fn checks(list: &mut Vec<Check>) {
     use super::recorded::{CELLS, FAST_CELLS};
-    population(list, CELLS, "random cells, capacitances as v^-1/2, gate loops of 5-30 Ω", [LIMIT, LIMIT_MEAN], WHY);
+    population(
+        list,
+        CELLS,
+        "random cells, capacitances as v^-1/2, gate loops of 5-30 Ω",
+        [LIMIT, LIMIT_MEAN],
+        WHY,
+    );
     let why = "fast gates charge on while the node falls, and a junction of 0.7 V stores more energy for its charge";
     let what = "random cells, junctions of 0.5-0.9 V, gate loops of 2-8 Ω, up to 0.3 nH";
     population(list, FAST_CELLS, what, [LIMIT_FAST, LIMIT_FAST_MEAN], why);
     swings(list);
 }
 
-fn population(list: &mut Vec<Check>, cells: &[(Cell, f64)], name: &str, [each, on_mean]: [f64; 2], why: &str) {
+fn population(
+    list: &mut Vec<Check>,
+    cells: &[(Cell, f64)],
+    name: &str,
+    [each, on_mean]: [f64; 2],
+    why: &str,
+) {
     let ours: Vec<f64> = cells.iter().map(|(cell, energy)| cell.model() / energy - 1.0).collect();
     let book: Vec<f64> = cells.iter().map(|(cell, energy)| cell.textbook() / energy - 1.0).collect();
     let magnitude = |values: &[f64]| mean(&values.iter().map(|value| value.abs()).collect::<Vec<_>>());
     let mut add = |what: String, outside: f64, value: f64, reason: &str| {
-        list.push(
-            Check::of(outside, value, D::Ratio, Bound::AtMost)
-                .because(reason)
-                .about(Subject::Switching, what, SOURCE),
-        );
+        list.push(Check::of(outside, value, D::Ratio, Bound::AtMost).because(reason).about(
+            Subject::Switching,
+            what,
+            SOURCE,
+        ));
     };
     let count = cells.len();
     add(format!("worst difference of {count} {name}"), each, worst(&ours), why);

@@ -25,7 +25,11 @@ pub(super) fn checks(list: &mut Vec<Check>) {
     rig.low_side.v_sd = points(&[(15.0, 0.84)]);
     rig.controller.dead_time = Some(dead_time(20e-9, 20e-9));
     let dead = rig.watts(A::LowSideDeadTime);
-    add("body diode, 0.84 V for 20 ns at both edges", ADP1872, Check::printed(151.2e-3, 1e-4, D::Power, dead));
+    add(
+        "body diode, 0.84 V for 20 ns at both edges",
+        ADP1872,
+        Check::printed(151.2e-3, 1e-4, D::Power, dead),
+    );
     rig.inductor = coil(HUGE, 3e-3);
     add("winding of 3 mΩ", ADP1872, Check::printed(0.675, 1e-3, D::Power, rig.watts(A::InductorWinding)));
     let mut half = Rig::ideal(3.6, 1.8, 15.0, 300e3);

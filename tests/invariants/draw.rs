@@ -107,7 +107,9 @@ impl Draw {
                     Draw::edit(diode, |diode| diode.q_c = None);
                 }
             }
-            RectifierSheet::Diode { freewheel_diode } => Draw::edit(freewheel_diode, |diode| diode.q_c = None),
+            RectifierSheet::Diode { freewheel_diode } => {
+                Draw::edit(freewheel_diode, |diode| diode.q_c = None)
+            }
         }
         Draw::edit(&mut self.circuit.inductor, |inductor| {
             inductor.inductance = Datum::of(1e8);
@@ -136,7 +138,8 @@ pub(crate) fn draw(numbers: &[f64]) -> Draw {
     } else {
         RectifierSheet::Diode { freewheel_diode: Placed { count: d.count(3), ..placed(&schottky(d, rated)) } }
     };
-    let inductor = Placed { count: d.count(2), ..placed(&inductor(d, [inductance, rated, v_out, frequency])) };
+    let inductor =
+        Placed { count: d.count(2), ..placed(&inductor(d, [inductance, rated, v_out, frequency])) };
     let light_load = match d.unit() {
         peak if peak < 0.3 => {
             LightLoad::PulseSkipping(SkipPeak { peak: Datum::of(ripple * d.between(0.2, 1.0)) })
@@ -229,7 +232,8 @@ fn schottky(d: &mut Dice<'_>, rated: f64) -> DiodeSheet {
         t_j: Datum::of(t_j),
         points: points(&[(0.1 * rated, low - by), (rated, high - by)]),
     };
-    let curves = if d.chance(0.6) { vec![curve(25.0, 0.0), curve(125.0, 0.08)] } else { vec![curve(25.0, 0.0)] };
+    let curves =
+        if d.chance(0.6) { vec![curve(25.0, 0.0), curve(125.0, 0.08)] } else { vec![curve(25.0, 0.0)] };
     let cold = rated * d.decades(1e-7, 1e-5);
     let leak = |t_j: f64, i: f64| LeakagePoint { v_r: Datum::of(40.0), t_j: Datum::of(t_j), i: Datum::of(i) };
     let leakage = match d.unit() {
@@ -266,7 +270,10 @@ fn inductor(d: &mut Dice<'_>, [inductance, rated, v_out, frequency]: [f64; 4]) -
         loss: Datum::of(2e-3 * v_out * rated * f.powf(1.4) * (ripple / 0.3).powf(2.3)),
     };
     InductorSheet {
-        saturation: Some(Saturation { i: Datum::of(rated * d.between(1.3, 3.0)), drop: Datum::of(d.between(0.1, 0.4)) }),
+        saturation: Some(Saturation {
+            i: Datum::of(rated * d.between(1.3, 3.0)),
+            drop: Datum::of(d.between(0.1, 0.4)),
+        }),
         r_ac: d.chance(0.5).then(|| AcResistance {
             frequency: Datum::of(frequency),
             r: Datum::of(resistance * d.between(1.0, 20.0)),

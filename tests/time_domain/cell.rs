@@ -45,7 +45,8 @@ const R_OHMIC: f64 = 2e-3;
 fn edge(cell: &Cell, current: f64, on: bool, h: f64) -> f64 {
     let c_gs = cell.q_gs2 / cell.plateau;
     let c_gd = Junction::new(cell.q_gd, cell.junction);
-    let (c_high, c_low) = (Junction::new(cell.q_high, cell.junction), Junction::new(cell.q_low, cell.junction));
+    let (c_high, c_low) =
+        (Junction::new(cell.q_high, cell.junction), Junction::new(cell.q_low, cell.junction));
     let (drive, resistance) = if on { (cell.v_drive, cell.r_on) } else { (0.0, cell.r_off) };
     let slope = |x: &[f64; 3]| {
         let [v_gs, v_ds, _] = *x;
@@ -66,7 +67,8 @@ fn edge(cell: &Cell, current: f64, on: bool, h: f64) -> f64 {
         x = step(x, h, &slope);
         x[1] = x[1].min(cell.v_in);
         // on: the drain has come down to the ohmic drop; off: the channel is empty and the rectifier conducts
-        let done = if on { x[1] < 1.001 * current * R_OHMIC + 1e-4 } else { x[0] < cell.v_th && x[1] >= cell.v_in };
+        let done =
+            if on { x[1] < 1.001 * current * R_OHMIC + 1e-4 } else { x[0] < cell.v_th && x[1] >= cell.v_in };
         if done {
             return x[2];
         }

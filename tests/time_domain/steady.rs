@@ -78,7 +78,8 @@ impl Period<'_> {
                 0 | STEPS => 1.0,
                 odd if odd % 2 == 1 => 4.0,
                 _ => 2.0,
-            } * duration / (3.0 * STEPS as f64);
+            } * duration
+                / (3.0 * STEPS as f64);
             let (i, v) = (z[0], z[1]);
             self.sums.current += weight * i;
             let (share, parallel) = divider(c);
@@ -212,8 +213,14 @@ pub(crate) fn steady(c: &Converter) -> (Steady, f64) {
         }
     }
     let (end, s) = period(c, [x[0], x[1], 1.0], x[2]);
-    assert!((end[0] - x[0]).abs() < 1e-9 * s.peak && (end[1] - x[1]).abs() < 1e-9 * c.v_out, "{c:?} does not close");
-    assert!((s.current * c.frequency / c.load.max(s.peak) - c.load / c.load.max(s.peak)).abs() < 1e-9, "mean current");
+    assert!(
+        (end[0] - x[0]).abs() < 1e-9 * s.peak && (end[1] - x[1]).abs() < 1e-9 * c.v_out,
+        "{c:?} does not close"
+    );
+    assert!(
+        (s.current * c.frequency / c.load.max(s.peak) - c.load / c.load.max(s.peak)).abs() < 1e-9,
+        "mean current"
+    );
     let f = c.frequency;
     let input_mean = s.charge_in * f;
     let steady = [
