@@ -1,5 +1,7 @@
 //! A candidate stage of a budget with everything about it that does not depend on the point.
 
+use std::sync::Arc;
+
 use crate::budget::Budget;
 use crate::findings::{self, Finding, NotModelled};
 use crate::fitted::{Kind, Stage};
@@ -10,6 +12,8 @@ use crate::ledger::{Account, SLOTS, Slot};
 use crate::model::{self, Prepared, Solved};
 use crate::ratings;
 use crate::stage::StageSheet;
+use crate::tolerance::Rig;
+use crate::worst::{Fitted, ValueSet, WorstCase};
 
 /// A stage of a budget, fitted, with its constant facts.
 #[derive(Clone, Debug)]
@@ -18,8 +22,10 @@ pub struct Candidate<'a> {
     pub budget: &'a Budget,
     /// The stage as it is meant.
     pub sheet: &'a StageSheet,
-    /// The stage with its curves.
+    /// The stage with its curves, of typical values.
     pub stage: Stage,
+    /// Its tolerances, when the budget asks for the worst values.
+    pub worst: Option<Arc<WorstCase>>,
     /// Accounts it books to.
     pub accounts: Vec<Account>,
     /// Mechanisms that lack data.
@@ -33,8 +39,18 @@ pub struct Candidate<'a> {
 }
 
 impl<'a> Candidate<'a> {
-    /// Fits a stage of a budget.
+    /// Fits a stage of a budget, with the set of values that the budget asks for.
     pub fn new(budget: &'a Budget, sheet: &'a StageSheet) -> Self {
+        Self::with(budget, sheet, budget.values)
+    }
+
+    /// The same with typical values, whatever the budget asks for: what tolerances scatter around.
+    pub fn typical(budget: &'a Budget, sheet: &'a StageSheet) -> Self {
+        Self::with(budget, sheet, ValueSet::Typical)
+    }
+
+    /// The same with a set of values.
+    pub fn with(budget: &'a Budget, sheet: &'a StageSheet, values: ValueSet) -> Self {
         let stage = Stage::fit(sheet, budget);
         let mut part_names: [Option<String>; SLOTS] = Default::default();
         for part in sheet.parts() {
@@ -54,6 +70,10 @@ impl<'a> Candidate<'a> {
             (Some(own), false) => budget.grid.with(AxisName::SwitchingFrequency, own.clone()),
             (None, false) => budget.grid.clone(),
         };
+        let worst = match values {
+            ValueSet::Typical => None,
+            ValueSet::Worst => Some(Arc::new(WorstCase::new(Rig::new(budget, sheet)))),
+        };
         Candidate {
             budget,
             accounts: findings::accounts(&stage),
@@ -61,6 +81,7 @@ impl<'a> Candidate<'a> {
             assumptions: findings::assumptions(sheet, &budget.board),
             sheet,
             stage,
+            worst,
             part_names,
             grid,
         }
@@ -101,17 +122,28 @@ impl<'a> Candidate<'a> {
             .fold(self.grid.clone(), |grid, (axis, value)| grid.with(axis, Axis::List(vec![value])))
     }
 
-    /// Evaluates the stage at a point.
-    pub fn evaluate(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
-        model::evaluate(&self.stage, point)
+    /// The fitted stage at a point: of typical values, or of those that raise the loss there.
+    pub fn fitted(&self, point: OperatingPoint) -> Fitted<'_> {
+        match &self.worst {
+            None => Fitted::Own(&self.stage),
+            Some(worst) => Fitted::Shared(worst.stage_at(point)),
+        }
     }
 
-    /// The ledger with every part held at 25 °C: what heat costs is the difference to the settled one.
+    /// Evaluates the stage at a point.
+    pub fn evaluate(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
+        model::evaluate(&self.fitted(point), point)
+    }
+
+    /// The ledger with every part and the board held at 25 °C: what heat costs is the difference to the settled one.
     pub fn evaluate_cold(&self, point: OperatingPoint) -> Result<Solved, Infeasible> {
-        match &self.stage.kind {
-            Kind::Linear(_) => self.evaluate(point),
+        let stage = self.fitted(point);
+        match &stage.kind {
+            Kind::Linear(_) => model::evaluate(&stage, point),
             Kind::Switched(switched) => {
-                let prepared = Prepared::new(switched, self.stage.output_voltage, point);
+                let mut cold = switched.clone();
+                cold.board.temperature = Some(25.0);
+                let prepared = Prepared::new(&cold, stage.output_voltage, point);
                 heat::at_temperatures(&prepared, &[25.0; crate::fitted::NODES])
             }
         }
@@ -119,22 +151,32 @@ impl<'a> Candidate<'a> {
 
     /// Thermal loop gain at a solved point (E51).
     pub fn loop_gain(&self, solved: &Solved) -> f64 {
-        match &self.stage.kind {
-            Kind::Linear(_) => 0.0,
-            Kind::Switched(switched) => {
-                let prepared = Prepared::new(switched, self.stage.output_voltage, solved.point);
-                heat::loop_gain(&prepared, &heat::nodes_of(&prepared, solved)).unwrap_or(f64::INFINITY)
-            }
-        }
+        loop_gain(&self.fitted(solved.point), solved)
     }
 
     /// Findings of a solved point, the most severe first, without the assumptions.
     pub fn findings(&self, solved: &Solved) -> Vec<Finding> {
-        ratings::check(self.sheet, &self.stage, self.budget, solved)
+        self.findings_of(&self.fitted(solved.point), solved)
+    }
+
+    /// The same for a point whose fitted stage is at hand.
+    pub fn findings_of(&self, stage: &Stage, solved: &Solved) -> Vec<Finding> {
+        ratings::check(self.sheet, stage, self.budget, solved)
     }
 
     /// Price of all parts, or `None` when one has none.
     pub fn price(&self) -> Option<f64> {
         self.sheet.parts().iter().map(|part| Some(part.price? * f64::from(part.count))).sum()
+    }
+}
+
+/// Thermal loop gain of a fitted stage at a solved point (E51).
+pub fn loop_gain(stage: &Stage, solved: &Solved) -> f64 {
+    match &stage.kind {
+        Kind::Linear(_) => 0.0,
+        Kind::Switched(switched) => {
+            let prepared = Prepared::new(switched, stage.output_voltage, solved.point);
+            heat::loop_gain(&prepared, &heat::nodes_of(&prepared, solved)).unwrap_or(f64::INFINITY)
+        }
     }
 }

@@ -98,10 +98,23 @@ pub struct Comparison<'a> {
     pub curves: Vec<Vec<Record<'a>>>,
     /// Loads at which one stage overtakes another.
     pub crossovers: Vec<Crossover>,
+    /// Which stage has the lowest loss in which band of load at the headline's other coordinates.
+    pub bands: Vec<Band>,
     /// What became of each requirement in each stage.
     pub judgements: Vec<Vec<Judgement>>,
     /// Which stage to take, and why.
     pub verdict: Verdict,
+}
+
+/// A band of load in which one stage has the lowest loss.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Band {
+    /// Place of the stage; `None` where no stage can run.
+    pub stage: Option<usize>,
+    /// Lower end, A.
+    pub from: f64,
+    /// Upper end, A.
+    pub to: f64,
 }
 
 /// Which stage has the lowest loss at the headline.
@@ -153,11 +166,23 @@ impl<'a> Comparison<'a> {
         let curve = |c: &'a Candidate<'a>| {
             loads.iter().map(|load| Record::of(c, c.headline().with(AxisName::Load, *load))).collect()
         };
-        let curves = sweep::map(candidates, |c| curve(c));
+        let curves = sweep::map(candidates, curve);
         let judgements = candidates.iter().map(|c| requirements::judge(c, watch)).collect();
         let verdict = verdict(&headline);
         let crossovers = crossovers(budget, candidates);
-        Comparison { budget, candidates, headline, cold, loads, curves, crossovers, judgements, verdict }
+        let bands = bands(budget, candidates, &crossovers);
+        Comparison {
+            budget,
+            candidates,
+            headline,
+            cold,
+            loads,
+            curves,
+            crossovers,
+            bands,
+            judgements,
+            verdict,
+        }
     }
 
     /// True when the stage named meets every requirement, or any stage does when none is named.
@@ -227,8 +252,34 @@ fn crossovers(budget: &Budget, candidates: &[Candidate<'_>]) -> Vec<Crossover> {
         .collect()
 }
 
+/// Bands of load between the crossovers at the headline's input voltage, each with the stage that leads in its middle.
+fn bands(budget: &Budget, candidates: &[Candidate<'_>], crossovers: &[Crossover]) -> Vec<Band> {
+    let Some((from, to)) = load_range(budget) else { return Vec::new() };
+    let here = crossovers.iter().filter(|c| c.input_voltage == budget.headline.input_voltage);
+    let mut ends: Vec<f64> = here.map(|crossover| crossover.load).chain([from, to]).collect();
+    ends.sort_by(f64::total_cmp);
+    let leader = |load: f64| {
+        let losses = candidates.iter().enumerate().filter_map(|(place, candidate)| {
+            let point = candidate.headline().with(AxisName::Load, load);
+            candidate.evaluate(point).ok().map(|solved| (place, solved.loss()))
+        });
+        losses.min_by(|a, b| a.1.total_cmp(&b.1)).map(|(place, _)| place)
+    };
+    let mut bands: Vec<Band> = Vec::new();
+    for pair in ends.windows(2) {
+        if let [low, high] = *pair {
+            let stage = leader((low * high).sqrt());
+            match bands.last_mut() {
+                Some(last) if last.stage == stage => last.to = high,
+                _ => bands.push(Band { stage, from: low, to: high }),
+            }
+        }
+    }
+    bands
+}
+
 /// Smallest load above zero and largest load of the grid, A.
-fn load_range(budget: &Budget) -> Option<(f64, f64)> {
+pub(crate) fn load_range(budget: &Budget) -> Option<(f64, f64)> {
     let axis = budget.grid.axis(AxisName::Load)?;
     let (from, to) = match axis {
         crate::grid::Axis::List(values) => {
@@ -255,15 +306,12 @@ fn input_voltages(budget: &Budget) -> Vec<f64> {
     voltages
 }
 
-/// Which set of data-sheet values an answer was computed with.
-pub const TYPICAL: &str = "typical";
-
 impl Serialize for Comparison<'_> {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         let mut map = serializer.serialize_map(None)?;
         map.serialize_entry("lossbook", env!("CARGO_PKG_VERSION"))?;
         map.serialize_entry("budget", &self.budget.name)?;
-        map.serialize_entry("values", TYPICAL)?;
+        map.serialize_entry("values", &self.budget.values)?;
         map.serialize_entry("headline", &Headline(&self.budget.headline))?;
         map.serialize_entry("stages", &self.headline)?;
         map.serialize_entry("crossovers", &self.crossovers)?;

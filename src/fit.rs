@@ -77,8 +77,7 @@ mod tests {
 
     #[test]
     fn points_on_a_line_are_refused() {
-        let line: Vec<[f64; 3]> =
-            (0..5).map(|i| f64::from(i)).map(|t| [12.0 + t, 3.0 - 2.0 * t, t]).collect();
+        let line: Vec<[f64; 3]> = (0..5).map(f64::from).map(|t| [12.0 + t, 3.0 - 2.0 * t, t]).collect();
         assert_eq!(plane(&line), None);
         assert_eq!(plane(&line[..2]), None);
         let two_frequencies: Vec<[f64; 3]> =

@@ -138,10 +138,14 @@ pub fn ours(vocabulary: Vocabulary, word: &str) -> &'static [&'static str] {
 
 /// The nearest of the known words, when one is near enough to be a slip of the fingers.
 pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Option<&'a str> {
-    let plain = word.to_lowercase();
+    let (plain, bare) = (word.to_lowercase(), bare(word));
     known
         .into_iter()
-        .map(|candidate| (strsim::jaro_winkler(&plain, &candidate.to_lowercase()), candidate))
+        .map(|candidate| {
+            let same = !bare.is_empty() && self::bare(candidate) == bare;
+            let closeness = strsim::jaro_winkler(&plain, &candidate.to_lowercase());
+            (if same { 1.0 } else { closeness }, candidate)
+        })
         .filter(|(closeness, _)| *closeness > 0.82)
         // the first of equals, so that the order of the known words decides
         .fold(None, |best: Option<(f64, &str)>, next| match best {
@@ -149,6 +153,11 @@ pub fn nearest<'a>(word: &str, known: impl IntoIterator<Item = &'a str>) -> Opti
             _ => Some(next),
         })
         .map(|(_, candidate)| candidate)
+}
+
+/// A word without case, dashes and underscores: `RDSon` is `r_ds_on`.
+fn bare(word: &str) -> String {
+    word.chars().filter(|c| !"_- ".contains(*c)).flat_map(char::to_lowercase).collect()
 }
 
 /// Our word or words for it, in prose: "`overlap` and `output_charge`"; else the nearest known word.
@@ -186,6 +195,9 @@ mod tests {
     fn slips_of_the_fingers_find_the_nearest_word() {
         assert_eq!(nearest("tabluate", ["compare", "tabulate"]), Some("tabulate"));
         assert_eq!(nearest("recovry", ["recovery", "ringing"]), Some("recovery"));
+        assert_eq!(nearest("RDSon", ["r_ds_on_hot", "r_ds_on"]), Some("r_ds_on"));
+        assert_eq!(nearest("rg", ["q_g", "r_g"]), Some("r_g"));
+        assert_eq!(nearest("", ["q_g", "r_g"]), None);
         assert_eq!(nearest("zebra", ["compare", "tabulate"]), None);
     }
 

@@ -3,6 +3,8 @@
 use std::fmt;
 
 use crate::ledger::Slot;
+use crate::report::number::quantity;
+use crate::units::Dimension as D;
 
 /// Why a stage cannot run at a point; the point keeps its place in the grid and carries this.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -56,33 +58,49 @@ pub const HOTTEST: f64 = 500.0;
 
 impl fmt::Display for Infeasible {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        let show = |value, dimension| quantity(value, dimension);
         match *self {
-            Infeasible::InputTooLow { v_in, v_out } => {
-                write!(f, "no duty cycle makes {v_out:.4} V from {v_in:.4} V with the drops of this stage")
-            }
+            Infeasible::InputTooLow { v_in, v_out } => write!(
+                f,
+                "no duty cycle makes {} from {} with the drops of this stage",
+                show(v_out, D::Voltage),
+                show(v_in, D::Voltage)
+            ),
             Infeasible::OnTime { on_time, least } => {
-                write!(f, "the on-time of {:.1} ns is below t_on_min, {:.1} ns", on_time * 1e9, least * 1e9)
+                write!(
+                    f,
+                    "the on-time of {} is below t_on_min, {}",
+                    show(on_time, D::Time),
+                    show(least, D::Time)
+                )
             }
             Infeasible::OffTime { off_time, least } => write!(
                 f,
-                "the off-time of {:.1} ns is below {:.1} ns (t_off_min, or both dead times)",
-                off_time * 1e9,
-                least * 1e9
+                "the off-time of {} is below {} (t_off_min, or both dead times)",
+                show(off_time, D::Time),
+                show(least, D::Time)
             ),
-            Infeasible::DriveTooLow { v_drive, peak } => {
-                write!(
-                    f,
-                    "the drive voltage cannot carry this current: {v_drive:.3} V at the gate, {peak:.3} A peak"
-                )
-            }
-            Infeasible::DropOut { headroom, needed } => {
-                write!(f, "drop-out: {headroom:.3} V between input and output, {needed:.3} V needed")
-            }
-            Infeasible::NoStableTemperature { slot, gain } => write!(
+            Infeasible::DriveTooLow { v_drive, peak } => write!(
                 f,
-                "no stable temperature below {HOTTEST:.0} °C: {} (thermal loop gain {gain:.2})",
-                slot.words()
+                "the drive voltage cannot carry this current: {} at the gate, {} peak",
+                show(v_drive, D::Voltage),
+                show(peak, D::Current)
             ),
+            Infeasible::DropOut { headroom, needed } => write!(
+                f,
+                "drop-out: {} between input and output, {} needed",
+                show(headroom, D::Voltage),
+                show(needed, D::Voltage)
+            ),
+            Infeasible::NoStableTemperature { slot, gain } => {
+                write!(f, "no stable temperature below {}: {}", show(HOTTEST, D::Temperature), slot.words())?;
+                // without feedback the part is simply overloaded; beyond 10 the number says no more
+                match gain {
+                    gain if gain < 0.01 => write!(f, " is overloaded"),
+                    gain if gain < 10.0 => write!(f, " (thermal loop gain {})", show(gain, D::Number)),
+                    _ => write!(f, " (thermal loop gain above 10)"),
+                }
+            }
         }
     }
 }

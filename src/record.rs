@@ -4,7 +4,7 @@ use serde::Serialize;
 use serde::ser::{SerializeMap, SerializeSeq, Serializer};
 
 use crate::budget::Limit;
-use crate::candidate::Candidate;
+use crate::candidate::{self, Candidate};
 use crate::compare::Comparison;
 use crate::findings::{Finding, NotModelled};
 use crate::fitted::Kind;
@@ -12,7 +12,7 @@ use crate::grid::OperatingPoint;
 use crate::infeasible::Infeasible;
 use crate::ledger::{ALL_SLOTS, Slot};
 use crate::loss::esr::{self, End};
-use crate::model::Solved;
+use crate::model::{self, Solved};
 
 /// One point of one stage: solved, or with the reason why it cannot be built.
 #[derive(Clone, Debug)]
@@ -39,9 +39,10 @@ pub struct Detail {
 impl<'a> Record<'a> {
     /// Evaluates a point with all that is reported.
     pub fn of(candidate: &'a Candidate<'a>, point: OperatingPoint) -> Self {
-        let outcome = candidate.evaluate(point).map(|solved| Detail {
-            loop_gain: candidate.loop_gain(&solved),
-            findings: candidate.findings(&solved),
+        let stage = candidate.fitted(point);
+        let outcome = model::evaluate(&stage, point).map(|solved| Detail {
+            loop_gain: candidate::loop_gain(&stage, &solved),
+            findings: candidate.findings_of(&stage, &solved),
             solved,
         });
         Record { candidate, point, outcome }
@@ -146,7 +147,8 @@ pub struct BankShare {
 /// Shares of banks that consist of several kinds (E40).
 pub fn banks(candidate: &Candidate<'_>, solved: &Solved) -> Vec<BankShare> {
     let mut list = Vec::new();
-    let (Kind::Switched(stage), Some(waveform)) = (&candidate.stage.kind, &solved.waveform) else {
+    let fitted = candidate.fitted(solved.point);
+    let (Kind::Switched(stage), Some(waveform)) = (&fitted.kind, &solved.waveform) else {
         return list;
     };
     let load = solved.point.load;

@@ -34,6 +34,7 @@ pub struct StageSheet {
 
 /// What a stage consists of.
 #[derive(Clone, Debug, PartialEq)]
+#[allow(clippy::large_enum_variant)] // a handful a budget
 pub enum Circuit {
     /// Switched, with a synchronous rectifier or a freewheel diode.
     Switched(SwitchedSheet),

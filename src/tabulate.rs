@@ -6,8 +6,8 @@ use crate::answer::Answer;
 use crate::budget::Budget;
 use crate::candidate::Candidate;
 use crate::columns::Columns;
-use crate::compare::TYPICAL;
 use crate::record::Record;
+use crate::requirements;
 use crate::sweep::{self, Watch};
 
 /// What is asked.
@@ -97,6 +97,11 @@ impl Answer for Question<'_> {
         crate::report::tables::document(self.budget, &self.candidates(), self.request)
     }
 
+    #[cfg(feature = "xlsx")]
+    fn spreadsheet(&self) -> Option<Result<Vec<u8>, String>> {
+        Some(crate::workbook::bytes(self.budget, &self.candidates()))
+    }
+
     fn json(&self, out: &mut dyn Write) -> io::Result<()> {
         let text = |text: &str| serde_json::to_string(text).map_err(io::Error::other);
         write!(
@@ -104,7 +109,7 @@ impl Answer for Question<'_> {
             "{{\"lossbook\": {}, \"budget\": {}, \"values\": {}, \"points\": [",
             text(env!("CARGO_PKG_VERSION"))?,
             text(&self.budget.name)?,
-            text(TYPICAL)?
+            text(self.budget.values.name())?
         )?;
         // each point is preceded by its separator; that of the very first one is cut off
         let mut first = Beheaded { out, left: 1 };
@@ -114,6 +119,12 @@ impl Answer for Question<'_> {
             let _ = serde_json::to_writer(bytes, record);
         })?;
         writeln!(out, "\n]}}")
+    }
+
+    fn met(&self) -> bool {
+        // judged like a comparison: the stage named, or any stage
+        self.budget.requirements.is_empty()
+            || self.candidates().iter().any(|c| requirements::all_met(&requirements::judge(c, self.watch)))
     }
 
     fn csv(&self, out: &mut dyn Write) -> io::Result<()> {

@@ -7,9 +7,10 @@ use std::sync::Arc;
 
 use crate::ledger::Slot;
 use crate::sheet::datum::Datum;
-use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
+use crate::sheet::form::{Bound, Choice, Faults, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 use crate::sheet::{BoardSheet, common::Descriptive};
 use crate::stage::{Circuit, LightLoad, Placed, RectifierSheet, StageSheet};
+use crate::units::Dimension;
 
 /// Where a value stands, as shown to a visitor.
 #[derive(Clone, Copy, Debug)]
@@ -93,7 +94,7 @@ pub struct Value {
     /// The value with its tolerance, conditions and source.
     pub datum: Datum,
     /// What it measures.
-    pub dimension: crate::units::Dimension,
+    pub dimension: Dimension,
     /// One line on what it is.
     pub about: &'static str,
     /// True when the part's tolerances move together.
@@ -130,6 +131,77 @@ pub fn set(stage: &mut StageSheet, board: &mut BoardSheet, path: &str, value: f6
         }
     });
     found
+}
+
+/// Sets values by their place in the list of [`all`].
+pub fn set_places(stage: &mut StageSheet, board: &mut BoardSheet, settings: &[(usize, f64)]) {
+    let mut here = 0;
+    walk(stage, board, &mut |_, datum| {
+        if let Some((_, value)) = settings.iter().find(|(place, _)| *place == here) {
+            datum.value = *value;
+        }
+        here += 1;
+    });
+}
+
+/// Why the values of a stage contradict one another: a threshold above its plateau and the like.
+pub fn contradiction(stage: &StageSheet) -> Option<String> {
+    let mut faults = Faults::default();
+    match &stage.circuit {
+        Circuit::Linear(regulator) => regulator.sheet.cross_check(&mut faults),
+        Circuit::Switched(switched) => {
+            switched.high_side.sheet.cross_check(&mut faults);
+            match &switched.rectifier {
+                RectifierSheet::Synchronous { low_side, parallel_schottky } => {
+                    low_side.sheet.cross_check(&mut faults);
+                    if let Some(diode) = parallel_schottky {
+                        diode.sheet.cross_check(&mut faults);
+                    }
+                }
+                RectifierSheet::Diode { freewheel_diode } => freewheel_diode.sheet.cross_check(&mut faults),
+            }
+            switched.inductor.sheet.cross_check(&mut faults);
+            for kind in switched.input_capacitors.iter().chain(&switched.output_capacitors) {
+                kind.sheet.cross_check(&mut faults);
+            }
+            switched.controller.sheet.cross_check(&mut faults);
+        }
+    }
+    faults.0.into_iter().find(|fault| !fault.warning).map(|fault| fault.reason)
+}
+
+/// Gives every resistance of the board that is left out the value 0 Ω, so that it can be moved.
+pub fn fill_board(board: &mut BoardSheet) {
+    board.keys(&mut Filler);
+}
+
+/// Fills in what is 0 when absent.
+struct Filler;
+
+impl KeyVisitor for Filler {
+    fn required(&mut self, _key: &'static Key, _slot: &mut Datum) {}
+
+    fn optional(&mut self, key: &'static Key, slot: &mut Option<Datum>) {
+        if slot.is_none() && key.dimension == Dimension::Resistance && key.bound == Bound::NonNegative {
+            *slot = Some(Datum::of(0.0));
+        }
+    }
+
+    fn inline(&mut self, _key: &'static Key, _slot: &mut Datum) {}
+
+    fn data(&mut self, _key: &'static Key, _need: Need, _slot: &mut Vec<Datum>) {}
+
+    fn flag(&mut self, _key: &'static Key, _slot: &mut Option<bool>) {}
+
+    fn text(&mut self, _key: &'static Key, _slot: &mut Option<String>) {}
+
+    fn form(&mut self, _key: &'static Key, _slot: &mut dyn Form) {}
+
+    fn optional_form(&mut self, _key: &'static Key, _slot: &mut dyn OptionalForm) {}
+
+    fn forms(&mut self, _key: &'static Key, _need: Need, _slot: &mut dyn FormList) {}
+
+    fn choice(&mut self, _key: &'static Key, _need: Need, _slot: &mut dyn Choice) {}
 }
 
 /// Shows the values of one form to `visit` with their key paths, for parts that stand in no slot yet.

@@ -6,7 +6,7 @@ use clap::Args;
 use lossbook::compare::{self, Request};
 use lossbook::sweep::Watch;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Writing};
 use super::{Exit, Failure, desk};
 
@@ -18,18 +18,22 @@ use super::{Exit, Failure, desk};
 #[command(after_help = "\
 Examples:
   lossbook compare rail.yaml
-  lossbook compare rail.yaml --stage synchronous          exit code 1 when this stage misses a requirement
+  lossbook compare rail.yaml --stage synchronous   exit code 1 when this one misses a requirement
   lossbook compare rail.yaml --format markdown -o rail.md")]
 pub(crate) struct Options {
     #[command(flatten)]
     subject: Subject,
+    #[command(flatten)]
+    values: Values,
+
     #[command(flatten)]
     writing: Writing,
 }
 
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
-        let budget = self.subject.load()?;
+        let mut budget = self.subject.load()?;
+        self.values.apply(&mut budget);
         let request = Request { stage: self.subject.stage.clone() };
         let watch = Arc::new(Watch::default());
         desk::give(&compare::answer(&budget, &request, &watch), &self.writing, common, &watch)

@@ -6,7 +6,6 @@ use std::process::ExitCode;
 
 use lossbook::files::FileFault;
 use lossbook::input::InputErrors;
-use lossbook::printable::printable;
 
 use super::terminal;
 
@@ -85,14 +84,27 @@ impl Failure {
                 // a closed pipe is no one to tell
                 let _ = error.print();
             }
-            Failure::Input(errors) => terminal::say(&errors.to_string()),
+            Failure::Input(errors) => {
+                terminal::say(&errors.render(terminal::stderr_colour()));
+                if errors.0.len() > 1 {
+                    terminal::say(&format!("\n{} errors; nothing was done", errors.0.len()));
+                }
+            }
             Failure::Asked { problem, hint } => say(problem, hint),
             Failure::Output { file, fault } => {
                 let place = match file {
-                    Some(file) => format!("`{}`", printable(&file.display().to_string())),
+                    Some(file) => format!("`{}`", terminal::shown(file)),
                     None => "standard output".into(),
                 };
-                say(&format!("{place} cannot be written: {fault}; nothing was changed"), fault.hint());
+                match fault {
+                    FileFault::NotFound => say(
+                        &format!("{place} cannot be written: its folder does not exist; nothing was changed"),
+                        "make the folder first, or name another",
+                    ),
+                    fault => {
+                        say(&format!("{place} cannot be written: {fault}; nothing was changed"), fault.hint())
+                    }
+                }
             }
         }
     }

@@ -3,15 +3,26 @@
 //! A new verb is a file with a clap `Args` struct and a `run`, a variant of [`Verb`] and an arm of [`Verb::run`].
 
 pub(crate) mod bug;
+mod check;
 mod compare;
 mod desk;
+mod energy;
 mod evidence;
 mod failure;
+mod headroom;
 pub(crate) mod interrupt;
+mod justify;
 mod load;
 mod options;
+mod pick;
 mod progress;
+mod reconcile;
+mod rehearse;
+mod report;
+mod sensitivity;
+mod spread;
 mod tabulate;
+mod template;
 pub(crate) mod terminal;
 mod words;
 
@@ -57,8 +68,19 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 #[derive(Debug, Subcommand)]
 pub(crate) enum Verb {
     Compare(compare::Options),
+    Justify(justify::Options),
+    Report(report::Options),
     Evidence(evidence::Options),
     Tabulate(tabulate::Options),
+    Pick(pick::Options),
+    Check(check::Options),
+    Template(template::Options),
+    Spread(spread::Options),
+    Sensitivity(sensitivity::Options),
+    Headroom(headroom::Options),
+    Energy(energy::Options),
+    Reconcile(reconcile::Options),
+    Rehearse(rehearse::Options),
 }
 
 impl Verb {
@@ -66,8 +88,19 @@ impl Verb {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         match self {
             Verb::Compare(options) => options.run(common),
+            Verb::Justify(options) => options.run(common),
+            Verb::Report(options) => options.run(common),
             Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Pick(options) => options.run(common),
+            Verb::Check(options) => options.run(common),
+            Verb::Template(options) => options.run(common),
+            Verb::Spread(options) => options.run(common),
+            Verb::Sensitivity(options) => options.run(common),
+            Verb::Energy(options) => options.run(common),
+            Verb::Headroom(options) => options.run(common),
+            Verb::Reconcile(options) => options.run(common),
+            Verb::Rehearse(options) => options.run(common),
         }
     }
 }

@@ -9,6 +9,7 @@ use super::Failure;
 
 /// Options of every verb.
 #[derive(Args, Debug)]
+#[command(next_help_heading = "Options of every verb")]
 pub(crate) struct Common {
     /// Colour in text: by default when standard output is a terminal and NO_COLOR is not set.
     #[arg(
@@ -43,9 +44,9 @@ impl Common {
 pub(crate) enum Colour {
     /// On a terminal, unless NO_COLOR is set.
     Auto,
-    /// Always.
+    /// Everywhere, also into files and pipes.
     Always,
-    /// Never.
+    /// Nowhere.
     Never,
 }
 
@@ -74,4 +75,11 @@ pub(crate) enum Format {
     /// Pipe tables to paste into a report, rounded.
     #[value(alias = "md")]
     Markdown,
+    /// One page for a browser, without script, rounded.
+    #[value(alias = "htm")]
+    Html,
+    /// A spreadsheet with typed numbers and a chart, full precision; goes to a file.
+    #[cfg(feature = "xlsx")]
+    #[value(alias = "spreadsheet")]
+    Xlsx,
 }

@@ -8,7 +8,7 @@ use lossbook::sweep::Watch;
 use lossbook::tabulate::{self, Load, Request, Split};
 use lossbook::units::Dimension;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Writing};
 use super::{Exit, Failure, desk};
 
@@ -39,6 +39,9 @@ pub(crate) struct Options {
     split: Option<Into>,
 
     #[command(flatten)]
+    values: Values,
+
+    #[command(flatten)]
     writing: Writing,
 }
 
@@ -53,7 +56,8 @@ enum Into {
 
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
-        let budget = self.subject.load()?;
+        let mut budget = self.subject.load()?;
+        self.values.apply(&mut budget);
         let wants_rating = |loads: &Vec<Load>| loads.iter().any(|load| matches!(load, Load::OfRated(_)));
         if budget.rated_load.is_none() && self.loads.as_ref().is_some_and(wants_rating) {
             let hint =

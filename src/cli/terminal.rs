@@ -1,6 +1,9 @@
 //! What the terminal is like, and the one way to say something beside the result.
 
 use std::io::{self, IsTerminal, Write};
+use std::path::Path;
+
+use lossbook::printable::printable;
 
 use super::options::Colour;
 
@@ -10,12 +13,6 @@ pub(crate) const PAGE: usize = 100;
 /// Columns of standard output; a page's when it is no terminal.
 pub(crate) fn width() -> usize {
     let terminal = terminal_size::terminal_size_of(io::stdout()).map(|(width, _)| usize::from(width.0));
-    terminal.filter(|columns| *columns > 0).unwrap_or(PAGE)
-}
-
-/// Columns of standard error.
-pub(crate) fn stderr_width() -> usize {
-    let terminal = terminal_size::terminal_size_of(io::stderr()).map(|(width, _)| usize::from(width.0));
     terminal.filter(|columns| *columns > 0).unwrap_or(PAGE)
 }
 
@@ -37,6 +34,11 @@ pub(crate) fn stderr_colour() -> bool {
 fn wanted() -> bool {
     let set = |name| std::env::var_os(name).is_some_and(|value| !value.is_empty());
     !set("NO_COLOR") && std::env::var_os("TERM").is_none_or(|term| term != "dumb")
+}
+
+/// A path as it may be printed.
+pub(crate) fn shown(path: &Path) -> String {
+    printable(&path.display().to_string()).into_owned()
 }
 
 /// Says something beside the result.

@@ -86,7 +86,7 @@ impl Cell {
     pub fn textbook(&self) -> f64 {
         let rig = self.rig();
         let mosfet = Mosfet::fit(&super::rig::placed(&rig.high_side), None);
-        let gate = GateLoop { v_gate: self.v_drive, r_on: self.r_on, r_off: self.r_off };
+        let gate = GateLoop { v_gate: self.v_drive, r_on: self.r_on, r_off: self.r_off, own_share: 0.0 };
         let edges = [self.i_on, self.i_off];
         let q_gd = mosfet.q_gd.charge(self.v_in);
         let durations = edge_durations(&mosfet, &gate, q_gd, edges, &mut Memory::default());

@@ -4,14 +4,16 @@ use std::collections::HashSet;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use super::budget_grid::{self, MOST_POINTS, RatedLoad, value};
+use super::budget_checks as checks;
+use super::budget_grid::{self, RatedLoad, value};
 use super::budget_keys as keys;
+use super::error::Blame;
 use super::error::InputError;
 use super::fields::Fields;
-use super::kind::{ALL_KINDS, PartKind};
+use super::kind::PartKind;
 use super::library::{self, Loaded};
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::outline::{Outline, guard};
 use super::part_file::{Attention, is_budget};
 use super::path::Trail;
@@ -20,12 +22,13 @@ use super::shelf::Shelf;
 use super::{budget_stages, budget_terms as terms, shortlist, yaml};
 use crate::budget::{Budget, InputFile};
 use crate::files;
-use crate::grid::{AxisName, Grid, OperatingPoint};
+use crate::grid::{AxisName, OperatingPoint};
+use crate::hints::Vocabulary;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 
 /// Keys at the top of a budget, in the order of the documentation.
-pub const KEYS: [&str; 17] = [
+pub(crate) const KEYS: [&str; 17] = [
     "budget",
     "about",
     "source",
@@ -46,7 +49,7 @@ pub const KEYS: [&str; 17] = [
 ];
 
 /// Reads a budget and the library it names; the budget is there when none of the faults is an error.
-pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
+pub(crate) fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
     let file = match files::read_text(path) {
         Ok(file) => file,
         Err(fault) => {
@@ -60,7 +63,7 @@ pub fn load(path: &Path) -> (Option<Budget>, Vec<InputError>) {
 }
 
 /// Reads the text of a budget that has passed the guard.
-pub fn load_text(
+pub(crate) fn load_text(
     path: &Path,
     file: &files::TextFile,
     outline: &Outline,
@@ -85,11 +88,15 @@ pub fn load_text(
 fn no_budget(path: &Path, outline: &Outline) -> InputError {
     let parts = outline.top.iter().any(|(key, _)| PartKind::from_key(key).is_some());
     let (reason, hint) = match (outline.top.is_empty(), parts) {
-        (true, _) => ("holds nothing", "a budget begins with `budget:` and its title"),
-        (_, true) => {
-            ("is a library of parts, not a budget", "name a budget; it names its parts with `parts:`")
-        }
-        _ => ("is no budget: none of its keys is known", "a budget begins with `budget:` and its title"),
+        (true, _) => ("the file holds nothing", "a budget begins with `budget:` and its title"),
+        (_, true) => (
+            "the file is a library of parts, not a budget",
+            "name a budget; it names its parts with `parts:`",
+        ),
+        _ => (
+            "the file is no budget: none of its keys is known",
+            "a budget begins with `budget:` and its title",
+        ),
     };
     InputError::of_file(path, reason, hint)
 }
@@ -171,7 +178,12 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             self.required("headline", "{input_voltage: 24 V, load: 6 A, ambient: 60 °C}", |n, t, notes| {
                 headline(n, rated, t, notes)
             });
-        let frequency = self.frequency(&stages, grid.as_ref());
+        let frequency = grid.as_ref().map_or(0.0, |grid| {
+            let named =
+                self.fields.peek("headline").is_none_or(|node| node.get("switching_frequency").is_some());
+            checks::count(&stages, grid, self.notes);
+            checks::frequency(&stages, grid, named, self.notes)
+        });
         let requirements =
             self.optional("requirements", |n, t, notes| terms::requirements(n, rated, t, notes));
         let board = self.optional("board", terms::board);
@@ -181,6 +193,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
         let shortlist = self.shortlist(&shelf, &stages);
         let derating = self.optional("derating", terms::derating).unwrap_or_default();
         let (board, coupling) = board.unwrap_or((BoardSheet::default(), Vec::new()));
+        checks::coupling(&stages, &coupling, self.notes);
         let fields = std::mem::replace(&mut self.fields, Fields::empty());
         fields.close(|| KEYS.to_vec(), self.notes);
         if self.notes.errors() > 0 {
@@ -211,6 +224,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             profile: profile.unwrap_or_default(),
             battery,
             bench,
+            values: crate::worst::ValueSet::default(),
             shortlist,
             derating,
             inputs,
@@ -266,72 +280,6 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
         }
     }
 
-    /// Every switched stage needs a frequency, the headline exactly one; and the grid must be countable.
-    fn frequency(&mut self, stages: &[StageSheet], grid: Option<&Grid>) -> f64 {
-        let Some(grid) = grid else { return 0.0 };
-        let axis = AxisName::SwitchingFrequency;
-        let own = grid.axis(axis);
-        let top = Trail::TOP;
-        let switched: Vec<&StageSheet> = stages.iter().filter(|stage| !stage.is_linear()).collect();
-        for stage in switched.iter().filter(|stage| own.is_none() && stage.switching_frequency.is_none()) {
-            let blame = Blame::new(
-                "has no switching frequency",
-                "add `switching_frequency: 400 kHz` to the grid, or to the stage",
-            );
-            self.notes.key_error(&top.key("stages").key(&stage.name), blame);
-        }
-        let takes_grid = switched.iter().any(|stage| stage.switching_frequency.is_none());
-        if own.is_some() && !stages.is_empty() && !takes_grid && self.notes.errors() == 0 {
-            let blame = Blame::new("no stage takes its frequency from the grid", "take it out");
-            self.notes.doubt(&top.key("grid").key(axis.name()), blame);
-        }
-        let several = switched.iter().filter_map(|stage| stage.switching_frequency.as_ref().or(own));
-        let several = several.filter(|values| values.len() > 1).count();
-        let named = self.headline_frequency();
-        if several > 0 && !named {
-            let blame = Blame::new(
-                "the frequency has several values, and the headline names none of them",
-                "add `switching_frequency: 400 kHz` to the headline",
-            );
-            self.notes.key_error(&top.key("headline"), blame);
-        }
-        self.count(stages, grid);
-        match own {
-            Some(values) if takes_grid => values.at(0),
-            _ => 0.0,
-        }
-    }
-
-    fn headline_frequency(&self) -> bool {
-        let headline = self.fields.peek("headline");
-        headline.is_none_or(|node| node.get(AxisName::SwitchingFrequency.name()).is_some())
-    }
-
-    fn count(&mut self, stages: &[StageSheet], grid: &Grid) {
-        let axis = AxisName::SwitchingFrequency;
-        let points = stages.iter().map(|stage| {
-            let grid = match (&stage.switching_frequency, stage.is_linear()) {
-                (_, true) => grid.without(axis),
-                (Some(own), _) => grid.with(axis, own.clone()),
-                (None, _) => grid.clone(),
-            };
-            grid.len()
-        });
-        let points = points.fold(0, u64::saturating_add).max(grid.without(axis).len());
-        if points > MOST_POINTS {
-            let sizes: Vec<String> =
-                grid.axes.iter().map(|(name, values)| format!("{} {}", name.name(), values.len())).collect();
-            let blame = Blame::new(
-                format!(
-                    "the stages have {points} points in all, more than {MOST_POINTS} ({})",
-                    sizes.join(", ")
-                ),
-                "take fewer points on an axis",
-            );
-            self.notes.key_error(&Trail::TOP.key("grid"), blame);
-        }
-    }
-
     fn shortlist(&mut self, shelf: &Shelf<'_>, stages: &[StageSheet]) -> Option<crate::budget::Shortlist> {
         let names: Vec<&str> = match self.fields.peek("stages") {
             Some(Node::Map(entries)) => entries.iter().map(|(name, _)| &**name).collect(),
@@ -364,7 +312,7 @@ fn headline(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes)
         }
     }
     let point = budget_grid::point(&mut fields, rated, notes);
-    fields.close(|| crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
+    fields.close_with(Some(Vocabulary::Axis), || crate::grid::ALL_AXES.map(AxisName::name).to_vec(), notes);
     Some(OperatingPoint {
         input_voltage: point.input_voltage?,
         load: point.load?,
@@ -391,9 +339,4 @@ impl Loaded {
             |fault: &InputError| fault.severity == super::error::Severity::Error && fault.part.is_empty();
         !self.inputs.is_empty() && !faults.iter().any(unread)
     }
-}
-
-/// True for a key at the top of a library file; used for telling the two sorts of file apart.
-pub fn is_part_kind(key: &str) -> bool {
-    ALL_KINDS.iter().any(|kind| kind.key() == key)
 }

@@ -2,24 +2,26 @@
 
 use super::budget_keys::of_axis;
 use super::datum;
+use super::error::Blame;
 use super::fields::Fields;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::quantity::{self, Expected};
 use super::show::engineering;
 use crate::grid::{ALL_AXES, Axis, AxisName, Grid, PartialPoint};
+use crate::hints::{Vocabulary, hint, nearest};
 use crate::sheet::Datum;
 use crate::sheet::form::Key;
 use crate::units::Dimension;
 
 /// Largest number of points of a budget, over all stages.
-pub const MOST_POINTS: u64 = 1_000_000_000;
+pub(crate) const MOST_POINTS: u64 = 1_000_000_000;
 
 /// What loads in percent refer to.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub enum RatedLoad {
+pub(crate) enum RatedLoad {
     /// A, as stated.
     Stated(f64),
     /// Not stated: a load in percent is an error.
@@ -29,14 +31,14 @@ pub enum RatedLoad {
 }
 
 /// One plain quantity of a budget.
-pub fn value(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
+pub(crate) fn value(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
     let value = datum::bounded(node, key, trail, notes)?;
     datum::doubt_magnitude(&Datum::of(value), key, trail, node, notes);
     Some(value)
 }
 
 /// A coordinate on an axis; a load may be a percentage of the rated load.
-pub fn coordinate(
+pub(crate) fn coordinate(
     (axis, rated): (AxisName, RatedLoad),
     node: &Node,
     trail: &Trail<'_>,
@@ -60,7 +62,7 @@ pub fn coordinate(
 }
 
 /// Values of an axis: one value, a list, or `{from, to, points, spacing}`.
-pub fn axis(
+pub(crate) fn axis(
     (name, rated): (AxisName, RatedLoad),
     node: &Node,
     trail: &Trail<'_>,
@@ -146,7 +148,7 @@ fn spacing(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<bool> {
 }
 
 /// A whole number in a range.
-pub fn whole(
+pub(crate) fn whole(
     node: &Node,
     range: std::ops::RangeInclusive<u64>,
     trail: &Trail<'_>,
@@ -166,7 +168,7 @@ pub fn whole(
 }
 
 /// The coordinates that a mapping names.
-pub fn point(fields: &mut Fields<'_, '_>, rated: RatedLoad, notes: &mut Notes) -> PartialPoint {
+pub(crate) fn point(fields: &mut Fields<'_, '_>, rated: RatedLoad, notes: &mut Notes) -> PartialPoint {
     let mut point = PartialPoint::default();
     for axis in ALL_AXES {
         let Some(node) = fields.take(axis.name()) else { continue };
@@ -178,7 +180,7 @@ pub fn point(fields: &mut Fields<'_, '_>, rated: RatedLoad, notes: &mut Notes) -
 }
 
 /// The grid, in the order written.
-pub fn grid(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Option<Grid> {
+pub(crate) fn grid(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Option<Grid> {
     let like = "`{input_voltage: 24 V, load: [1 A, 6 A], ambient: 25 °C, switching_frequency: 400 kHz}`";
     let mut fields = Fields::open(node, trail, like, notes)?;
     let before = notes.errors();
@@ -197,19 +199,24 @@ pub fn grid(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes)
             fields.require(axis.name(), of_axis(axis).example, notes);
         }
     }
-    fields.close(|| ALL_AXES.map(AxisName::name).to_vec(), notes);
+    fields.close_with(Some(Vocabulary::Axis), || ALL_AXES.map(AxisName::name).to_vec(), notes);
     (notes.errors() == before).then_some(Grid { axes })
 }
 
 /// The word of a value that must be one of a few.
-pub fn word<'w>(node: &Node, words: &[&'w str], trail: &Trail<'_>, notes: &mut Notes) -> Option<&'w str> {
+pub(crate) fn word<'w>(
+    node: &Node,
+    (words, vocabulary): (&[&'w str], Option<Vocabulary>),
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Option<&'w str> {
     let given = node.scalar().unwrap_or_default();
     let found = words.iter().copied().find(|word| *word == given);
     if found.is_none() {
-        let hint = match nearest(&given, words.iter().copied()) {
-            Some(near) => format!("did you mean `{near}`?"),
-            None => format!("write one of {}", listed(words.iter().copied())),
-        };
+        let known = || words.iter().copied();
+        let ours = vocabulary.and_then(|vocabulary| hint(vocabulary, &given, known()));
+        let near = ours.or_else(|| nearest(&given, known()).map(|near| format!("did you mean `{near}`?")));
+        let hint = near.unwrap_or_else(|| format!("write one of {}", listed(known())));
         notes.value_error(trail, node, Blame::new("is not known here", hint));
     }
     found

@@ -1,17 +1,19 @@
 //! The candidate stages of a budget: which part sits in which slot.
 
 use super::budget_grid::{self, RatedLoad, word};
-use super::error::printable;
+use super::error::Blame;
 use super::fields::Fields;
 use super::kind::PartKind;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_fields;
 use super::shelf::Shelf;
 use crate::budget::PartsOf;
 use crate::grid::{Axis, AxisName};
+use crate::hints::Vocabulary;
 use crate::ledger::{ALL_SLOTS, Slot};
+use crate::printable::printable;
 use crate::sheet::CapacitorSheet;
 use crate::sheet::form::{Form, Key, KeyVisitor, Need};
 use crate::stage::{Circuit, LightLoad, Placed, RectifierSheet, StageSheet, SwitchedSheet};
@@ -24,7 +26,7 @@ const LIGHT_LOAD: Key = Key::new("light_load", Dimension::Number, "what happens 
     .example("forced_continuous");
 
 /// Slots that a rectifier has, in the order of the ledger; the board belongs to none.
-pub fn slots(rectifier: &str) -> &'static [Slot] {
+pub(crate) fn slots(rectifier: &str) -> &'static [Slot] {
     match rectifier {
         "synchronous" => &[
             Slot::HighSide,
@@ -48,7 +50,7 @@ pub fn slots(rectifier: &str) -> &'static [Slot] {
 }
 
 /// Reads all stages.
-pub fn read(node: &Node, shelf: &Shelf<'_>, trail: &Trail<'_>, notes: &mut Notes) -> Vec<StageSheet> {
+pub(crate) fn read(node: &Node, shelf: &Shelf<'_>, trail: &Trail<'_>, notes: &mut Notes) -> Vec<StageSheet> {
     let like = "a stage's name and, below it, `rectifier: synchronous` and its parts";
     // opened only for its complaint about anything but a mapping
     if Fields::open(node, trail, like, notes).is_none() {
@@ -89,7 +91,12 @@ impl StageReader<'_, '_, '_> {
             );
             return None;
         };
-        let rectifier = word(node, &RECTIFIERS, &self.fields.trail.key("rectifier"), self.notes)?;
+        let rectifier = word(
+            node,
+            (&RECTIFIERS, Some(Vocabulary::Rectifier)),
+            &self.fields.trail.key("rectifier"),
+            self.notes,
+        )?;
         let circuit = match rectifier {
             "linear" => self.linear(),
             _ => self.switched(rectifier == "synchronous"),
@@ -101,7 +108,7 @@ impl StageReader<'_, '_, '_> {
             let switched = if rectifier == "linear" { &own[..1] } else { &own[..] };
             switched.iter().copied().chain(slots(rectifier).iter().map(|slot| slot.name())).collect()
         };
-        self.fields.close(known, self.notes);
+        self.fields.close_with(Some(Vocabulary::Slot), known, self.notes);
         Some(StageSheet { name: name.to_string(), circuit: circuit?, switching_frequency: frequency? })
     }
 
@@ -129,6 +136,16 @@ impl StageReader<'_, '_, '_> {
                 );
                 self.notes.at_value(&self.fields.trail.key("controller"), blame);
             }
+        }
+        if let (Some(LightLoad::PulseSkipping(_)), Some(controller)) = (&light_load, &controller)
+            && controller.sheet.i_q_sleep.is_none()
+        {
+            let reason = format!(
+                "{} gives no i_q_sleep: i_q is assumed between pulses too",
+                printable(&controller.name)
+            );
+            let blame = Blame::new(reason, "add `i_q_sleep` to the controller when it sleeps between pulses");
+            self.notes.doubt(&self.fields.trail.key("light_load"), blame);
         }
         Some(Circuit::Switched(SwitchedSheet {
             high_side: high_side?,
@@ -251,5 +268,5 @@ impl StageReader<'_, '_, '_> {
 }
 
 fn slot_list(slots: &[Slot]) -> String {
-    super::nearest::listed(slots.iter().map(|slot| slot.name()))
+    super::listed::listed(slots.iter().map(|slot| slot.name()))
 }

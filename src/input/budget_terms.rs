@@ -2,18 +2,22 @@
 
 use super::budget_grid::{RatedLoad, point, value};
 use super::budget_keys as keys;
+use super::error::Blame;
 use super::fields::Fields;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_fields;
 use super::sample::key_names;
+use crate::bench::Accuracy;
 use crate::budget::{BenchAccuracy, Coupling, Derating, Limit, ProfilePoint, Requirement};
 use crate::grid::{ALL_AXES, AxisName};
+use crate::hints::{Vocabulary, nearest};
 use crate::ledger::{ALL_SLOTS, Slot};
 use crate::sheet::BoardSheet;
 use crate::sheet::form::Key;
+use crate::units::Dimension as D;
 
 /// Items of a list, each with its trail; a single mapping counts as a list of one.
 fn each<'n>(
@@ -40,7 +44,12 @@ fn each<'n>(
 }
 
 /// What the rail must do.
-pub fn requirements(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Vec<Requirement> {
+pub(crate) fn requirements(
+    node: &Node,
+    rated: RatedLoad,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Vec<Requirement> {
     let mut all = Vec::new();
     each(node, trail, notes, |item, trail, notes| all.extend(requirement(item, rated, trail, notes)));
     all
@@ -71,7 +80,11 @@ fn requirement(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
     }
     let at = point(&mut fields, rated, notes);
     let names = LIMITS.map(|(key, _)| key.name);
-    fields.close(|| names.into_iter().chain(ALL_AXES.map(AxisName::name)).collect(), notes);
+    fields.close_with(
+        Some(Vocabulary::Axis),
+        || names.into_iter().chain(ALL_AXES.map(AxisName::name)).collect(),
+        notes,
+    );
     if given != 1 {
         let blame = match given {
             0 => Blame::new("sets no limit", format!("add one of {}", listed(names))),
@@ -83,7 +96,12 @@ fn requirement(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
 }
 
 /// Time shares of operating points.
-pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Notes) -> Vec<ProfilePoint> {
+pub(crate) fn profile(
+    node: &Node,
+    rated: RatedLoad,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Vec<ProfilePoint> {
     let before = notes.errors();
     let mut all = Vec::new();
     each(node, trail, notes, |item, trail, notes| {
@@ -92,7 +110,11 @@ pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
             .require("share", keys::SHARE.example, notes)
             .and_then(|node| value(node, &keys::SHARE, &trail.key("share"), notes));
         let at = point(&mut fields, rated, notes);
-        fields.close(|| ["share"].into_iter().chain(ALL_AXES.map(AxisName::name)).collect(), notes);
+        fields.close_with(
+            Some(Vocabulary::Axis),
+            || ["share"].into_iter().chain(ALL_AXES.map(AxisName::name)).collect(),
+            notes,
+        );
         all.extend(share.map(|share| ProfilePoint { share, at }));
     });
     let sum: f64 = all.iter().map(|point| point.share).sum();
@@ -106,7 +128,7 @@ pub fn profile(node: &Node, rated: RatedLoad, trail: &Trail<'_>, notes: &mut Not
 }
 
 /// Energy of the battery, J.
-pub fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
+pub(crate) fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
     let mut fields = Fields::open(node, trail, "`battery: {energy: 50 Wh}`", notes)?;
     let energy = fields
         .require("energy", keys::BATTERY_ENERGY.example, notes)
@@ -116,7 +138,7 @@ pub fn battery(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64>
 }
 
 /// Accuracies of the bench's instruments.
-pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchAccuracy> {
+pub(crate) fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchAccuracy> {
     const KEYS: [Key; 4] = [
         keys::accuracy("input_voltage"),
         keys::accuracy("input_current"),
@@ -127,7 +149,7 @@ pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchA
     let mut fields = Fields::open(node, trail, like, notes)?;
     let read = KEYS.each_ref().map(|key| {
         let node = fields.require(key.name, key.example, notes)?;
-        value(node, key, &trail.key(key.name), notes)
+        accuracy(node, key, &trail.key(key.name), notes)
     });
     fields.close(|| KEYS.map(|key| key.name).to_vec(), notes);
     let [input_voltage, input_current, output_voltage, output_current] = read;
@@ -139,21 +161,39 @@ pub fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option<BenchA
     })
 }
 
+/// Accuracy of one instrument: of reading, or of reading and of range with its full scale.
+fn accuracy(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<Accuracy> {
+    if !matches!(node, Node::Map(_)) {
+        let of_reading = value(node, key, trail, notes)?;
+        return Some(Accuracy { of_reading, of_range: 0.0 });
+    }
+    let dimension = if key.name.ends_with("voltage") { D::Voltage } else { D::Current };
+    let full_scale = Key::new("full_scale", dimension, "full scale of the range");
+    let like = "`{reading: 0.1 %, range: 0.05 %, full_scale: 40 V}`";
+    let mut fields = Fields::open(node, trail, like, notes)?;
+    let mut read = |key: &Key, notes: &mut Notes| {
+        let node = fields.require(key.name, key.example, notes)?;
+        value(node, key, &trail.key(key.name), notes)
+    };
+    let reading = read(&keys::accuracy("reading"), notes);
+    let range = read(&keys::accuracy("range"), notes);
+    let full_scale = read(&full_scale, notes);
+    fields.close(|| vec!["reading", "range", "full_scale"], notes);
+    Some(Accuracy { of_reading: reading?, of_range: range? * full_scale? })
+}
+
 /// Margins to ratings.
-pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
+pub(crate) fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
     const RATIOS: [Key; 4] = [
         keys::derated("voltage"),
         keys::derated("gate_voltage"),
         keys::derated("saturation"),
         keys::derated("ripple_current"),
     ];
-    const MARGIN: Key = Key::new(
-        "junction_margin",
-        crate::units::Dimension::TemperatureDifference,
-        "distance to a junction rating",
-    )
-    .zero()
-    .example("25 K");
+    const MARGIN: Key =
+        Key::new("junction_margin", D::TemperatureDifference, "distance to a junction rating")
+            .zero()
+            .example("25 K");
     let mut derating = Derating::default();
     let like = "`{voltage: 80 %, junction_margin: 25 K}`";
     let Some(mut fields) = Fields::open(node, trail, like, notes) else { return derating };
@@ -184,7 +224,7 @@ pub fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
 }
 
 /// Copper, sense, snubber and heat from slot to slot.
-pub fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
+pub(crate) fn board(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> (BoardSheet, Vec<Coupling>) {
     let (mut sheet, mut coupling) = (BoardSheet::default(), Vec::new());
     let Some(mut fields) = Fields::open(node, trail, "`{high_side_path: 0.5 mΩ, input_path: 2 mΩ}`", notes)
     else {

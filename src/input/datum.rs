@@ -1,8 +1,9 @@
 //! One number of a data sheet: `6.8 mΩ`, or a mapping of `min`, `typ`, `max` with conditions and a source.
 
+use super::error::Blame;
 use super::fields::Fields;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::quantity::{self, Expected};
 use super::show::engineering;
@@ -11,15 +12,15 @@ use crate::sheet::form::{Bound, Key};
 use crate::units::Dimension;
 
 /// Absolute zero, °C (exact by definition of the scale, SI Brochure 9th ed., 2.3.1).
-pub const ABSOLUTE_ZERO: f64 = -273.15;
+pub(crate) const ABSOLUTE_ZERO: f64 = -273.15;
 
 /// Keys of a quantity's own mapping.
-pub fn known_keys() -> Vec<&'static str> {
+pub(crate) fn known_keys() -> Vec<&'static str> {
     ["typ", "min", "max", "sigma", "source"].into_iter().chain(CONDITIONS.map(|(key, _)| key)).collect()
 }
 
 /// Reads the value of a key; faults are noted.
-pub fn read(node: &Node, key: &'static Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<Datum> {
+pub(crate) fn read(node: &Node, key: &'static Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<Datum> {
     if !matches!(node, Node::Map(_)) {
         let value = bounded(node, key, trail, notes)?;
         let datum = Datum::of(value);
@@ -37,13 +38,19 @@ pub fn read(node: &Node, key: &'static Key, trail: &Trail<'_>, notes: &mut Notes
 }
 
 /// Reads `min`, `typ`, `max`, conditions and source out of a mapping that may have other keys too.
-pub fn from_fields(fields: &mut Fields<'_, '_>, key: &'static Key, notes: &mut Notes) -> Option<Datum> {
+pub(crate) fn from_fields(
+    fields: &mut Fields<'_, '_>,
+    key: &'static Key,
+    notes: &mut Notes,
+) -> Option<Datum> {
     let before = notes.errors();
     let mut limit = |name: &'static str| {
         let node = fields.take(name)?;
         bounded(node, key, &fields.trail.key(name), notes)
     };
     let mut datum = Datum { min: limit("min"), typ: limit("typ"), max: limit("max"), ..Datum::default() };
+    // a large library has a million of these: no room for more than there are
+    datum.conditions.reserve_exact(CONDITIONS.iter().filter(|(name, _)| fields.has(name)).count());
     for (name, dimension) in CONDITIONS {
         let Some(node) = fields.take(name) else { continue };
         match quantity::read(node, Expected::of(dimension)) {
@@ -89,7 +96,7 @@ pub fn from_fields(fields: &mut Fields<'_, '_>, key: &'static Key, notes: &mut N
 }
 
 /// An example of a key's value as it would stand in a file.
-pub fn example(key: &Key) -> String {
+pub(crate) fn example(key: &Key) -> String {
     if !key.example.is_empty() {
         return key.example.to_string();
     }
@@ -106,7 +113,7 @@ pub fn example(key: &Key) -> String {
 }
 
 /// A quantity within the bounds of its key.
-pub fn bounded(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
+pub(crate) fn bounded(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<f64> {
     let expected = Expected::like(key.dimension, key.example);
     let value = match quantity::read(node, expected) {
         Ok(value) => value,
@@ -178,7 +185,7 @@ fn deviation(node: &Node, typical: f64, key: &Key, trail: &Trail<'_>, notes: &mu
 }
 
 /// A warning when the magnitude is hardly meant.
-pub fn doubt_magnitude(datum: &Datum, key: &Key, trail: &Trail<'_>, node: &Node, notes: &mut Notes) {
+pub(crate) fn doubt_magnitude(datum: &Datum, key: &Key, trail: &Trail<'_>, node: &Node, notes: &mut Notes) {
     let (low, high) = key.sane;
     // a value that stands right on a limit is not worth a word, whatever its last bit
     let slack = 1e-9 * datum.value.abs();

@@ -5,6 +5,8 @@ use std::path::{Path, PathBuf};
 
 use thiserror::Error;
 
+use crate::printable::printable;
+
 /// How bad it is.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Severity {
@@ -101,8 +103,9 @@ impl InputError {
 
     /// File, line and column as compilers print them.
     pub fn place(&self) -> String {
-        let file = printable(&self.file.display().to_string());
-        if self.line == 0 { file } else { format!("{file}:{}:{}", self.line, self.column) }
+        let file = self.file.display().to_string();
+        let file = printable(&file);
+        if self.line == 0 { file.into_owned() } else { format!("{file}:{}:{}", self.line, self.column) }
     }
 
     fn one_line(&self) -> String {
@@ -112,6 +115,22 @@ impl InputError {
         };
         let hint = if self.hint.is_empty() { String::new() } else { format!("; {}", printable(&self.hint)) };
         format!("{}: {}{}{value}{hint}", self.place(), self.subject(), printable(&self.reason))
+    }
+}
+
+/// Reason and way out of a fault.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Blame {
+    /// What is wrong.
+    pub reason: String,
+    /// The way out.
+    pub hint: String,
+}
+
+impl Blame {
+    /// Both texts.
+    pub fn new(reason: impl Into<String>, hint: impl Into<String>) -> Self {
+        Blame { reason: reason.into(), hint: hint.into() }
     }
 }
 
@@ -135,22 +154,6 @@ impl From<InputError> for InputErrors {
     fn from(error: InputError) -> Self {
         InputErrors(vec![error])
     }
-}
-
-/// Text with control characters and direction marks shown as escapes, so that a name cannot paint the terminal.
-pub fn printable(text: &str) -> String {
-    if !text.chars().any(is_unprintable) {
-        return text.to_string();
-    }
-    text.chars()
-        .map(|c| if is_unprintable(c) { c.escape_default().to_string() } else { c.to_string() })
-        .collect()
-}
-
-/// Control characters, line separators and marks that turn the direction of writing.
-pub(crate) fn is_unprintable(c: char) -> bool {
-    c.is_control()
-        || matches!(c, '\u{200B}'..='\u{200F}' | '\u{2028}'..='\u{202E}' | '\u{2066}'..='\u{2069}' | '\u{FEFF}')
 }
 
 /// At most sixty characters of a value.

@@ -1,22 +1,24 @@
 //! The keys of one mapping: taken one by one, and whatever nobody took is an unknown key.
 
-use super::nearest::{listed, nearest};
+use super::error::Blame;
+use super::listed::listed;
 use super::node::{Entries, Node};
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
+use crate::hints::{Vocabulary, nearest, ours};
 
 /// A mapping that is being read.
 #[derive(Debug)]
-pub struct Fields<'n, 't> {
+pub(crate) struct Fields<'n, 't> {
     entries: &'n Entries,
     taken: Vec<bool>,
     /// Where the mapping stands.
-    pub trail: &'t Trail<'t>,
+    pub(crate) trail: &'t Trail<'t>,
 }
 
 impl<'n, 't> Fields<'n, 't> {
     /// Opens a mapping; notes a fault and gives `None` when it is none, or empty. `like` shows what it should be.
-    pub fn open(node: &'n Node, trail: &'t Trail<'t>, like: &str, notes: &mut Notes) -> Option<Self> {
+    pub(crate) fn open(node: &'n Node, trail: &'t Trail<'t>, like: &str, notes: &mut Notes) -> Option<Self> {
         match node {
             Node::Map(entries) if !entries.is_empty() => {
                 Some(Fields { entries, taken: vec![false; entries.len()], trail })
@@ -38,14 +40,14 @@ impl<'n, 't> Fields<'n, 't> {
     }
 
     /// The value of a key, which counts as known from now on.
-    pub fn take(&mut self, name: &str) -> Option<&'n Node> {
+    pub(crate) fn take(&mut self, name: &str) -> Option<&'n Node> {
         let place = self.entries.iter().position(|(key, _)| &**key == name)?;
         self.taken[place] = true;
         Some(&self.entries[place].1)
     }
 
     /// The value of a key that must be there; notes a fault when it is not.
-    pub fn require(&mut self, name: &str, example: &str, notes: &mut Notes) -> Option<&'n Node> {
+    pub(crate) fn require(&mut self, name: &str, example: &str, notes: &mut Notes) -> Option<&'n Node> {
         let found = self.take(name);
         if found.is_none() {
             self.missing(name, &format!("add `{name}: {example}`"), notes);
@@ -54,41 +56,58 @@ impl<'n, 't> Fields<'n, 't> {
     }
 
     /// Notes that a key is missing.
-    pub fn missing(&self, name: &str, hint: &str, notes: &mut Notes) {
-        notes.key_error(self.trail, Blame::new(format!("`{name}` is missing"), hint));
+    pub(crate) fn missing(&self, name: &str, hint: &str, notes: &mut Notes) {
+        notes.missing(self.trail, name, hint);
     }
 
     /// A mapping without keys.
-    pub fn empty() -> Self {
+    pub(crate) fn empty() -> Self {
         const NONE: &Entries = &Vec::new();
         Fields { entries: NONE, taken: Vec::new(), trail: &Trail::TOP }
     }
 
     /// The value of a key without counting it as known.
-    pub fn peek(&self, name: &str) -> Option<&'n Node> {
+    pub(crate) fn peek(&self, name: &str) -> Option<&'n Node> {
         self.entries.iter().find(|(key, _)| &**key == name).map(|(_, node)| node)
     }
 
     /// True when the mapping has a key; it does not count as known for that.
-    pub fn has(&self, name: &str) -> bool {
+    pub(crate) fn has(&self, name: &str) -> bool {
         self.entries.iter().any(|(key, _)| &**key == name)
     }
 
     /// Keys that nobody took.
-    pub fn untaken(&self) -> impl Iterator<Item = (&'n str, &'n Node)> + '_ {
+    pub(crate) fn untaken(&self) -> impl Iterator<Item = (&'n str, &'n Node)> + '_ {
         let entries = self.entries.iter().zip(&self.taken);
         entries.filter(|(_, taken)| !**taken).map(|((key, node), _)| (&**key, node))
     }
 
     /// Notes every key that nobody took, with the nearest of the known ones.
-    pub fn close<'k>(self, known: impl FnOnce() -> Vec<&'k str>, notes: &mut Notes) {
+    pub(crate) fn close<'k>(self, known: impl FnOnce() -> Vec<&'k str>, notes: &mut Notes) {
+        self.close_with(None, known, notes);
+    }
+
+    /// Like [`Fields::close`], where a key may also be a word that others use for one of ours.
+    pub(crate) fn close_with<'k>(
+        self,
+        vocabulary: Option<Vocabulary>,
+        known: impl FnOnce() -> Vec<&'k str>,
+        notes: &mut Notes,
+    ) {
         if self.taken.iter().all(|taken| *taken) {
             return;
         }
         let known = known();
         for (key, node) in self.untaken() {
             let decimal = *node == Node::Null && key.starts_with(|c: char| c.is_ascii_digit());
-            let hint = match nearest(key, known.iter().copied()) {
+            let ours = vocabulary.map_or(&[][..], |vocabulary| ours(vocabulary, key));
+            let ours = ours.iter().find(|word| known.contains(word)).copied();
+            let near = ours.or_else(|| nearest(key, known.iter().copied()));
+            if let Some(near) = near.filter(|near| !self.has(near)) {
+                notes.forget_missing(self.trail, near);
+            }
+            let hint = match near {
+                Some(near) if ours.is_some() && !self.has(near) => format!("it is called `{near}` here"),
                 _ if decimal => "decimals take a point, not a comma".to_string(),
                 Some(near) if self.has(near) => format!("`{near}` is there already; take this one out"),
                 Some(near) => format!("did you mean `{near}`?"),

@@ -7,7 +7,7 @@ use crate::sheet::datum::{CONDITIONS, Condition, Datum};
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 
 /// Takes `source` and the conditions that a form does not know itself, and hands them to its quantities.
-pub fn hand_down(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut Notes) {
+pub(crate) fn hand_down(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut Notes) {
     let mut heirs = Heirs { source: None, conditions: Vec::new() };
     let untaken: Vec<_> = fields.untaken().collect();
     for (name, node) in untaken {

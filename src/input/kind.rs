@@ -7,6 +7,7 @@ use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_checked;
 use crate::budget::Library;
+use crate::gaps::Gaps;
 use crate::ledger::Slot;
 use crate::sheet::form::{Faults, Form};
 use crate::sheet::{
@@ -15,7 +16,7 @@ use crate::sheet::{
 
 /// A kind of part.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
-pub enum PartKind {
+pub(crate) enum PartKind {
     /// `mosfets`
     Mosfet,
     /// `diodes`
@@ -31,7 +32,7 @@ pub enum PartKind {
 }
 
 /// All kinds in the order of the documentation.
-pub const ALL_KINDS: [PartKind; 6] = [
+pub(crate) const ALL_KINDS: [PartKind; 6] = [
     PartKind::Mosfet,
     PartKind::Diode,
     PartKind::Inductor,
@@ -42,7 +43,7 @@ pub const ALL_KINDS: [PartKind; 6] = [
 
 impl PartKind {
     /// Key at the top of a library file.
-    pub const fn key(self) -> &'static str {
+    pub(crate) const fn key(self) -> &'static str {
         match self {
             PartKind::Mosfet => "mosfets",
             PartKind::Diode => "diodes",
@@ -54,7 +55,7 @@ impl PartKind {
     }
 
     /// In prose: "a MOSFET".
-    pub const fn words(self) -> &'static str {
+    pub(crate) const fn words(self) -> &'static str {
         match self {
             PartKind::Mosfet => "a MOSFET",
             PartKind::Diode => "a diode",
@@ -65,13 +66,25 @@ impl PartKind {
         }
     }
 
+    /// In prose, several: "MOSFETs".
+    pub(crate) const fn plural(self) -> &'static str {
+        match self {
+            PartKind::Mosfet => "MOSFETs",
+            PartKind::Diode => "diodes",
+            PartKind::Inductor => "inductors",
+            PartKind::Capacitor => "capacitors",
+            PartKind::Controller => "controllers",
+            PartKind::LinearRegulator => "linear regulators",
+        }
+    }
+
     /// The kind of a key.
-    pub fn from_key(key: &str) -> Option<PartKind> {
+    pub(crate) fn from_key(key: &str) -> Option<PartKind> {
         ALL_KINDS.into_iter().find(|kind| kind.key() == key)
     }
 
     /// The kind that fits a slot; `None` for the board.
-    pub const fn of_slot(slot: Slot) -> Option<PartKind> {
+    pub(crate) const fn of_slot(slot: Slot) -> Option<PartKind> {
         match slot {
             Slot::HighSide | Slot::LowSide => Some(PartKind::Mosfet),
             Slot::ParallelSchottky | Slot::FreewheelDiode => Some(PartKind::Diode),
@@ -84,7 +97,7 @@ impl PartKind {
     }
 
     /// Reads a part of this kind.
-    pub fn read(self, node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> AnySheet {
+    pub(crate) fn read(self, node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> AnySheet {
         fn read<T: Form + Default>(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Arc<T> {
             let mut sheet = T::default();
             read_checked(&mut sheet, node, trail, notes);
@@ -101,7 +114,7 @@ impl PartKind {
     }
 
     /// An empty sheet of this kind, for asking its keys.
-    pub fn empty_form(self) -> Box<dyn Form> {
+    pub(crate) fn empty_form(self) -> Box<dyn Form> {
         match self {
             PartKind::Mosfet => Box::<MosfetSheet>::default(),
             PartKind::Diode => Box::<DiodeSheet>::default(),
@@ -113,7 +126,7 @@ impl PartKind {
     }
 
     /// Names of the library's parts of this kind, in its order.
-    pub fn names(self, library: &Library) -> Vec<&Arc<str>> {
+    pub(crate) fn names(self, library: &Library) -> Vec<&Arc<str>> {
         match self {
             PartKind::Mosfet => library.mosfets.iter().map(|(name, _)| name).collect(),
             PartKind::Diode => library.diodes.iter().map(|(name, _)| name).collect(),
@@ -125,7 +138,7 @@ impl PartKind {
     }
 
     /// The part of a name with the name as the library keeps it.
-    pub fn find(self, library: &Library, name: &str) -> Option<(Arc<str>, AnySheet)> {
+    pub(crate) fn find(self, library: &Library, name: &str) -> Option<(Arc<str>, AnySheet)> {
         fn wrap<T>(found: (Arc<str>, Arc<T>), make: fn(Arc<T>) -> AnySheet) -> (Arc<str>, AnySheet) {
             (found.0, make(found.1))
         }
@@ -146,7 +159,7 @@ impl PartKind {
 
 /// A sheet of any kind.
 #[derive(Clone, Debug, PartialEq)]
-pub enum AnySheet {
+pub(crate) enum AnySheet {
     /// A MOSFET.
     Mosfet(Arc<MosfetSheet>),
     /// A diode.
@@ -163,7 +176,7 @@ pub enum AnySheet {
 
 impl AnySheet {
     /// Adds the part to a library; false when its name is taken.
-    pub fn add_to(self, library: &mut Library, name: Arc<str>) -> bool {
+    pub(crate) fn add_to(self, library: &mut Library, name: Arc<str>) -> bool {
         match self {
             AnySheet::Mosfet(sheet) => library.mosfets.add(name, sheet),
             AnySheet::Diode(sheet) => library.diodes.add(name, sheet),
@@ -175,7 +188,7 @@ impl AnySheet {
     }
 
     /// A copy of the form, for visitors.
-    pub fn form(&self) -> Box<dyn Form> {
+    pub(crate) fn form(&self) -> Box<dyn Form> {
         match self {
             AnySheet::Mosfet(sheet) => Box::new(MosfetSheet::clone(sheet)),
             AnySheet::Diode(sheet) => Box::new(DiodeSheet::clone(sheet)),
@@ -187,14 +200,17 @@ impl AnySheet {
     }
 
     /// What the model assumes or leaves out because the sheet does not say it.
-    pub fn gaps(&self, gaps: &mut Faults) {
-        match self {
-            AnySheet::Mosfet(sheet) => super::gaps::mosfet(sheet, gaps),
-            AnySheet::Diode(sheet) => super::gaps::diode(sheet, gaps),
-            AnySheet::Inductor(sheet) => super::gaps::inductor(sheet, gaps),
-            AnySheet::Capacitor(sheet) => super::gaps::capacitor(sheet, gaps),
-            AnySheet::Controller(sheet) => super::gaps::controller(sheet, gaps),
-            AnySheet::LinearRegulator(sheet) => super::gaps::linear_regulator(sheet, gaps),
+    pub(crate) fn gaps(&self, faults: &mut Faults) {
+        let gaps = match self {
+            AnySheet::Mosfet(sheet) => sheet.gaps(),
+            AnySheet::Diode(sheet) => sheet.gaps(),
+            AnySheet::Inductor(sheet) => sheet.gaps(),
+            AnySheet::Capacitor(sheet) => sheet.gaps(),
+            AnySheet::Controller(sheet) => sheet.gaps(),
+            AnySheet::LinearRegulator(sheet) => sheet.gaps(),
+        };
+        for gap in gaps {
+            faults.warn(gap.key, gap.text, gap.hint);
         }
     }
 }

@@ -4,31 +4,33 @@ use std::collections::{HashMap, HashSet};
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use super::error::{InputError, OtherPlace, Severity, printable};
+use super::error::Blame;
+use super::error::{InputError, OtherPlace, Severity};
 use super::kind::PartKind;
-use super::notes::{Blame, MOST, Notes};
+use super::notes::{MOST, Notes};
 use super::part_file::{self, Attention, PartFile, ReadPart};
 use super::path::Trail;
 use super::place::{Source, resolve};
 use super::{outline, parallel};
 use crate::budget::{InputFile, Library};
 use crate::files;
+use crate::printable::printable;
 
 /// A library and how reading it went.
 #[derive(Debug, Default)]
-pub struct Loaded {
+pub(crate) struct Loaded {
     /// All sound parts.
-    pub library: Library,
+    pub(crate) library: Library,
     /// Names of parts that have errors; they exist all the same.
-    pub broken: HashSet<(PartKind, Arc<str>)>,
+    pub(crate) broken: HashSet<(PartKind, Arc<str>)>,
     /// Files read.
-    pub inputs: Vec<InputFile>,
+    pub(crate) inputs: Vec<InputFile>,
     /// Errors and warnings.
-    pub faults: Vec<InputError>,
+    pub(crate) faults: Vec<InputError>,
 }
 
 /// Reads folders of parts, or single files.
-pub fn load(paths: &[PathBuf], attention: &Attention) -> Loaded {
+pub(crate) fn load(paths: &[PathBuf], attention: &Attention) -> Loaded {
     let mut loaded = Loaded::default();
     let files = list(paths, &mut loaded.faults);
     let read = parallel::map(&files, |file| part_file::read(file, attention));
@@ -57,9 +59,9 @@ pub fn load(paths: &[PathBuf], attention: &Attention) -> Loaded {
     for ((kind, name), first, second) in doubled.into_iter().take(MOST) {
         loaded.faults.extend(doubled_part(kind, &name, &files[first], &files[second]));
     }
-    if origin.is_empty() && loaded.faults.is_empty() {
-        let path = paths.first().map_or(Path::new("."), PathBuf::as_path);
-        loaded.faults.push(InputError::of_file(path, "holds no parts", "add parts to its files"));
+    let nobody_complained = loaded.faults.iter().all(|fault| fault.severity == Severity::Warning);
+    if let Some(path) = paths.first().filter(|_| origin.is_empty() && nobody_complained) {
+        loaded.faults.push(InputError::of_file(path, "there are no parts", "add parts to its files"));
     }
     loaded
 }
@@ -72,7 +74,7 @@ fn list(paths: &[PathBuf], faults: &mut Vec<InputError>) -> Vec<PathBuf> {
             match files::list_yaml(path) {
                 Ok(found) if found.is_empty() => {
                     let hint = "put *.yaml files with parts into it, or name another folder";
-                    faults.push(InputError::of_file(path, "holds no *.yaml files", hint));
+                    faults.push(InputError::of_file(path, "the folder holds no *.yaml files", hint));
                     continue;
                 }
                 Ok(found) => found,
@@ -121,18 +123,18 @@ fn locate(file: &Path, kind: PartKind, name: &str, blame: Blame) -> Option<Input
 }
 
 /// Splits faults into errors and warnings, each cut to what anybody would read.
-pub fn split(faults: Vec<InputError>) -> (Vec<InputError>, Vec<InputError>) {
+pub(crate) fn split(faults: Vec<InputError>) -> (Vec<InputError>, Vec<InputError>) {
     let (errors, warnings): (Vec<_>, Vec<_>) =
         faults.into_iter().partition(|fault| fault.severity == Severity::Error);
     (cut(errors, Severity::Error), cut(warnings, Severity::Warning))
 }
 
 fn cut(mut faults: Vec<InputError>, severity: Severity) -> Vec<InputError> {
-    let more = faults.len().saturating_sub(MOST);
+    let more = faults.len() > MOST;
     faults.truncate(MOST);
-    if let Some(last) = faults.last().filter(|_| more > 0) {
-        let reason = format!("and {more} more of the kind");
-        faults.push(InputError { severity, ..InputError::of_file(&last.file, reason, "") });
+    if let Some(last) = faults.last().filter(|_| more) {
+        let rest = InputError::of_file(&last.file, "there are more of the kind", "mend these first");
+        faults.push(InputError { severity, ..rest });
     }
     faults
 }

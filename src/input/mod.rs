@@ -1,38 +1,52 @@
 //! Files in, validated types out.
-pub mod budget;
-pub mod budget_grid;
-pub mod budget_keys;
-pub mod budget_stages;
-pub mod budget_terms;
-pub mod datum;
+//!
+//! A text is guarded first (`outline`: nesting, doubled keys, aliases), then read (`yaml`) into nodes, then into forms
+//! (`reader`) or sections of a budget. Nobody stops at the first fault: each is noted by its key path (`notes`), and
+//! only when there are notes are their lines looked up (`place`) and drawn ([`render`]).
+
+pub mod at;
+pub mod bench;
+mod budget;
+mod budget_checks;
+mod budget_grid;
+mod budget_keys;
+mod budget_stages;
+mod budget_terms;
+pub mod check;
+mod datum;
 pub mod error;
-pub mod fields;
-pub mod gaps;
-pub mod inherit;
-pub mod kind;
-pub mod library;
-pub mod nearest;
-pub mod node;
-pub mod notes;
-pub mod outline;
-pub mod parallel;
-pub mod part_file;
-pub mod path;
-pub mod place;
-pub mod probe;
+mod fields;
+mod inherit;
+mod keys;
+pub(crate) mod kind;
+mod library;
+mod listed;
+mod node;
+mod notes;
+mod outline;
+mod parallel;
+mod part_file;
+mod path;
+mod place;
+mod probe;
 pub mod quantity;
-pub mod reader;
-pub mod sample;
-pub mod shelf;
-pub mod shortlist;
-pub mod show;
-pub mod units;
-pub mod yaml;
+mod reader;
+pub mod render;
+mod sample;
+mod shelf;
+mod shortlist;
+mod show;
+mod stretches;
+pub mod template;
+mod units;
+mod yaml;
 
 use std::path::{Path, PathBuf};
 
 use crate::budget::{Budget, InputFile, Library};
+pub use check::{Checked, check_path};
 pub use error::{InputError, InputErrors, Severity, Warning};
+pub use template::{TEMPLATES, template};
 
 /// A library with its warnings and the files it was read from.
 pub type LoadedLibrary = (Library, Vec<Warning>, Vec<InputFile>);
@@ -61,39 +75,4 @@ pub fn load_budget(path: &Path) -> Result<(Budget, Vec<Warning>), InputErrors> {
 }
 
 #[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn example_library_loads() {
-        let root = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("parts");
-        match load_library(&[root]) {
-            Ok((library, warnings, inputs)) => {
-                println!("{} {} {}", library.mosfets.len(), inputs.len(), warnings.len());
-                for warning in warnings {
-                    println!("{warning}");
-                }
-            }
-            Err(errors) => panic!("{errors}"),
-        }
-    }
-
-    #[test]
-    fn example_budgets_load() {
-        let root = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("budgets");
-        for path in crate::files::list_yaml(&root).expect("examples") {
-            match load_budget(&path) {
-                Ok((budget, warnings)) => {
-                    println!(
-                        "{} {} {} {:?}",
-                        budget.name,
-                        budget.grid.len(),
-                        warnings.len(),
-                        budget.headline
-                    );
-                }
-                Err(errors) => panic!("{errors}"),
-            }
-        }
-    }
-}
+mod tests;

@@ -2,7 +2,7 @@
 
 /// A value of a file. Keys keep their order; no key stands twice.
 #[derive(Clone, Debug, PartialEq)]
-pub enum Node {
+pub(crate) enum Node {
     /// Nothing, `~` or `null`.
     Null,
     /// true or false.
@@ -20,11 +20,11 @@ pub enum Node {
 }
 
 /// Keys and values of a mapping in the order written.
-pub type Entries = Vec<(Box<str>, Node)>;
+pub(crate) type Entries = Vec<(Box<str>, Node)>;
 
 impl Node {
     /// The value of a key of a mapping.
-    pub fn get(&self, name: &str) -> Option<&Node> {
+    pub(crate) fn get(&self, name: &str) -> Option<&Node> {
         match self {
             Node::Map(entries) => entries.iter().find(|(key, _)| &**key == name).map(|(_, value)| value),
             _ => None,
@@ -32,7 +32,7 @@ impl Node {
     }
 
     /// What it is, for messages: "a list".
-    pub fn words(&self) -> &'static str {
+    pub(crate) fn words(&self) -> &'static str {
         match self {
             Node::Null => "nothing",
             Node::Bool(_) => "true or false",
@@ -44,7 +44,7 @@ impl Node {
     }
 
     /// Text of a single value, as it would be written; `None` for lists and mappings.
-    pub fn scalar(&self) -> Option<String> {
+    pub(crate) fn scalar(&self) -> Option<String> {
         match self {
             Node::Null => Some(String::new()),
             Node::Bool(flag) => Some(flag.to_string()),

@@ -1,13 +1,13 @@
 //! Faults as the readers find them: by key path. Their lines and columns are looked up afterwards ([`super::place`]).
 
-use super::error::Severity;
+use super::error::{Blame, Severity};
 use super::node::Node;
 use super::path::{KeyPath, Trail};
 use crate::sheet::form::{Fault, Faults, Form};
 
 /// What to mark in the file.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Mark {
+pub(crate) enum Mark {
     /// The key, or the first line of a list's item.
     Key,
     /// The value, when it stands on one line; else its key.
@@ -16,77 +16,76 @@ pub enum Mark {
 
 /// A fault without its line.
 #[derive(Clone, Debug, PartialEq)]
-pub struct Note {
+pub(crate) struct Note {
     /// Error or warning.
-    pub severity: Severity,
+    pub(crate) severity: Severity,
     /// Where.
-    pub path: KeyPath,
+    pub(crate) path: KeyPath,
     /// What to mark there.
-    pub mark: Mark,
+    pub(crate) mark: Mark,
     /// Single value as written.
-    pub value: Option<String>,
+    pub(crate) value: Option<String>,
     /// What is wrong.
-    pub reason: String,
+    pub(crate) reason: String,
     /// The way out.
-    pub hint: String,
+    pub(crate) hint: String,
 }
 
 /// Most notes of one severity that are kept; a file that is wrong all over need not be listed in full.
-pub const MOST: usize = 1000;
+pub(crate) const MOST: usize = 1000;
+
+/// The same for each stretch of a large file.
+pub(crate) const MOST_OF_STRETCH: usize = 100;
 
 /// Collects faults; nobody stops at the first.
-#[derive(Debug, Default)]
-pub struct Notes {
+#[derive(Debug)]
+pub(crate) struct Notes {
     /// Kept notes in the order found.
-    pub list: Vec<Note>,
+    pub(crate) list: Vec<Note>,
+    most: usize,
     errors: usize,
     warnings: usize,
 }
 
-/// Reason and way out of a fault.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Blame {
-    /// What is wrong.
-    pub reason: String,
-    /// The way out.
-    pub hint: String,
-}
-
-impl Blame {
-    /// Both texts.
-    pub fn new(reason: impl Into<String>, hint: impl Into<String>) -> Self {
-        Blame { reason: reason.into(), hint: hint.into() }
+impl Default for Notes {
+    fn default() -> Self {
+        Notes::at_most(MOST)
     }
 }
 
 impl Notes {
+    /// Keeps so many errors and so many warnings at most.
+    pub(crate) fn at_most(most: usize) -> Self {
+        Notes { list: Vec::new(), most, errors: 0, warnings: 0 }
+    }
+
     /// An error about a key: missing, unknown, in the wrong place.
-    pub fn key_error(&mut self, trail: &Trail<'_>, blame: Blame) {
+    pub(crate) fn key_error(&mut self, trail: &Trail<'_>, blame: Blame) {
         self.add(Severity::Error, trail.path(), Mark::Key, None, blame);
     }
 
     /// An error about a value.
-    pub fn value_error(&mut self, trail: &Trail<'_>, node: &Node, blame: Blame) {
+    pub(crate) fn value_error(&mut self, trail: &Trail<'_>, node: &Node, blame: Blame) {
         self.add(Severity::Error, trail.path(), Mark::Value, node.scalar(), blame);
     }
 
     /// A doubt about a value.
-    pub fn value_warning(&mut self, trail: &Trail<'_>, node: &Node, blame: Blame) {
+    pub(crate) fn value_warning(&mut self, trail: &Trail<'_>, node: &Node, blame: Blame) {
         self.add(Severity::Warning, trail.path(), Mark::Value, node.scalar(), blame);
     }
 
     /// An error that marks a value without repeating it.
-    pub fn at_value(&mut self, trail: &Trail<'_>, blame: Blame) {
+    pub(crate) fn at_value(&mut self, trail: &Trail<'_>, blame: Blame) {
         self.add(Severity::Error, trail.path(), Mark::Value, None, blame);
     }
 
     /// A doubt that marks a value without repeating it.
-    pub fn doubt(&mut self, trail: &Trail<'_>, blame: Blame) {
+    pub(crate) fn doubt(&mut self, trail: &Trail<'_>, blame: Blame) {
         self.add(Severity::Warning, trail.path(), Mark::Value, None, blame);
     }
 
     /// Whatever a form says against itself.
-    pub fn add_faults(&mut self, form: &dyn Form, trail: &Trail<'_>) {
+    pub(crate) fn add_faults(&mut self, form: &dyn Form, trail: &Trail<'_>) {
         let mut faults = Faults::default();
         form.cross_check(&mut faults);
         for Fault { path, reason, hint, warning } in faults.0 {
@@ -96,14 +95,14 @@ impl Notes {
     }
 
     /// What a part leaves open, as warnings.
-    pub fn add_gaps(&mut self, gaps: Faults, trail: &Trail<'_>) {
+    pub(crate) fn add_gaps(&mut self, gaps: Faults, trail: &Trail<'_>) {
         for Fault { path, reason, hint, .. } in gaps.0 {
             self.add(Severity::Warning, trail.path().with(&path), Mark::Key, None, Blame { reason, hint });
         }
     }
 
     /// Drops the warnings among the notes from a place on.
-    pub fn forget_warnings(&mut self, from: usize) {
+    pub(crate) fn forget_warnings(&mut self, from: usize) {
         let mut place = 0;
         self.list.retain(|note| {
             place += 1;
@@ -111,8 +110,21 @@ impl Notes {
         });
     }
 
+    /// Notes that a key is missing from the mapping at a trail.
+    pub(crate) fn missing(&mut self, trail: &Trail<'_>, name: &str, hint: impl Into<String>) {
+        self.key_error(trail, Blame::new(missing(name), hint));
+    }
+
+    /// Takes a complaint about a missing key back: it is there, misspelt.
+    pub(crate) fn forget_missing(&mut self, trail: &Trail<'_>, name: &str) {
+        let (path, reason) = (trail.path(), missing(name));
+        let kept = self.list.len();
+        self.list.retain(|note| note.path != path || note.reason != reason);
+        self.errors -= kept - self.list.len();
+    }
+
     /// Number of errors so far.
-    pub fn errors(&self) -> usize {
+    pub(crate) fn errors(&self) -> usize {
         self.errors
     }
 
@@ -129,8 +141,12 @@ impl Notes {
             Severity::Warning => &mut self.warnings,
         };
         *count += 1;
-        if *count <= MOST {
+        if *count <= self.most {
             self.list.push(Note { severity, path, mark, value, reason, hint });
         }
     }
+}
+
+fn missing(name: &str) -> String {
+    format!("`{name}` is missing")
 }

@@ -3,6 +3,6 @@
 use rayon::prelude::*;
 
 /// Maps every item, on all cores, into the same order.
-pub fn map<T: Sync, R: Send>(items: &[T], work: impl Fn(&T) -> R + Sync + Send) -> Vec<R> {
+pub(crate) fn map<T: Sync, R: Send>(items: &[T], work: impl Fn(&T) -> R + Sync + Send) -> Vec<R> {
     items.par_iter().map(work).collect()
 }

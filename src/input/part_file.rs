@@ -4,22 +4,26 @@ use std::collections::HashSet;
 use std::path::Path;
 use std::sync::Arc;
 
-use super::error::{InputError, printable};
+use super::error::Blame;
+use super::error::InputError;
 use super::kind::{ALL_KINDS, AnySheet, PartKind};
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
-use super::outline::{Outline, Stretch, guard};
+use super::notes::{MOST_OF_STRETCH, Notes};
+use super::outline::{Outline, guard};
 use super::path::Trail;
 use super::place::{Source, resolve};
+use super::stretches::Stretch;
 use super::{parallel, yaml};
 use crate::budget::InputFile;
 use crate::files;
+use crate::hints::nearest;
+use crate::printable::printable;
 use crate::sheet::form::Faults;
 
 /// Whose gaps are worth a warning.
 #[derive(Clone, Debug)]
-pub enum Attention {
+pub(crate) enum Attention {
     /// Every part's.
     Everyone,
     /// Those of the parts named.
@@ -37,36 +41,36 @@ impl Attention {
 
 /// A part as read.
 #[derive(Debug)]
-pub struct ReadPart {
+pub(crate) struct ReadPart {
     /// Its kind.
-    pub kind: PartKind,
+    pub(crate) kind: PartKind,
     /// Its name.
-    pub name: Arc<str>,
+    pub(crate) name: Arc<str>,
     /// Its sheet; `None` when it has errors.
-    pub sheet: Option<AnySheet>,
+    pub(crate) sheet: Option<AnySheet>,
 }
 
 /// A file as read.
 #[derive(Debug, Default)]
-pub struct PartFile {
+pub(crate) struct PartFile {
     /// The file with its hash; `None` when it could not be read.
-    pub input: Option<InputFile>,
+    pub(crate) input: Option<InputFile>,
     /// Its parts.
-    pub parts: Vec<ReadPart>,
+    pub(crate) parts: Vec<ReadPart>,
     /// Errors and warnings with their places.
-    pub faults: Vec<InputError>,
+    pub(crate) faults: Vec<InputError>,
 }
 
 /// Keys that only a budget has.
 const BUDGET_KEYS: [&str; 4] = ["budget", "stages", "output_voltage", "headline"];
 
 /// True when the keys at the top of a file are those of a budget.
-pub fn is_budget(outline: &Outline) -> bool {
+pub(crate) fn is_budget(outline: &Outline) -> bool {
     outline.top.iter().any(|(key, _)| BUDGET_KEYS.contains(&&**key))
 }
 
 /// Reads a library file.
-pub fn read(path: &Path, attention: &Attention) -> PartFile {
+pub(crate) fn read(path: &Path, attention: &Attention) -> PartFile {
     let file = match files::read_text(path) {
         Ok(file) => file,
         Err(fault) => {
@@ -82,7 +86,7 @@ pub fn read(path: &Path, attention: &Attention) -> PartFile {
 }
 
 /// Reads the text of a library file that has passed the guard.
-pub fn read_text(path: &Path, text: &str, outline: &Outline, attention: &Attention) -> PartFile {
+pub(crate) fn read_text(path: &Path, text: &str, outline: &Outline, attention: &Attention) -> PartFile {
     let mut file = PartFile { faults: top_faults(path, text, outline), ..PartFile::default() };
     let known: Vec<&Stretch> = outline
         .stretches
@@ -102,11 +106,11 @@ fn top_faults(path: &Path, text: &str, outline: &Outline) -> Vec<InputError> {
     let kinds = || ALL_KINDS.iter().map(|kind| kind.key());
     if outline.top.is_empty() {
         let hint = format!("a library file has one of the keys {} at its top", listed(kinds()));
-        return vec![InputError::of_file(path, "holds no parts", hint)];
+        return vec![InputError::of_file(path, "the file holds no parts", hint)];
     }
     if is_budget(outline) {
         let hint = "name it on the command line; `parts:` names folders of parts only";
-        return vec![InputError::of_file(path, "is a budget, not a library of parts", hint)];
+        return vec![InputError::of_file(path, "the file is a budget, not a library of parts", hint)];
     }
     let mut notes = Notes::default();
     for (key, _) in outline.top.iter().filter(|(key, _)| PartKind::from_key(key).is_none()) {
@@ -128,7 +132,7 @@ fn read_stretch(path: &Path, text: &str, stretch: &Stretch, attention: &Attentio
         Ok(node) => node,
         Err(fault) => return PartFile { faults: vec![source.yaml_fault(&fault)], ..PartFile::default() },
     };
-    let (mut notes, mut parts) = (Notes::default(), Vec::new());
+    let (mut notes, mut parts) = (Notes::at_most(MOST_OF_STRETCH), Vec::new());
     match (&stretch.kind, &node) {
         (Some(kind), node) => read_kind(kind, node, attention, (&mut parts, &mut notes)),
         (None, Node::Map(kinds)) => {

@@ -4,7 +4,7 @@ use std::fmt;
 
 /// One step from a mapping or list to what is inside it.
 #[derive(Clone, Debug, PartialEq, Eq, Hash)]
-pub enum Step {
+pub(crate) enum Step {
     /// Into the value of a key.
     Key(Box<str>),
     /// Into an item of a list, from 0.
@@ -13,12 +13,12 @@ pub enum Step {
 
 /// Steps from the top of a file: `mosfets.demo-n40-6m8.r_ds_on[0].typ`.
 #[derive(Clone, Debug, Default, PartialEq, Eq, Hash)]
-pub struct KeyPath(pub Vec<Step>);
+pub(crate) struct KeyPath(pub Vec<Step>);
 
 impl KeyPath {
     /// The path extended by one inside a form: `core.material[2].density`. Form keys contain no dots or brackets.
     #[must_use]
-    pub fn with(mut self, inside: &str) -> Self {
+    pub(crate) fn with(mut self, inside: &str) -> Self {
         for part in inside.split('.').filter(|part| !part.is_empty()) {
             let (name, items) = part.split_once('[').unwrap_or((part, ""));
             if !name.is_empty() {
@@ -30,13 +30,8 @@ impl KeyPath {
         self
     }
 
-    /// Name of the first step that is a key.
-    pub fn first(&self) -> Option<&str> {
-        self.key(0)
-    }
-
     /// Name of the step at a place, when it is a key.
-    pub fn key(&self, place: usize) -> Option<&str> {
+    pub(crate) fn key(&self, place: usize) -> Option<&str> {
         match self.0.get(place) {
             Some(Step::Key(name)) => Some(name),
             _ => None,
@@ -45,7 +40,7 @@ impl KeyPath {
 }
 
 /// Writes steps as they would be typed.
-pub fn write_steps(f: &mut impl fmt::Write, steps: &[Step]) -> fmt::Result {
+pub(crate) fn write_steps(f: &mut impl fmt::Write, steps: &[Step]) -> fmt::Result {
     for (place, step) in steps.iter().enumerate() {
         match step {
             Step::Key(name) if place == 0 => write!(f, "{name}")?,
@@ -64,7 +59,7 @@ impl fmt::Display for KeyPath {
 
 /// A key path under construction: a chain of steps on the stack, free until somebody needs it.
 #[derive(Clone, Copy, Debug)]
-pub struct Trail<'a> {
+pub(crate) struct Trail<'a> {
     parent: Option<&'a Trail<'a>>,
     step: TrailStep<'a>,
 }
@@ -78,20 +73,28 @@ enum TrailStep<'a> {
 
 impl<'a> Trail<'a> {
     /// Top of a file.
-    pub const TOP: Trail<'static> = Trail { parent: None, step: TrailStep::Top };
+    pub(crate) const TOP: Trail<'static> = Trail { parent: None, step: TrailStep::Top };
 
     /// Into the value of a key.
-    pub fn key(&'a self, name: &'a str) -> Trail<'a> {
+    pub(crate) fn key(&'a self, name: &'a str) -> Trail<'a> {
         Trail { parent: Some(self), step: TrailStep::Key(name) }
     }
 
     /// Into an item of a list.
-    pub fn item(&'a self, index: usize) -> Trail<'a> {
+    pub(crate) fn item(&'a self, index: usize) -> Trail<'a> {
         Trail { parent: Some(self), step: TrailStep::Item(index) }
     }
 
+    /// The key whose value this leads to; `None` for an item of a list.
+    pub(crate) fn last_key(&self) -> Option<&'a str> {
+        match self.step {
+            TrailStep::Key(name) => Some(name),
+            _ => None,
+        }
+    }
+
     /// The path to keep.
-    pub fn path(&self) -> KeyPath {
+    pub(crate) fn path(&self) -> KeyPath {
         let mut steps = Vec::new();
         let mut here = Some(self);
         while let Some(trail) = here {

@@ -4,62 +4,70 @@ use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, Span};
 
-use super::error::{Excerpt, InputError, is_unprintable};
+use super::error::{Excerpt, InputError};
 use super::notes::{Mark, Note};
 use super::path::{KeyPath, Step, write_steps};
 use super::yaml::YamlFault;
+use crate::printable::is_unprintable;
 
 /// A stretch of a file that holds whole values.
 #[derive(Clone, Copy, Debug)]
-pub struct Source<'a> {
+pub(crate) struct Source<'a> {
     /// The file, for messages.
-    pub file: &'a Path,
+    pub(crate) file: &'a Path,
     /// The text of the stretch.
-    pub text: &'a str,
+    pub(crate) text: &'a str,
     /// Line of the file on which it begins, from 1.
-    pub first_line: usize,
+    pub(crate) first_line: usize,
     /// Steps of a key path that lead to the stretch and are not repeated in it.
-    pub above: usize,
+    pub(crate) above: usize,
     /// True when the first two steps of a path are a kind of part and a part.
-    pub library: bool,
+    pub(crate) library: bool,
 }
 
 impl Source<'_> {
     /// What the second parser says of a text that the first one let pass.
-    pub fn yaml_fault(&self, fault: &YamlFault) -> InputError {
+    pub(crate) fn yaml_fault(&self, fault: &YamlFault) -> InputError {
         let spot = Spot { line: fault.line, start: fault.column.saturating_sub(1), end: fault.column };
         let line = fault.line.checked_sub(1).and_then(|place| self.text.split('\n').nth(place));
-        let hint = "check the indentation and the quotes near this place";
+        let hint = match fault.line {
+            0 => "write each part on lines of its own below its kind, or split the file",
+            _ => "check the indentation and the quotes near this place",
+        };
+        let reason = match fault.line {
+            0 => format!("cannot be read: {}", fault.reason),
+            _ => format!("this is no YAML: {}", fault.reason),
+        };
         InputError {
             line: if fault.line == 0 { 0 } else { fault.line + self.first_line - 1 },
             column: fault.column,
             excerpt: line.map(|line| excerpt(line, spot)),
-            ..InputError::of_file(self.file, format!("this is no YAML: {}", fault.reason), hint)
+            ..InputError::of_file(self.file, reason, hint)
         }
     }
 }
 
 /// Where something stands in a text: line from 1, columns from 0 in characters; `end` on the same line.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub struct Spot {
+pub(crate) struct Spot {
     /// Line from 1.
-    pub line: usize,
+    pub(crate) line: usize,
     /// First column.
-    pub start: usize,
+    pub(crate) start: usize,
     /// First column after it.
-    pub end: usize,
+    pub(crate) end: usize,
 }
 
 impl Spot {
     /// From a mark to the end of what begins there; one character when it goes on to the next line.
-    pub fn new(start: Marker, end: Marker) -> Spot {
+    pub(crate) fn new(start: Marker, end: Marker) -> Spot {
         let end = if end.line() == start.line() { end.col() } else { start.col() + 1 };
         Spot { line: start.line(), start: start.col(), end: end.max(start.col() + 1) }
     }
 }
 
 /// Gives every note its line, column and excerpt.
-pub fn resolve(notes: Vec<Note>, source: &Source<'_>) -> Vec<InputError> {
+pub(crate) fn resolve(notes: Vec<Note>, source: &Source<'_>) -> Vec<InputError> {
     let spots = find(&notes, source);
     let lines: Vec<&str> = if notes.is_empty() { Vec::new() } else { source.text.split('\n').collect() };
     notes.into_iter().zip(spots).map(|(note, spot)| place(note, spot, &lines, source)).collect()
@@ -69,9 +77,8 @@ fn place(note: Note, spot: Option<Spot>, lines: &[&str], source: &Source<'_>) ->
     let (part, path) = names(&note.path, source.library);
     let line = spot.and_then(|spot| lines.get(spot.line - 1).copied());
     let mut hint = note.hint;
-    let comment = line.is_some_and(|line| line.contains(" #"));
-    if comment && note.severity == super::error::Severity::Error && note.reason.contains("needs its unit") {
-        hint.push_str("; what follows ` #` on a line is a comment");
+    if let Some((spot, line)) = spot.zip(line).filter(|_| note.reason.ends_with("needs its unit")) {
+        hint.push_str(lost_unit(line, spot));
     }
     InputError {
         severity: note.severity,
@@ -88,6 +95,18 @@ fn place(note: Note, spot: Option<Spot>, lines: &[&str], source: &Source<'_>) ->
     }
 }
 
+/// What YAML may have made of the unit of a number.
+fn lost_unit(line: &str, spot: Spot) -> &'static str {
+    let mut after = line.chars().skip(spot.end);
+    match after.next() {
+        Some(',') if after.next().is_some_and(|c| c.is_ascii_digit()) => {
+            "; decimals take a point, not a comma"
+        }
+        Some(' ') if after.next() == Some('#') => "; what follows ` #` on a line is a comment",
+        _ => "",
+    }
+}
+
 /// Name of the part and the path inside it.
 fn names(path: &KeyPath, library: bool) -> (String, String) {
     let part = if library { path.key(1).unwrap_or("") } else { "" };
@@ -99,10 +118,10 @@ fn names(path: &KeyPath, library: bool) -> (String, String) {
 }
 
 /// Characters of a long line that are kept before and after the mark.
-const CONTEXT: usize = 80;
+const CONTEXT: usize = 2000;
 
 /// A line with a mark; control characters replaced, long lines cut around the mark.
-pub fn excerpt(line: &str, spot: Spot) -> Excerpt {
+pub(crate) fn excerpt(line: &str, spot: Spot) -> Excerpt {
     let (mut text, mut start, mut end) = (String::new(), None, None);
     let first = spot.start.saturating_sub(CONTEXT);
     let last = spot.end.min(spot.start + 2 * CONTEXT) + CONTEXT;
@@ -267,9 +286,9 @@ mod tests {
 
     #[test]
     fn long_lines_are_cut_around_the_mark() {
-        let line = format!("{}µµ{}", "x".repeat(500), "y".repeat(500));
-        let cut = excerpt(&line, Spot { line: 1, start: 500, end: 502 });
+        let line = format!("{}µµ{}", "x".repeat(5000), "y".repeat(5000));
+        let cut = excerpt(&line, Spot { line: 1, start: 5000, end: 5002 });
         assert_eq!(&cut.text[cut.start..cut.end], "µµ");
-        assert!(cut.text.chars().count() < 300);
+        assert!(cut.text.chars().count() < 6100);
     }
 }

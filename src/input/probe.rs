@@ -7,26 +7,26 @@ use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, Optional
 ///
 /// A list without an index gives the values of all its items.
 #[derive(Debug)]
-pub struct Probe<'p> {
+pub(crate) struct Probe<'p> {
     path: &'p str,
     /// True to walk into mappings that are absent, for asking what a path would mean.
     open: bool,
     /// The key at the end of the path, once it is found.
-    pub key: Option<&'static Key>,
+    pub(crate) key: Option<&'static Key>,
     /// Values there, SI.
-    pub values: Vec<f64>,
+    pub(crate) values: Vec<f64>,
 }
 
 impl<'p> Probe<'p> {
     /// The key that a path names in a kind of form.
-    pub fn key(form: &mut dyn Form, path: &'p str) -> Option<&'static Key> {
+    pub(crate) fn key(form: &mut dyn Form, path: &'p str) -> Option<&'static Key> {
         let mut probe = Probe { path, open: true, key: None, values: Vec::new() };
         form.keys(&mut probe);
         probe.key
     }
 
     /// The values that a form has at a path.
-    pub fn values(form: &mut dyn Form, path: &'p str) -> Vec<f64> {
+    pub(crate) fn values(form: &mut dyn Form, path: &'p str) -> Vec<f64> {
         let mut probe = Probe { path, open: false, key: None, values: Vec::new() };
         form.keys(&mut probe);
         probe.values

@@ -1,9 +1,9 @@
 //! Quantities: `6.8 mΩ` to an SI number of the dimension that is expected.
 
-use super::nearest::nearest;
+use super::error::Blame;
 use super::node::Node;
-use super::notes::Blame;
 use super::units;
+use crate::hints::nearest;
 use crate::units::Dimension;
 
 /// What is expected: a dimension and an example of it for the messages.
@@ -32,7 +32,7 @@ impl<'a> Expected<'a> {
 ///
 /// # Errors
 /// What is wrong with it and what would be right.
-pub fn read(node: &Node, expected: Expected<'_>) -> Result<f64, Blame> {
+pub(crate) fn read(node: &Node, expected: Expected<'_>) -> Result<f64, Blame> {
     let Expected { dimension, example } = expected;
     match node {
         Node::Text(text) => parse(text, expected),
@@ -176,10 +176,9 @@ fn unknown_unit(unit: &str, expected: Expected<'_>) -> Blame {
 
 fn nearest_unit<'a>(unit: &str, known: impl Iterator<Item = &'a str> + Clone) -> Option<&'a str> {
     let spelt = unit.to_lowercase().replace(['µ', 'μ'], "u");
-    known
-        .clone()
-        .find(|candidate| candidate.to_lowercase().replace('µ', "u") == spelt)
-        .or_else(|| nearest(unit, known))
+    let same = known.clone().find(|candidate| candidate.to_lowercase().replace('µ', "u") == spelt);
+    // any two letters are near some unit
+    same.or_else(|| nearest(unit, known).filter(|_| spelt.chars().count() > 2))
 }
 
 /// The number at the start of a text and what follows it.

@@ -1,18 +1,20 @@
 //! Fills any form from a mapping of a file: every key is read, every fault is noted, none stops the rest.
 
 use super::datum;
+use super::error::Blame;
 use super::fields::Fields;
 use super::inherit::hand_down;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
-use super::sample::{key_names, sample};
+use super::sample::{key_names, list_sample, sample};
+use crate::hints::nearest;
 use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 
 /// Reads a nested mapping into a form; a source or conditions stated for all of it go to each of its quantities.
-pub fn read_form(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
+pub(crate) fn read_form(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
     let Some(mut fields) = open(form, node, trail, notes) else { return };
     read_fields(form, &mut fields, notes);
     hand_down(form, &mut fields, notes);
@@ -27,19 +29,26 @@ fn open<'n, 't>(
 ) -> Option<Fields<'n, 't>> {
     // the sample is worth its allocations only when something is wrong
     let sound = matches!(node, Node::Map(entries) if !entries.is_empty());
-    let like = if sound { String::new() } else { format!("`{}`", sample(form)) };
+    let like = match trail.last_key() {
+        _ if sound => String::new(),
+        Some(key) => format!("`{key}: {}`", sample(form)),
+        None => format!("`{}`", sample(form)),
+    };
     Fields::open(node, trail, &like, notes)
 }
 
 /// Reads the keys of a form out of a mapping that may have other keys too.
-pub fn read_fields(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut Notes) {
+pub(crate) fn read_fields(form: &mut dyn Form, fields: &mut Fields<'_, '_>, notes: &mut Notes) {
     form.keys(&mut Reader { fields, notes });
 }
 
 /// Reads a form that stands alone, then asks it whether its keys agree with one another.
-pub fn read_checked(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
+pub(crate) fn read_checked(form: &mut dyn Form, node: &Node, trail: &Trail<'_>, notes: &mut Notes) {
     let before = notes.errors();
-    let Some(mut fields) = open(form, node, trail, notes) else { return };
+    let Some(mut fields) = Fields::open(node, trail, "its keys below its name, each with a value", notes)
+    else {
+        return;
+    };
     read_fields(form, &mut fields, notes);
     fields.close(|| key_names(form), notes);
     // keys that could not be read are zero, and would be blamed for it
@@ -59,11 +68,8 @@ impl<'n, 't> Reader<'_, 'n, 't> {
     }
 
     fn missing(&mut self, key: &'static Key, example: &str) {
-        let blame = Blame::new(
-            format!("`{}` is missing", key.name),
-            format!("add `{}: {example}` ({})", key.name, key.about),
-        );
-        self.notes.key_error(self.fields.trail, blame);
+        let hint = format!("add `{}: {example}` ({})", key.name, key.about);
+        self.notes.missing(self.fields.trail, key.name, hint);
     }
 
     fn datum(&mut self, key: &'static Key, node: &Node) -> Option<Datum> {
@@ -109,7 +115,9 @@ impl KeyVisitor for Reader<'_, '_, '_> {
             return;
         };
         let trail = self.fields.trail.key(key.name);
-        for (place, item) in items(node, &trail, key, self.notes) {
+        let items = items(node, &trail, key, self.notes);
+        slot.reserve_exact(items.len());
+        for (place, item) in items {
             let trail = place.steps(&trail);
             slot.extend(datum::read(item, key, &trail, self.notes));
         }
@@ -149,13 +157,15 @@ impl KeyVisitor for Reader<'_, '_, '_> {
     fn forms(&mut self, key: &'static Key, need: Need, slot: &mut dyn FormList) {
         let Some(node) = self.take(key) else {
             if need == Need::Required {
-                let example = sample(slot.push());
-                self.missing(key, &format!("[{example}]"));
+                let example = list_sample(key, slot);
+                self.missing(key, &example);
             }
             return;
         };
         let trail = self.fields.trail.key(key.name);
-        for (place, item) in items(node, &trail, key, self.notes) {
+        let items = items(node, &trail, key, self.notes);
+        slot.reserve(items.len());
+        for (place, item) in items {
             let trail = place.steps(&trail);
             read_form(slot.push(), item, &trail, self.notes);
         }

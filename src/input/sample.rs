@@ -5,7 +5,7 @@ use crate::sheet::datum::Datum;
 use crate::sheet::form::{Choice, Form, FormList, Key, KeyVisitor, Need, OptionalForm};
 
 /// Names of a form's keys, and those of a quantity's mapping when its limits stand among them.
-pub fn key_names(form: &mut dyn Form) -> Vec<&'static str> {
+pub(crate) fn key_names(form: &mut dyn Form) -> Vec<&'static str> {
     let mut names = Names(Vec::new());
     form.keys(&mut names);
     names.0
@@ -56,10 +56,18 @@ impl KeyVisitor for Names {
 }
 
 /// A form in one line: `{i: 20 A, v: 0.84 V}`. Optional keys are shown when they have an example of their own.
-pub fn sample(form: &mut dyn Form) -> String {
+pub(crate) fn sample(form: &mut dyn Form) -> String {
     let mut sampler = Sampler(Vec::new());
     form.keys(&mut sampler);
     format!("{{{}}}", sampler.0.join(", "))
+}
+
+/// A list of mappings in one line: the key's own example, else one item.
+pub(crate) fn list_sample(key: &Key, list: &mut dyn FormList) -> String {
+    match key.example {
+        "" => format!("[{}]", sample(list.push())),
+        example => example.to_string(),
+    }
 }
 
 struct Sampler(Vec<String>);
@@ -103,8 +111,7 @@ impl KeyVisitor for Sampler {
 
     fn forms(&mut self, key: &'static Key, need: Need, slot: &mut dyn FormList) {
         if need == Need::Required {
-            let example = sample(slot.push());
-            self.add(key, &format!("[{example}]"));
+            self.add(key, &list_sample(key, slot));
         }
     }
 

@@ -4,14 +4,15 @@ use std::collections::HashSet;
 use std::sync::Arc;
 
 use super::budget_grid::whole;
-use super::error::printable;
+use super::error::Blame;
 use super::fields::Fields;
 use super::kind::{ALL_KINDS, PartKind};
-use super::nearest::nearest;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use crate::budget::{Library, PartsOf};
+use crate::hints::nearest;
+use crate::printable::printable;
 use crate::stage::Placed;
 
 /// Most parts in parallel in one slot.
@@ -19,20 +20,20 @@ const MOST_PARALLEL: u64 = 1000;
 
 /// A library as a budget sees it.
 #[derive(Debug)]
-pub struct Shelf<'a> {
+pub(crate) struct Shelf<'a> {
     /// All sound parts.
-    pub library: &'a Library,
+    pub(crate) library: &'a Library,
     /// Parts with errors: known by name, and complained of already.
-    pub broken: &'a HashSet<(PartKind, Arc<str>)>,
+    pub(crate) broken: &'a HashSet<(PartKind, Arc<str>)>,
     /// False when files could not be read, so that a name may be missing for that reason.
-    pub complete: bool,
+    pub(crate) complete: bool,
     /// The folders searched, in words.
-    pub folders: String,
+    pub(crate) folders: String,
 }
 
 impl Shelf<'_> {
     /// The name of a part of a kind as the library keeps it; a fault is noted when there is none.
-    pub fn name(
+    pub(crate) fn name(
         &self,
         kind: PartKind,
         node: &Node,
@@ -79,11 +80,11 @@ impl Shelf<'_> {
             None => format!("add it under `{}`; ", kind.key()),
         };
         hint.push_str(&format!("(searched: {})", self.folders));
-        Blame::new(format!("no part is named `{shown}` among the {}", kind.key().replace('_', " ")), hint)
+        Blame::new(format!("no part is named `{shown}` among the {}", kind.plural()), hint)
     }
 
     /// A part with its count: `name` or `{part: name, count: 2}`.
-    pub fn place<T>(
+    pub(crate) fn place<T>(
         &self,
         (kind, parts): (PartKind, &PartsOf<T>),
         node: &Node,

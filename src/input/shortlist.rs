@@ -5,40 +5,47 @@ use std::sync::Arc;
 use super::budget_grid::{self, RatedLoad, word};
 use super::budget_stages::slots;
 use super::datum::bounded;
+use super::error::Blame;
 use super::fields::Fields;
 use super::kind::PartKind;
-use super::nearest::{listed, nearest};
+use super::listed::listed;
 use super::node::Node;
-use super::notes::{Blame, Notes};
+use super::notes::Notes;
 use super::path::Trail;
 use super::probe::Probe;
 use super::sample::key_names;
 use super::shelf::Shelf;
 use crate::budget::Shortlist;
 use crate::grid::AxisName;
+use crate::hints::{Vocabulary, nearest};
 use crate::ledger::Slot;
 use crate::sheet::form::Key;
 use crate::stage::{Circuit, StageSheet};
 
 /// What the shortlist refers to.
 #[derive(Clone, Copy, Debug)]
-pub struct Context<'a> {
+pub(crate) struct Context<'a> {
     /// The library.
-    pub shelf: &'a Shelf<'a>,
+    pub(crate) shelf: &'a Shelf<'a>,
     /// Names of the stages as written, and those that were read without error.
-    pub names: &'a [&'a str],
+    pub(crate) names: &'a [&'a str],
     /// Stages without errors.
-    pub stages: &'a [StageSheet],
+    pub(crate) stages: &'a [StageSheet],
 }
 
 /// Reads the shortlist.
-pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut Notes) -> Option<Shortlist> {
+pub(crate) fn read(
+    node: &Node,
+    context: Context<'_>,
+    trail: &Trail<'_>,
+    notes: &mut Notes,
+) -> Option<Shortlist> {
     let like = "`{stage: synchronous, high_side: all}`";
     let mut fields = Fields::open(node, trail, like, notes)?;
     let example = context.names.first().copied().unwrap_or("synchronous");
     let stage = fields
         .require("stage", example, notes)
-        .and_then(|node| word(node, context.names, &trail.key("stage"), notes))?;
+        .and_then(|node| word(node, (context.names, None), &trail.key("stage"), notes))?;
     // a stage with errors has been complained of; its slots are unknown
     let stage = context.stages.iter().find(|candidate| candidate.name == stage)?;
     let own = slots(stage.rectifier_name());
@@ -68,7 +75,8 @@ pub fn read(node: &Node, context: Context<'_>, trail: &Trail<'_>, notes: &mut No
         }
         shortlist.switching_frequency = budget_grid::axis((axis, RatedLoad::Absent), node, &trail, notes);
     }
-    fields.close(
+    fields.close_with(
+        Some(Vocabulary::Slot),
         || ["stage", axis.name()].into_iter().chain(own.iter().map(|slot| slot.name())).collect(),
         notes,
     );
@@ -123,7 +131,7 @@ fn candidates(
         single => vec![shelf.name(kind, single, trail, notes)?],
     };
     if names.is_empty() && shelf.complete && matches!(node, Node::Text(_)) {
-        let reason = format!("the library has no {}", kind.key().replace('_', " "));
+        let reason = format!("the library has no {}", kind.plural());
         notes.value_error(trail, node, Blame::new(reason, "add some, or take the slot out of the shortlist"));
     }
     Some(names)
@@ -170,7 +178,7 @@ fn filtered(
         kind.names(shelf.library).into_iter().filter(|name| passes(name)).cloned().collect();
     if names.is_empty() && shelf.complete {
         let blame = Blame::new(
-            format!("none of the {} passes", kind.key().replace('_', " ")),
+            format!("none of the {} passes", kind.plural()),
             "loosen the limits; a part that lacks a value does not pass",
         );
         notes.at_value(trail, blame);

@@ -3,7 +3,7 @@
 use crate::units::Dimension;
 
 /// `0.0068` ohm as `6.8 mΩ`.
-pub fn engineering(value: f64, dimension: Dimension) -> String {
+pub(crate) fn engineering(value: f64, dimension: Dimension) -> String {
     let unit = dimension.unit();
     match dimension {
         Dimension::Number => digits(value),

@@ -4,13 +4,13 @@ use crate::units::Dimension as D;
 
 /// A unit of a file: its dimension and how many SI units it is.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Unit {
+pub(crate) struct Unit {
     /// What it measures.
-    pub dimension: D,
+    pub(crate) dimension: D,
     /// Power of ten, applied to the decimal text of a number so that no digit is lost.
-    pub exponent: i32,
+    pub(crate) exponent: i32,
     /// What remains of the scale after the power of ten: 36 for `Wh` (36e2 J).
-    pub factor: f64,
+    pub(crate) factor: f64,
 }
 
 /// Unit symbols that take prefixes, with the prefixes that make sense: nobody writes millihertz of a converter, and
@@ -62,7 +62,7 @@ const PREFIXES: [(char, i32); 9] =
     [('f', -15), ('p', -12), ('n', -9), ('u', -6), ('m', -3), (' ', 0), ('k', 3), ('M', 6), ('G', 9)];
 
 /// The unit of a spelling; ASCII and Unicode spellings are equal.
-pub fn find(spelling: &str) -> Option<Unit> {
+pub(crate) fn find(spelling: &str) -> Option<Unit> {
     let unit = plain_spelling(spelling);
     if let Some((_, dimension, exponent)) = PLAIN.iter().find(|(symbol, ..)| *symbol == unit) {
         return Some(Unit { dimension: *dimension, exponent: *exponent, factor: 1.0 });
@@ -107,7 +107,7 @@ fn plain_spelling(spelling: &str) -> String {
 }
 
 /// Every spelling offered as a near miss.
-pub fn all_spellings() -> Vec<(String, D)> {
+pub(crate) fn all_spellings() -> Vec<(String, D)> {
     let mut all: Vec<(String, D)> =
         PLAIN.iter().map(|(symbol, dimension, _)| ((*symbol).to_string(), *dimension)).collect();
     for (symbol, dimension, allowed, ..) in PREFIXED {
@@ -122,7 +122,7 @@ pub fn all_spellings() -> Vec<(String, D)> {
 }
 
 /// An example of each dimension for messages.
-pub const fn example(dimension: D) -> &'static str {
+pub(crate) const fn example(dimension: D) -> &'static str {
     match dimension {
         D::Voltage => "3.3 V",
         D::Current => "1.5 A",

@@ -10,22 +10,30 @@ use serde::de::{Deserialize, Deserializer, Error, MapAccess, SeqAccess, Visitor}
 
 use super::node::{Entries, Node};
 
+/// Longest text that is read in one piece, in bytes; the parser needs some twenty times as much memory. Library
+/// files are longer, but are read part by part.
+pub(crate) const LONGEST: usize = 8 * 1024 * 1024;
+
 /// Why a text is no YAML, with its place (line and column from 1; 0 when unknown).
 #[derive(Clone, Debug, PartialEq, Eq)]
-pub struct YamlFault {
+pub(crate) struct YamlFault {
     /// In the parser's words.
-    pub reason: String,
+    pub(crate) reason: String,
     /// Line from 1.
-    pub line: usize,
+    pub(crate) line: usize,
     /// Column from 1.
-    pub column: usize,
+    pub(crate) column: usize,
 }
 
 /// Reads a YAML text.
 ///
 /// # Errors
 /// When the text is not YAML or has a key twice.
-pub fn read(text: &str) -> Result<Node, YamlFault> {
+pub(crate) fn read(text: &str) -> Result<Node, YamlFault> {
+    if text.len() > LONGEST {
+        let reason = format!("more than {} MiB in one piece", LONGEST / (1024 * 1024));
+        return Err(YamlFault { reason, line: 0, column: 0 });
+    }
     serde_yaml::from_str(text).map_err(|error| {
         let (line, column) = error.location().map_or((0, 0), |place| (place.line(), place.column()));
         let reason = error.to_string();

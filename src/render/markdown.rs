@@ -4,7 +4,7 @@ use std::io::{self, Write};
 
 use super::Render;
 use crate::printable::printable;
-use crate::report::{Alignment, Block, Cell, Document, RowKind, Table};
+use crate::report::{Alignment, Block, Cell, Document, Equation, RowKind, Table};
 
 /// Markdown; the caption of a table is a line above it.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -32,7 +32,27 @@ fn block(block: &Block) -> String {
         Block::Facts(facts) => facts.iter().map(fact).collect(),
         Block::Notice { severity, text } => format!("> **{}:** {}\n", severity.name(), escape(text)),
         Block::Table(table) => pipes(table),
+        Block::Equation(step) => equation(step),
+        Block::Figure(figure) => format!("Figure: {}\n", escape(&figure.summary())),
     }
+}
+
+/// Each side of an equation on a line of its own, as code: nothing in it is markup.
+fn equation(step: &Equation) -> String {
+    let code = |words: &str| printable(words).replace('`', "'");
+    let numbers = if step.numbers == step.formula || step.numbers == step.result {
+        String::new()
+    } else {
+        format!("    = {}\n", code(&step.numbers))
+    };
+    format!(
+        "{}\n\n    {} = {}\n{numbers}    = {}\n\n{}\n",
+        escape_line(&step.name),
+        code(&step.symbol),
+        code(&step.formula),
+        code(&step.result),
+        escape_line(&step.authority)
+    )
 }
 
 fn fact((name, value): &(String, Cell)) -> String {
@@ -92,8 +112,11 @@ fn escape(text: &str) -> String {
     let mut escaped = String::with_capacity(clean.len() + 8);
     let mut rest = clean.as_ref();
     while let Some(c) = rest.chars().next() {
-        let special =
-            matches!(c, '\\' | '|' | '`' | '*' | '_' | '[' | ']' | '<' | '>' | '~' | '&' | '$' | '@' | '^');
+        // an underscore inside a word, as in V_IN, is never emphasis
+        let inside = |c: Option<char>| c.is_some_and(char::is_alphanumeric);
+        let in_word = inside(escaped.chars().next_back()) && inside(rest.chars().nth(1));
+        let special = (c == '_' && !in_word)
+            || matches!(c, '\\' | '|' | '`' | '*' | '[' | ']' | '<' | '>' | '~' | '&' | '$' | '@' | '^');
         let link = rest.starts_with("://") || (c == '.' && ends_with_www(&escaped));
         if special || link {
             escaped.push('\\');

@@ -11,7 +11,7 @@ use unicode_width::UnicodeWidthStr;
 use super::Render;
 use super::panels::{self, GAP, Span};
 use crate::printable::printable;
-use crate::report::{Alignment, Block, Cell, Document, Layout, Printed, RowKind, Severity, Table};
+use crate::report::{Alignment, Block, Cell, Document, Equation, Layout, Printed, RowKind, Severity, Table};
 
 /// Text of a width, with colour when told.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -66,7 +66,20 @@ impl Text {
                 self.wrap(text, &first, &printable(words));
             }
             Block::Table(table) => self.table(text, table),
+            Block::Equation(step) => self.equation(text, step),
+            Block::Figure(figure) => self.wrap(text, "figure: ", &printable(&figure.summary())),
         }
+    }
+
+    fn equation(&self, text: &mut String, step: &Equation) {
+        self.wrap(text, "", &printable(&step.name));
+        let indent = " ".repeat(step.symbol.width() + 3);
+        self.wrap(text, &format!("  {} = ", step.symbol), &printable(&step.formula));
+        if step.numbers != step.formula && step.numbers != step.result {
+            self.wrap(text, &format!("{indent}= "), &printable(&step.numbers));
+        }
+        self.wrap(text, &format!("{indent}= "), &format!("{BOLD}{}{PLAIN}", printable(&step.result)));
+        self.wrap(text, "  ", &printable(&step.authority));
     }
 
     fn heading(&self, text: &mut String, level: u8, words: &str) {
@@ -91,7 +104,9 @@ impl Text {
     }
 
     fn table(&self, text: &mut String, table: &Table) {
-        self.wrap(text, "", &printable(&table.caption));
+        if !table.caption.is_empty() {
+            self.wrap(text, "", &printable(&table.caption));
+        }
         let layout = escaped(table.layout());
         let spans = panels::spans(table, &layout);
         for (place, panel) in panels::split(table, &spans, self.width()).iter().enumerate() {

@@ -2,14 +2,13 @@
 
 use crate::compare::Comparison;
 use crate::ledger::ALL_SLOTS;
-use crate::report::{Cell, Column, Table, caption, words};
+use crate::report::{Cell, Column, Table};
 
 /// One column a stage: output power, loss by slot, and their sum, the input power.
 pub(super) fn table(comparison: &Comparison<'_>) -> Table {
     let mut columns = vec![Column::text("booked to")];
     columns.extend(comparison.candidates.iter().map(|candidate| Column::quantity(candidate.name())));
-    let at = words::point(&comparison.budget.headline);
-    let mut table = Table::new(caption::budget(comparison.budget, &at), columns);
+    let mut table = Table::new("", columns);
     let row = |name: &str, cell: &dyn Fn(usize) -> Option<f64>| {
         let mut cells = vec![Cell::text(name)];
         cells

@@ -2,10 +2,9 @@
 
 use crate::budget::Budget;
 use crate::candidate::Candidate;
-use crate::compare::TYPICAL;
 use crate::report::words;
 
-/// "lossbook 0.1.0 · grain-dryer camera node · input 3f9a21c4 · ... · typical values".
+/// "lossbook 0.1.0 · grain-dryer camera node · input 3f9a21c4 · ... · typical values", or worst values.
 pub fn budget(budget: &Budget, what: &str) -> String {
     let mut parts = vec![
         concat!("lossbook ", env!("CARGO_PKG_VERSION")).to_owned(),
@@ -15,8 +14,14 @@ pub fn budget(budget: &Budget, what: &str) -> String {
     if !what.is_empty() {
         parts.push(what.to_owned());
     }
-    parts.push(format!("{TYPICAL} values"));
+    parts.push(format!("{} values", budget.values.name()));
     parts.join(" · ")
+}
+
+/// "lossbook 0.1.0 · input 3f9a21c4 · typical values": what an answer about the whole budget says of itself once.
+pub fn origin(budget: &Budget) -> String {
+    let version = env!("CARGO_PKG_VERSION");
+    format!("lossbook {version} · input {} · {} values", budget.fingerprint(), budget.values.name())
 }
 
 /// The same for one stage, with what is fixed in the table and the number of assumed and of missing items.

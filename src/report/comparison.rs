@@ -3,7 +3,7 @@
 use crate::candidate::Candidate;
 use crate::compare::Comparison;
 use crate::findings::{Finding, Severity};
-use crate::ledger::{ALL_ACCOUNTS, ALL_FAMILIES, ALL_SLOTS, Account, Family};
+use crate::ledger::{ALL_ACCOUNTS, ALL_FAMILIES, ALL_SLOTS, Account, Family, Mechanism};
 use crate::model::Solved;
 use crate::ratings;
 use crate::record::{Detail, Record};
@@ -16,6 +16,7 @@ pub fn document(comparison: &Comparison<'_>) -> Document {
     let mut document = Document::new(budget.name.clone());
     document.fact("rail", Cell::text(rail(comparison)));
     document.fact("headline", Cell::text(words::point(&budget.headline)));
+    document.fact("computed by", Cell::text(caption::origin(budget)));
     document.verdict(format!("Verdict: {}.", comparison.sentence()));
     document.heading(2, "Balance at the headline");
     document.table(balance::table(comparison));
@@ -50,7 +51,7 @@ pub fn document(comparison: &Comparison<'_>) -> Document {
     document
 }
 
-fn rail(comparison: &Comparison<'_>) -> String {
+pub(super) fn rail(comparison: &Comparison<'_>) -> String {
     let budget = comparison.budget;
     let mut rail = words::set(budget.output_voltage, D::Voltage);
     if let Some(rated) = budget.rated_load {
@@ -76,7 +77,11 @@ fn stage_columns(comparison: &Comparison<'_>, first: &str) -> Vec<Column> {
 }
 
 /// A row with one cell a stage; stages that cannot run show a dash.
-fn row(comparison: &Comparison<'_>, name: &str, cell: impl Fn(&Record<'_>, &Detail) -> Cell) -> Vec<Cell> {
+pub(super) fn row(
+    comparison: &Comparison<'_>,
+    name: &str,
+    cell: impl Fn(&Record<'_>, &Detail) -> Cell,
+) -> Vec<Cell> {
     let mut cells = vec![Cell::text(name)];
     cells.extend(comparison.headline.iter().map(|record| match &record.outcome {
         Ok(detail) => cell(record, detail),
@@ -85,10 +90,8 @@ fn row(comparison: &Comparison<'_>, name: &str, cell: impl Fn(&Record<'_>, &Deta
     cells
 }
 
-fn summary(comparison: &Comparison<'_>) -> Table {
-    let at = words::point(&comparison.budget.headline);
-    let mut table =
-        Table::new(caption::budget(comparison.budget, &at), stage_columns(comparison, "at the headline"));
+pub(super) fn summary(comparison: &Comparison<'_>) -> Table {
+    let mut table = Table::new("", stage_columns(comparison, "at the headline"));
     table.row(row(comparison, "efficiency", |record, detail| {
         let efficiency = detail.solved.efficiency().map_or(Cell::missing("no load"), Cell::efficiency);
         gravest(efficiency, record, detail)
@@ -169,10 +172,8 @@ fn watts_and_share(watts: f64, solved: &Solved) -> Cell {
     Cell::text(format!("{}  {:>6}", Cell::watts(watts).shown(), share_of(watts, solved)))
 }
 
-fn by_mechanism(comparison: &Comparison<'_>) -> Table {
-    let at = words::point(&comparison.budget.headline);
-    let mut table =
-        Table::new(caption::budget(comparison.budget, &at), stage_columns(comparison, "mechanism"));
+pub(super) fn by_mechanism(comparison: &Comparison<'_>) -> Table {
+    let mut table = Table::new("", stage_columns(comparison, "mechanism"));
     let largest = |watts: &dyn Fn(&Solved) -> f64| {
         let solved = comparison.headline.iter().filter_map(|record| record.outcome.as_ref().ok());
         solved.map(|detail| watts(&detail.solved)).fold(0.0, f64::max)
@@ -188,6 +189,7 @@ fn by_mechanism(comparison: &Comparison<'_>) -> Table {
         mechanisms.sort_by(|a, b| {
             largest(&|s| s.ledger.mechanism(*b)).total_cmp(&largest(&|s| s.ledger.mechanism(*a)))
         });
+        mechanisms.retain(|m| largest(&|s| s.ledger.mechanism(*m)) > 0.0 || lacks(comparison, *m));
         for mechanism in &mechanisms {
             table.row(row(comparison, &mechanism.words(), |record, detail| {
                 let candidate = record.candidate;
@@ -223,6 +225,11 @@ fn by_mechanism(comparison: &Comparison<'_>) -> Table {
     table
 }
 
+/// True when a stage lacks data for a mechanism.
+fn lacks(comparison: &Comparison<'_>, mechanism: Mechanism) -> bool {
+    comparison.candidates.iter().any(|c| c.not_modelled.iter().any(|missing| missing.mechanism == mechanism))
+}
+
 fn subtotal_name(family: Family) -> String {
     format!("= {}", family.name())
 }
@@ -231,9 +238,8 @@ fn books(candidate: &Candidate<'_>, wanted: impl Fn(&Account) -> bool) -> bool {
     candidate.accounts.iter().any(wanted)
 }
 
-fn by_part(comparison: &Comparison<'_>) -> Table {
-    let at = words::point(&comparison.budget.headline);
-    let mut table = Table::new(caption::budget(comparison.budget, &at), stage_columns(comparison, "slot"));
+pub(super) fn by_part(comparison: &Comparison<'_>) -> Table {
+    let mut table = Table::new("", stage_columns(comparison, "slot"));
     for slot in ALL_SLOTS {
         if !comparison.candidates.iter().any(|candidate| books(candidate, |account| account.slot() == slot)) {
             continue;
@@ -251,7 +257,7 @@ fn by_part(comparison: &Comparison<'_>) -> Table {
 }
 
 /// All entries of one stage, the largest first, beside those with every part at 25 °C.
-fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table {
+pub(super) fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table {
     let columns = vec![
         Column::text("slot"),
         Column::text("part"),
@@ -262,7 +268,7 @@ fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table 
     ];
     let candidate = record.candidate;
     let fixed = words::point(&record.point);
-    let mut table = Table::new(caption::stage(candidate, &fixed), columns).with_keys(3);
+    let mut table = Table::new(fixed, columns).with_keys(3);
     let solved = &detail.solved;
     let mut entries: Vec<_> =
         ALL_ACCOUNTS.iter().map(|row| row.0).filter(|a| candidate.accounts.contains(a)).collect();
@@ -304,7 +310,7 @@ fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table 
     table
 }
 
-fn temperatures(comparison: &Comparison<'_>) -> Table {
+pub(super) fn temperatures(comparison: &Comparison<'_>) -> Table {
     let columns = vec![
         Column::text("stage"),
         Column::text("slot"),
@@ -313,8 +319,7 @@ fn temperatures(comparison: &Comparison<'_>) -> Table {
         Column::quantity("rating"),
         Column::quantity("margin"),
     ];
-    let at = words::point(&comparison.budget.headline);
-    let mut table = Table::new(caption::budget(comparison.budget, &at), columns).with_keys(2);
+    let mut table = Table::new("", columns).with_keys(2);
     for record in &comparison.headline {
         let Ok(detail) = &record.outcome else { continue };
         let limits = ratings::temperature_limits(record.candidate.sheet);
@@ -360,7 +365,7 @@ fn curves(comparison: &Comparison<'_>) -> Table {
         words::set(headline.input_voltage, D::Voltage),
         words::set(headline.ambient, D::Temperature)
     );
-    let mut table = Table::new(caption::budget(comparison.budget, &fixed), columns);
+    let mut table = Table::new(fixed, columns);
     for (index, load) in comparison.loads.iter().enumerate() {
         let mut cells = vec![Cell::setting(*load, D::Current)];
         let losses = comparison.curves.iter().filter_map(|curve| curve.get(index)?.outcome.as_ref().ok());
@@ -399,7 +404,7 @@ fn kind_words(finding: &Finding) -> String {
     finding.kind.replace('_', " ")
 }
 
-fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
+pub(super) fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
     if comparison.crossovers.is_empty() {
         document.paragraph("No stage overtakes another within the loads of the grid.");
         return;
@@ -411,7 +416,7 @@ fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
         Column::text("less loss above"),
     ];
     let fixed = format!("T_A {}", words::set(comparison.budget.headline.ambient, D::Temperature));
-    let mut table = Table::new(caption::budget(comparison.budget, &fixed), columns).with_keys(2);
+    let mut table = Table::new(fixed, columns).with_keys(2);
     let mut sorted: Vec<_> = comparison.crossovers.iter().collect();
     sorted.sort_by(|a, b| a.input_voltage.total_cmp(&b.input_voltage).then(a.load.total_cmp(&b.load)));
     for crossover in sorted {
@@ -425,11 +430,10 @@ fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
     document.table(table);
 }
 
-fn findings(comparison: &Comparison<'_>, document: &mut Document) {
+pub(super) fn findings(comparison: &Comparison<'_>, document: &mut Document) {
     let columns =
         vec![Column::text("stage"), Column::text("severity"), Column::text("slot"), Column::text("finding")];
-    let at = words::point(&comparison.budget.headline);
-    let mut table = Table::new(caption::budget(comparison.budget, &at), columns).with_keys(2);
+    let mut table = Table::new("", columns).with_keys(2);
     for record in &comparison.headline {
         let name = record.candidate.name();
         let found = record.outcome.as_ref().map_or(&[][..], |detail| &detail.findings);

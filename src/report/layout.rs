@@ -12,7 +12,7 @@ const MOST_NOTES: usize = 9;
 /// A table as it will be read, nothing escaped yet.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Layout {
-    /// Titles with their units: "loss [W]".
+    /// Titles with their units: `loss [W]`.
     pub titles: Vec<String>,
     /// Rows, each as long as the titles.
     pub rows: Vec<LaidRow>,

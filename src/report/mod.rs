@@ -19,13 +19,25 @@
 //! ```
 
 mod balance;
+pub mod bars;
 pub mod caption;
 mod cell;
 pub mod comparison;
+pub mod derivation;
+pub mod energy;
 pub mod evidence;
+pub mod figure;
+mod figures;
+pub mod headroom;
 mod layout;
 pub mod needs;
 pub mod number;
+pub mod reconcile;
+pub mod review;
+pub mod sensitivity;
+pub mod shortlist;
+mod shortlist_insight;
+pub mod spread;
 mod table;
 pub mod tables;
 pub mod verdict;
@@ -33,6 +45,7 @@ pub mod words;
 
 pub use crate::findings::Severity;
 pub use cell::Cell;
+pub use figure::Figure;
 pub use layout::{LaidRow, Layout, Printed};
 pub use table::{Alignment, Column, Row, RowKind, Table, Units};
 
@@ -45,7 +58,7 @@ pub struct Document {
     pub blocks: Vec<Block>,
 }
 
-/// One block of a document. Figures will be one more kind.
+/// One block of a document.
 #[derive(Clone, Debug, PartialEq)]
 pub enum Block {
     /// Heading of a section.
@@ -77,6 +90,27 @@ pub enum Block {
     },
     /// A table.
     Table(Table),
+    /// An equation with its numbers.
+    Equation(Equation),
+    /// A drawing; its numbers also stand in a table.
+    Figure(Figure),
+}
+
+/// A step of a derivation.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Equation {
+    /// What is derived.
+    pub name: String,
+    /// Its symbol.
+    pub symbol: String,
+    /// Right-hand side in symbols.
+    pub formula: String,
+    /// The same with numbers and units.
+    pub numbers: String,
+    /// The result with its unit.
+    pub result: String,
+    /// Who says so, and where it holds.
+    pub authority: String,
 }
 
 impl Document {

@@ -3,7 +3,7 @@
 use crate::budget::Limit;
 use crate::compare::Comparison;
 use crate::grid::{ALL_AXES, AxisName, PartialPoint};
-use crate::report::{Cell, Column, Document, Severity, Table, caption, words};
+use crate::report::{Cell, Column, Document, Severity, Table, words};
 use crate::requirements::Judgement;
 use crate::units::Dimension as D;
 
@@ -15,7 +15,7 @@ pub fn requirements(comparison: &Comparison<'_>, document: &mut Document) {
     }
     let mut columns = vec![Column::text("requirement")];
     columns.extend(comparison.candidates.iter().map(|candidate| Column::text(candidate.name())));
-    let mut table = Table::new(caption::budget(comparison.budget, "requirements"), columns);
+    let mut table = Table::new("", columns);
     for (index, requirement) in comparison.budget.requirements.iter().enumerate() {
         let mut cells = vec![Cell::text(sentence(&requirement.limit, &requirement.at))];
         for judgements in &comparison.judgements {

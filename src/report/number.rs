@@ -84,6 +84,28 @@ pub fn setting(value: f64, dimension: Dimension) -> String {
     with_unit(trimmed(&digits), &format!("{prefix}{unit}"))
 }
 
+/// Digits with which a calculation can be followed on paper.
+const WORKED_DIGITS: usize = 5;
+
+/// A number of a derivation: five digits with prefix and unit, no zeros at the end.
+pub fn worked(value: f64, dimension: Dimension) -> String {
+    let (unit, factor, prefixed) = match dimension {
+        // equations are written in SI units
+        Dimension::Volume | Dimension::Area => (dimension.unit(), 1.0, false),
+        other => shown_unit(other),
+    };
+    if !prefixed {
+        return worked_plain(value * factor, unit);
+    }
+    let (digits, prefix) = engineering(value * factor, WORKED_DIGITS);
+    with_unit(trimmed(&digits), &format!("{prefix}{unit}"))
+}
+
+/// The same without a prefix, for units that take none: "36.441 A²", "1.2345e-9 V·s".
+pub fn worked_plain(value: f64, unit: &str) -> String {
+    with_unit(trimmed(&significant(value, WORKED_DIGITS)), unit)
+}
+
 /// A temperature with one decimal.
 fn tenths(celsius: f64) -> String {
     if celsius > HOTTEST_SHOWN { format!("> {HOTTEST_SHOWN:.0}") } else { fixed(celsius, 1) }

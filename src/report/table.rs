@@ -33,7 +33,7 @@ pub struct Column {
 pub enum Units {
     /// Beside each number, each with the prefix that suits it: "44.6 mW".
     InCells,
-    /// In the title, with one prefix for all columns of this dimension: "loss [W]", digits comparable.
+    /// In the title, with one prefix for all columns of this dimension: `loss [W]`, digits comparable.
     InTitle,
 }
 

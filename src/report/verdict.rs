@@ -33,7 +33,7 @@ pub fn sentence(comparison: &Comparison<'_>) -> String {
         }
     };
     if let Some(stage) = comparison.verdict.stage() {
-        line.push_str(&enough_below(comparison, stage));
+        line.push_str(&enough_below(comparison));
         if !comparison.budget.requirements.is_empty() {
             let judgements = comparison.judgements.get(stage).map_or(&[][..], |judgements| judgements);
             let missed = judgements.iter().filter(|judgement| !judgement.met).count();
@@ -66,21 +66,19 @@ fn watts(value: f64) -> String {
     show(value, Form::Result(D::Power))
 }
 
-/// "; linear is enough below 61 µA": the last crossover below the headline at its input voltage.
-fn enough_below(comparison: &Comparison<'_>, stage: usize) -> String {
-    let headline = &comparison.budget.headline;
-    let Some(candidate) = comparison.candidates.get(stage) else { return String::new() };
-    let below = comparison.crossovers.iter().filter(|crossover| {
-        crossover.above == candidate.name()
-            && crossover.input_voltage == headline.input_voltage
-            && crossover.load < headline.load
-    });
-    match below.max_by(|a, b| a.load.total_cmp(&b.load)) {
-        Some(crossover) => format!(
-            "; {} is enough below {}",
-            crossover.below,
-            show(crossover.load, Form::Result(D::Current))
-        ),
-        None => String::new(),
-    }
+/// "; linear is enough below 61 µA, diode up to 1.7 mA": who leads in which band of load. Nothing when one leads everywhere.
+fn enough_below(comparison: &Comparison<'_>) -> String {
+    let name = |place: usize| comparison.candidates.get(place).map_or("", |candidate| candidate.name());
+    let leading: Vec<_> =
+        comparison.bands.iter().filter_map(|band| Some((name(band.stage?), band))).collect();
+    let [below @ .., (top, _)] = leading.as_slice() else { return String::new() };
+    let ends: Vec<String> = below
+        .iter()
+        .enumerate()
+        .map(|(place, (name, band))| {
+            let load = show(band.to, Form::Result(D::Current));
+            if place == 0 { format!("{name} is enough below {load}") } else { format!("{name} up to {load}") }
+        })
+        .collect();
+    if ends.is_empty() { String::new() } else { format!("; {}, {top} leads above", ends.join(", ")) }
 }

@@ -35,10 +35,11 @@ const ESL: Key = Key::new("esl", D::Inductance, "series inductance")
     .zero()
     .sane(0.0, 1e-7)
     .absent("0 nH assumed when absent")
-    .example("0.5 nH");
+    .example("0.5 nH")
+    .starter();
 const V_MAX: Key = Key::new("v_max", D::Voltage, "voltage rating").sane(1.0, 1e3).example("50 V");
 const I_RMS_MAX: Key =
-    Key::new("i_rms_max", D::Current, "RMS ripple current rating").sane(0.01, 100.0).example("4 A");
+    Key::new("i_rms_max", D::Current, "RMS ripple current rating").sane(0.01, 100.0).example("4 A").starter();
 
 impl Form for CapacitorSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {

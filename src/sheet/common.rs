@@ -1,7 +1,7 @@
 //! Keys that several kinds of part share.
 
 use super::datum::Datum;
-use super::form::{Form, Key, KeyVisitor};
+use super::form::{Faults, Form, Key, KeyVisitor};
 use crate::units::Dimension as D;
 
 /// What any part may say of itself.
@@ -48,5 +48,20 @@ impl Form for VoltagePoint {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {
         v.required(&POINT_I, &mut self.i);
         v.required(&POINT_V, &mut self.v);
+    }
+}
+
+/// Blames the later of two points at the same place of a table: a curve has one value there.
+pub fn distinct(path: &str, key: &str, places: impl IntoIterator<Item = f64>, faults: &mut Faults) {
+    let mut seen: Vec<f64> = Vec::new();
+    for (index, place) in places.into_iter().enumerate() {
+        if seen.contains(&place) {
+            faults.error(
+                format!("{path}[{index}]"),
+                format!("has the same {key} as an earlier point"),
+                "keep one of the two",
+            );
+        }
+        seen.push(place);
     }
 }

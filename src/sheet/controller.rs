@@ -46,11 +46,13 @@ const V_BOOT_DROP: Key = Key::new("v_boot_drop", D::Voltage, "drop of the bootst
     .zero()
     .sane(0.0, 2.0)
     .absent("0 V assumed when absent")
-    .example("0.3 V");
+    .example("0.3 V")
+    .starter();
 const HIGH_SIDE: Key =
     Key::new("high_side", D::Resistance, "high-side driver: r_source and r_sink, or i_source and i_sink");
-const LOW_SIDE: Key = Key::new("low_side", D::Resistance, "low-side driver; a diode stage needs none");
-const DEAD_TIME: Key = Key::new("dead_time", D::Time, "dead times; a diode stage has none");
+const LOW_SIDE: Key =
+    Key::new("low_side", D::Resistance, "low-side driver; a diode stage needs none").starter();
+const DEAD_TIME: Key = Key::new("dead_time", D::Time, "dead times; a diode stage has none").starter();
 const DRIVE_SUPPLY: Key = Key::new(
     "drive_supply",
     D::Number,
@@ -63,19 +65,22 @@ const I_Q_SLEEP: Key = Key::new("i_q_sleep", D::Current, "supply current asleep 
     .zero()
     .sane(0.0, 0.05)
     .absent("i_q at all times when absent")
-    .example("60 µA");
+    .example("60 µA")
+    .starter();
 const T_ON_MIN: Key =
-    Key::new("t_on_min", D::Time, "shortest on-time").zero().sane(1e-9, 1e-5).example("60 ns");
+    Key::new("t_on_min", D::Time, "shortest on-time").zero().sane(1e-9, 1e-5).example("60 ns").starter();
 const T_OFF_MIN: Key =
-    Key::new("t_off_min", D::Time, "shortest off-time").zero().sane(1e-9, 1e-5).example("120 ns");
+    Key::new("t_off_min", D::Time, "shortest off-time").zero().sane(1e-9, 1e-5).example("120 ns").starter();
 const V_IN_MAX: Key = Key::new("v_in_max", D::Voltage, "input voltage rating").sane(2.0, 1e3).example("42 V");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient")
     .sane(1.0, 500.0)
     .absent("its temperature is not computed when absent")
-    .example("40 K/W");
+    .example("40 K/W")
+    .starter();
 const T_J_MAX: Key = Key::new("t_j_max", D::Temperature, "junction temperature rating, with r_th_ja")
     .sane(70.0, 250.0)
-    .example("125 °C");
+    .example("125 °C")
+    .starter();
 
 impl Form for ControllerSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {
@@ -108,6 +113,15 @@ impl Form for ControllerSheet {
                 "v_boot_drop",
                 "takes the whole drive voltage",
                 "it lies below v_drive, often 0.1 to 0.5 V",
+            );
+        }
+        if let DriveSupply::External(external) = &self.drive_supply
+            && external.efficiency.value > 1.0
+        {
+            faults.error(
+                "drive_supply.external.efficiency",
+                "is above 100 %",
+                "no supply gives more than it takes",
             );
         }
         if let Some(sleep) = &self.i_q_sleep

@@ -1,6 +1,6 @@
 //! Diode: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE, VoltagePoint};
+use super::common::{Descriptive, PRICE, VoltagePoint, distinct};
 use super::datum::Datum;
 use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use super::mosfet::Recovery;
@@ -38,22 +38,28 @@ const I_F_MAX: Key =
     Key::new("i_f_max", D::Current, "forward current rating").sane(0.01, 1e3).example("10 A");
 const T_J_MAX: Key =
     Key::new("t_j_max", D::Temperature, "junction temperature rating").sane(70.0, 250.0).example("125 °C");
-const V_F: Key = Key::new("v_f", D::Voltage, "forward voltage, points at one or two junction temperatures");
+const V_F: Key = Key::new("v_f", D::Voltage, "forward voltage, points at one or two junction temperatures")
+    .example("[{t_j: 25 °C, points: [{i: 1 A, v: 0.36 V}, {i: 10 A, v: 0.50 V}]}]");
 const I_R: Key = Key::new("i_r", D::Current, "reverse leakage at voltages and temperatures")
-    .absent("leakage not modelled when absent; one point: doubling per 10 K assumed");
+    .absent("leakage not modelled when absent; one point: doubling per 10 K assumed")
+    .starter()
+    .example("[{v_r: 40 V, t_j: 25 °C, i: 60 µA}, {v_r: 40 V, t_j: 125 °C, i: 15 mA}]");
 const Q_C: Key = Key::new("q_c", D::Charge, "junction charge; or c_j")
     .at(&["v_r"])
     .sane(1e-12, 1e-6)
     .absent("its share of output charge not modelled when both are absent")
-    .example("{v_r: 20 V, typ: 8 nC}");
+    .example("{v_r: 20 V, typ: 8 nC}")
+    .starter();
 const C_J: Key = Key::new("c_j", D::Capacitance, "junction capacitance at its test voltage, instead of q_c")
     .at(&["v_r"])
-    .sane(1e-13, 1e-7);
+    .sane(1e-13, 1e-7)
+    .example("{v_r: 20 V, typ: 200 pF}");
 const Q_RR: Key = Key::new("q_rr", D::Charge, "reverse recovery charge, PN diodes only");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)
     .absent("the part stays at ambient when absent")
-    .example("25 K/W");
+    .example("25 K/W")
+    .starter();
 
 impl Form for DiodeSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {
@@ -81,6 +87,14 @@ impl Form for DiodeSheet {
                 "v_f[1].t_j",
                 "is the temperature of the first list",
                 "give two different temperatures",
+            );
+        }
+        for (index, curve) in self.v_f.iter().enumerate() {
+            distinct(
+                &format!("v_f[{index}].points"),
+                "i",
+                curve.points.iter().map(|point| point.i.value),
+                faults,
             );
         }
         if self.q_c.is_some() && self.c_j.is_some() {

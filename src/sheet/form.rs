@@ -78,6 +78,8 @@ pub struct Key {
     pub about: &'static str,
     /// An example as it would stand in a file, for the template.
     pub example: &'static str,
+    /// True for an optional key that a starter file shows ready for use.
+    pub starter: bool,
 }
 
 impl Key {
@@ -92,6 +94,7 @@ impl Key {
             absent: "",
             about,
             example: "",
+            starter: false,
         }
     }
 
@@ -125,6 +128,12 @@ impl Key {
         self
     }
 
+    /// Shows an optional key in a starter file ready for use.
+    pub const fn starter(mut self) -> Self {
+        self.starter = true;
+        self
+    }
+
     /// An example value for the template.
     pub const fn example(mut self, example: &'static str) -> Self {
         self.example = example;
@@ -154,6 +163,8 @@ impl<T: Form + Default> OptionalForm for Option<T> {
 pub trait FormList {
     /// Adds an empty form and returns it.
     fn push(&mut self) -> &mut dyn Form;
+    /// Makes room for so many forms more, and no more than that.
+    fn reserve(&mut self, count: usize);
     /// Number of forms.
     fn len(&self) -> usize;
     /// True without any.
@@ -169,6 +180,10 @@ impl<T: Form + Default> FormList for Vec<T> {
         self.push(T::default());
         let last = self.len() - 1;
         &mut self[last]
+    }
+
+    fn reserve(&mut self, count: usize) {
+        self.reserve_exact(count);
     }
 
     fn len(&self) -> usize {

@@ -1,6 +1,6 @@
 //! Inductor: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE};
+use super::common::{Descriptive, PRICE, distinct};
 use super::datum::Datum;
 use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use crate::units::Dimension as D;
@@ -40,33 +40,38 @@ const INDUCTANCE: Key = Key::new("inductance", D::Inductance, "inductance at no 
     .sane(1e-8, 1e-2)
     .example("{typ: 3.3 µH, min: 2.64 µH, max: 3.96 µH}");
 const SATURATION: Key =
-    Key::new("saturation", D::Current, "current at which the inductance has dropped; or inductance_curve");
+    Key::new("saturation", D::Current, "current at which the inductance has dropped; or inductance_curve")
+        .starter();
 const INDUCTANCE_CURVE: Key =
-    Key::new("inductance_curve", D::Inductance, "inductance against current, instead of saturation");
+    Key::new("inductance_curve", D::Inductance, "inductance against current, instead of saturation")
+        .example("[{i: 0 A, l: 3.3 µH}, {i: 16 A, l: 2.3 µH}]");
 const I_RMS_MAX: Key =
-    Key::new("i_rms_max", D::Current, "RMS current rating").sane(0.01, 500.0).example("12 A");
+    Key::new("i_rms_max", D::Current, "RMS current rating").sane(0.01, 500.0).example("12 A").starter();
 const TEMPERATURE_RISE: Key = Key::new(
     "temperature_rise",
     D::TemperatureDifference,
     "rise at a current as printed; gives r_th when r_th is absent",
-);
+)
+.starter();
 const R_TH: Key =
     Key::new("r_th", D::ThermalResistance, "winding to ambient").sane(0.5, 1000.0).example("30 K/W");
 const T_MAX: Key =
-    Key::new("t_max", D::Temperature, "temperature rating").sane(60.0, 250.0).example("125 °C");
+    Key::new("t_max", D::Temperature, "temperature rating").sane(60.0, 250.0).example("125 °C").starter();
 const DCR: Key = Key::new("dcr", D::Resistance, "winding resistance at 25 °C")
     .sane(1e-5, 20.0)
     .example("{typ: 5.5 mΩ, max: 6.1 mΩ}");
 const R_AC: Key = Key::new("r_ac", D::Resistance, "winding resistance at a frequency")
-    .absent("AC winding loss not modelled when absent");
+    .absent("AC winding loss not modelled when absent")
+    .starter();
 const CORE: Key = Key::new(
     "core",
     D::PowerDensity,
     "core material: Steinmetz k, alpha, beta in SI, or a table; or core_loss",
 )
-.absent("core loss not modelled when core and core_loss are absent");
+.absent("core loss not modelled when core and core_loss are absent")
+.starter();
 const CORE_LOSS: Key =
-    Key::new("core_loss", D::Power, "maker's core loss points at D = 1/2, three or more, instead of core");
+    Key::new("core_loss", D::Power, "maker's core loss points at D = 1/2, three or more, instead of core").example("[{frequency: 300 kHz, ripple: 2 A, loss: 40 mW}, {frequency: 300 kHz, ripple: 4 A, loss: 220 mW}, {frequency: 500 kHz, ripple: 2 A, loss: 85 mW}]");
 
 impl Form for InductorSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {
@@ -100,6 +105,14 @@ impl Form for InductorSheet {
                 );
             }
             _ => {}
+        }
+        distinct("inductance_curve", "i", self.inductance_curve.iter().map(|point| point.i.value), faults);
+        if self.saturation.as_ref().is_some_and(|saturation| saturation.drop.value >= 1.0) {
+            faults.error(
+                "saturation.drop",
+                "leaves no inductance",
+                "give the drop as printed, often 20 % or 30 %",
+            );
         }
         if self.temperature_rise.is_none() && self.r_th.is_none() {
             faults.error(

@@ -1,8 +1,8 @@
 //! Linear regulator: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE};
+use super::common::{Descriptive, PRICE, distinct};
 use super::datum::Datum;
-use super::form::{Form, Key, KeyVisitor, Need};
+use super::form::{Faults, Form, Key, KeyVisitor, Need};
 use crate::units::Dimension as D;
 
 /// A linear regulator as its data sheet states it.
@@ -30,12 +30,15 @@ const V_IN_MAX: Key =
     Key::new("v_in_max", D::Voltage, "input voltage rating").sane(1.5, 500.0).example("36 V");
 const I_OUT_MAX: Key =
     Key::new("i_out_max", D::Current, "output current rating").sane(1e-3, 100.0).example("5 A");
-const DROPOUT: Key = Key::new("dropout", D::Voltage, "drop-out voltage against load");
-const I_GND: Key = Key::new("i_gnd", D::Current, "ground current against load");
+const DROPOUT: Key = Key::new("dropout", D::Voltage, "drop-out voltage against load")
+    .example("[{i: 0.1 A, v: 0.15 V}, {i: 5 A, v: 0.9 V}]");
+const I_GND: Key = Key::new("i_gnd", D::Current, "ground current against load")
+    .example("[{i: 0 A, i_gnd: 1 mA}, {i: 5 A, i_gnd: 60 mA}]");
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)
     .absent("the part stays at ambient when absent")
-    .example("18 K/W");
+    .example("18 K/W")
+    .starter();
 const T_J_MAX: Key =
     Key::new("t_j_max", D::Temperature, "junction temperature rating").sane(70.0, 250.0).example("125 °C");
 
@@ -49,6 +52,11 @@ impl Form for LinearRegulatorSheet {
         v.optional(&R_TH_JA, &mut self.r_th_ja);
         v.required(&T_J_MAX, &mut self.t_j_max);
         v.optional(&PRICE, &mut self.price);
+    }
+
+    fn cross_check(&self, faults: &mut Faults) {
+        distinct("dropout", "i", self.dropout.iter().map(|point| point.i.value), faults);
+        distinct("i_gnd", "i", self.i_gnd.iter().map(|point| point.i.value), faults);
     }
 }
 

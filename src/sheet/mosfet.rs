@@ -1,6 +1,6 @@
 //! MOSFET: the keys of its data sheet.
 
-use super::common::{Descriptive, PRICE, VoltagePoint};
+use super::common::{Descriptive, PRICE, VoltagePoint, distinct};
 use super::datum::Datum;
 use super::edge_times::{EDGE_TIMES, EdgeTimes};
 use super::form::{Faults, Form, Key, KeyVisitor, Need};
@@ -61,8 +61,10 @@ pub struct MosfetSheet {
 
 const V_DS_MAX: Key = Key::new("v_ds_max", D::Voltage, "drain-source rating").sane(5.0, 2e3).example("40 V");
 const V_GS_MAX: Key = Key::new("v_gs_max", D::Voltage, "gate-source rating").sane(3.0, 40.0).example("20 V");
-const I_D_MAX: Key =
-    Key::new("i_d_max", D::Current, "continuous drain current rating").sane(0.05, 2e3).example("50 A");
+const I_D_MAX: Key = Key::new("i_d_max", D::Current, "continuous drain current rating")
+    .sane(0.05, 2e3)
+    .example("50 A")
+    .starter();
 const T_J_MAX: Key =
     Key::new("t_j_max", D::Temperature, "junction temperature rating").sane(70.0, 250.0).example("150 °C");
 const R_DS_ON: Key = Key::new("r_ds_on", D::Resistance, "on-resistance at 25 °C, a point a gate voltage")
@@ -70,7 +72,8 @@ const R_DS_ON: Key = Key::new("r_ds_on", D::Resistance, "on-resistance at 25 °C
     .sane(1e-4, 2.0)
     .example("{v_gs: 4.5 V, typ: 6.8 mΩ, max: 8.6 mΩ}");
 const R_DS_ON_HOT: Key = Key::new("r_ds_on_hot", D::Number, "on-resistance hot over cold")
-    .absent("1.5 at 125 °C assumed when absent");
+    .absent("1.5 at 125 °C assumed when absent")
+    .starter();
 const V_GS_TH: Key = Key::new("v_gs_th", D::Voltage, "threshold")
     .sane(0.3, 6.0)
     .example("{min: 1.2 V, typ: 1.7 V, max: 2.2 V}");
@@ -83,10 +86,13 @@ const Q_GS: Key = Key::new("q_gs", D::Charge, "gate-source charge").sane(1e-11, 
 const Q_GS2: Key = Key::new("q_gs2", D::Charge, "its part after the threshold; or q_g_th, or q_sw")
     .sane(1e-12, 1e-6)
     .absent("estimated from q_gs, threshold and plateau when absent")
-    .example("1.3 nC");
-const Q_G_TH: Key =
-    Key::new("q_g_th", D::Charge, "gate charge at threshold (q_gs2 = q_gs - q_g_th)").sane(1e-12, 1e-6);
-const Q_SW: Key = Key::new("q_sw", D::Charge, "switching charge (q_gs2 + q_gd)").sane(1e-12, 1e-6);
+    .example("1.3 nC")
+    .starter();
+const Q_G_TH: Key = Key::new("q_g_th", D::Charge, "gate charge at threshold (q_gs2 = q_gs - q_g_th)")
+    .sane(1e-12, 1e-6)
+    .example("1.9 nC");
+const Q_SW: Key =
+    Key::new("q_sw", D::Charge, "switching charge (q_gs2 + q_gd)").sane(1e-12, 1e-6).example("3.4 nC");
 const Q_GD: Key = Key::new("q_gd", D::Charge, "gate-drain charge at its test voltage")
     .at(&["v_ds"])
     .sane(1e-12, 1e-6)
@@ -99,30 +105,36 @@ const R_G: Key = Key::new("r_g", D::Resistance, "internal gate resistance")
     .zero()
     .sane(0.0, 100.0)
     .absent("1 Ω assumed when absent")
-    .example("1.2 Ω");
+    .example("1.2 Ω")
+    .starter();
 const Q_OSS: Key = Key::new("q_oss", D::Charge, "output charge; or c_oss")
     .at(&["v_ds"])
     .sane(1e-11, 1e-5)
     .absent("output charge not modelled when both are absent")
-    .example("{v_ds: 20 V, typ: 16 nC}");
+    .example("{v_ds: 20 V, typ: 16 nC}")
+    .starter();
 const C_OSS: Key =
     Key::new("c_oss", D::Capacitance, "output capacitance at its test voltage, instead of q_oss")
         .at(&["v_ds"])
-        .sane(1e-12, 1e-7);
+        .sane(1e-12, 1e-7)
+        .example("{v_ds: 20 V, typ: 400 pF}");
 const L_SOURCE: Key = Key::new("l_source", D::Inductance, "common-source inductance")
     .zero()
     .sane(0.0, 2e-8)
     .absent("0 nH assumed when absent")
     .example("0.2 nH");
-const V_SD: Key = Key::new("v_sd", D::Voltage, "body diode forward voltage, one or more points");
+const V_SD: Key = Key::new("v_sd", D::Voltage, "body diode forward voltage, one or more points")
+    .example("[{i: 1 A, v: 0.70 V}, {i: 20 A, v: 0.84 V}]");
 const Q_RR: Key = Key::new("q_rr", D::Charge, "reverse recovery charge of the body diode")
     .at(&["i"])
     .sane(1e-11, 1e-4)
-    .absent("recovery not modelled when absent");
+    .absent("recovery not modelled when absent")
+    .starter();
 const R_TH_JA: Key = Key::new("r_th_ja", D::ThermalResistance, "junction to ambient on your board")
     .sane(0.5, 500.0)
     .absent("the part stays at ambient when absent")
-    .example("42 K/W");
+    .example("42 K/W")
+    .starter();
 
 impl Form for MosfetSheet {
     fn keys(&mut self, v: &mut dyn KeyVisitor) {
@@ -171,6 +183,10 @@ impl Form for MosfetSheet {
                 );
             }
         }
+        let v_gs = |point: &Datum| point.condition("v_gs").unwrap_or(f64::NAN);
+        distinct("r_ds_on", "v_gs", self.r_ds_on.iter().map(v_gs), faults);
+        distinct("q_g", "v_gs", self.q_g.iter().map(v_gs), faults);
+        distinct("v_sd", "i", self.v_sd.iter().map(|point| point.i.value), faults);
         let given = [&self.q_gs2, &self.q_g_th, &self.q_sw].iter().filter(|datum| datum.is_some()).count();
         if given > 1 {
             faults.error("q_gs2", "q_gs2, q_g_th and q_sw say the same thing", "keep one of them");
