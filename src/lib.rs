@@ -40,6 +40,7 @@ pub mod fitted;
 pub mod grid;
 pub mod heat;
 pub mod hints;
+pub mod import;
 pub mod infeasible;
 pub mod input;
 pub mod justify;

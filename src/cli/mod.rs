@@ -7,6 +7,7 @@ mod check;
 mod compare;
 mod desk;
 mod failure;
+mod import;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
@@ -65,6 +66,7 @@ pub(crate) enum Verb {
     Justify(justify::Options),
     Tabulate(tabulate::Options),
     Pick(pick::Options),
+    Import(import::Options),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -79,6 +81,7 @@ impl Verb {
             Verb::Justify(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Pick(options) => options.run(common),
+            Verb::Import(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
