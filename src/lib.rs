@@ -24,8 +24,10 @@
 //! # }
 //! ```
 
+pub mod absorb;
 pub mod answer;
 pub mod average;
+pub mod bench;
 pub mod budget;
 pub mod candidate;
 pub mod columns;
@@ -33,11 +35,15 @@ pub mod compare;
 pub mod crossover;
 pub mod draws;
 pub mod edges;
+pub mod energy;
+pub mod evidence;
 pub mod files;
 pub mod findings;
 pub mod fit;
 pub mod fitted;
+pub mod gaps;
 pub mod grid;
+pub mod headroom;
 pub mod heat;
 pub mod hints;
 pub mod import;
@@ -51,16 +57,21 @@ pub mod loss;
 pub mod model;
 pub mod model_spread;
 pub mod near;
+pub mod nnls;
 pub mod parts;
 pub mod pick;
 pub mod printable;
 pub mod purchase;
 pub mod random;
 pub mod ratings;
+pub mod reconcile;
 pub mod record;
+pub mod rehearse;
 pub mod render;
 pub mod report;
 pub mod requirements;
+pub mod review;
+pub mod root;
 pub mod sensitivity;
 pub mod sheet;
 pub mod spread;
@@ -71,4 +82,6 @@ pub mod tolerance;
 pub mod units;
 pub mod values;
 pub mod waveform;
+#[cfg(feature = "xlsx")]
+pub mod workbook;
 pub mod worst;

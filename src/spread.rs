@@ -285,7 +285,7 @@ fn interior(candidate: &Candidate<'_>, worst: &WorstCase, points: &[OperatingPoi
     let Some(axis) = candidate.grid.axis(AxisName::InputVoltage) else { return Vec::new() };
     let low = axis.values().fold(f64::INFINITY, f64::min);
     let high = axis.values().fold(f64::NEG_INFINITY, f64::max);
-    if !(high > low) {
+    if high <= low {
         return Vec::new();
     }
     let scan = |point: &OperatingPoint| {

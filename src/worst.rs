@@ -10,6 +10,8 @@ use crate::fitted::Stage;
 use crate::grid::OperatingPoint;
 use crate::infeasible::Infeasible;
 use crate::model;
+use crate::sheet::BoardSheet;
+use crate::stage::StageSheet;
 use crate::tolerance::{Lever, Rig};
 
 /// The set of data-sheet values that an answer is computed with; every header, caption and file says which.
@@ -130,15 +132,25 @@ impl WorstCase {
         self.sides.iter().map(side).collect()
     }
 
+    /// The sheets that the stage of a point is fitted to.
+    pub fn sheets_at(&self, point: OperatingPoint) -> (StageSheet, BoardSheet) {
+        self.rig.sheets(&self.settings(&self.sides_at(point)))
+    }
+
     fn combined(&self, sides: &[Side]) -> Stage {
+        self.rig.fit(&self.settings(sides)).unwrap_or_else(|_| self.rig.typical())
+    }
+
+    /// Values of the limits that go together.
+    fn settings(&self, sides: &[Side]) -> Vec<(usize, f64)> {
         let mut settings = Vec::new();
         for (lever, side) in self.levers.iter().zip(sides) {
             if *side != Side::Typical {
                 settings.extend(lever.settings(*side));
             }
         }
-        if let Ok(stage) = self.rig.fit(&settings) {
-            return stage;
+        if self.rig.fit(&settings).is_ok() {
+            return settings;
         }
         // limits that contradict one another: take them in turn, as far as they go together
         let mut kept = Vec::new();
@@ -149,7 +161,7 @@ impl WorstCase {
                 kept.truncate(before);
             }
         }
-        self.rig.fit(&kept).unwrap_or_else(|_| self.rig.typical())
+        kept
     }
 }
 

@@ -13,7 +13,7 @@ fn read(text: &str, kind: &str) -> Imported {
 
 fn library(folder: &Path, yaml: &str) -> lossbook::budget::Library {
     let path = folder.join("parts.yaml");
-    std::fs::write(&path, yaml).expect("written");
+    lossbook::files::write_whole(&path, yaml.as_bytes()).expect("written");
     load_library(&[path]).unwrap_or_else(|errors| panic!("{errors}\n{yaml}")).0
 }
 

@@ -97,7 +97,9 @@ fn import_writes_all_or_nothing() {
     let folder = tempfile::tempdir().expect("a temporary folder");
     let here = |words: &[&str]| lossbook(folder.path(), words);
     let table = text(&here(&["template", "csv"]).stdout);
-    let write = |name: &str, text: &str| std::fs::write(folder.path().join(name), text).expect("written");
+    let write = |name: &str, text: &str| {
+        lossbook::files::write_whole(&folder.path().join(name), text.as_bytes()).expect("written")
+    };
     write("mosfets.csv", &table);
     let output = here(&["import", "mosfets.csv", "-o", "mine.yaml"]);
     assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));

@@ -10,7 +10,7 @@ use lossbook::justify::{self, Request};
 use lossbook::ledger::{ALL_MECHANISMS, ALL_SLOTS, Mechanism, Slot};
 use lossbook::sweep::Watch;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Writing};
 use super::{Exit, Failure, desk};
 
@@ -26,6 +26,8 @@ Examples:
 pub(crate) struct Options {
     #[command(flatten)]
     subject: Subject,
+    #[command(flatten)]
+    values: Values,
 
     /// Coordinates of the point, the others as at the headline: "input_voltage=24V load=6A ambient=60degC".
     #[arg(long, value_name = "POINT", value_parser = point)]
@@ -45,7 +47,8 @@ pub(crate) struct Options {
 
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
-        let budget = self.subject.load()?;
+        let mut budget = self.subject.load()?;
+        self.values.apply(&mut budget);
         let request = Request {
             stage: self.subject.stage.clone(),
             at: self.at.unwrap_or_default(),

@@ -6,7 +6,10 @@ pub(crate) mod bug;
 mod check;
 mod compare;
 mod desk;
+mod energy;
+mod evidence;
 mod failure;
+mod headroom;
 mod import;
 pub(crate) mod interrupt;
 mod justify;
@@ -14,6 +17,9 @@ mod load;
 mod options;
 mod pick;
 mod progress;
+mod reconcile;
+mod rehearse;
+mod report;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -64,6 +70,8 @@ Estimates do not replace measurement; hot parts and stored energy can injure.";
 pub(crate) enum Verb {
     Compare(compare::Options),
     Justify(justify::Options),
+    Report(report::Options),
+    Evidence(evidence::Options),
     Tabulate(tabulate::Options),
     Pick(pick::Options),
     Import(import::Options),
@@ -71,6 +79,10 @@ pub(crate) enum Verb {
     Template(template::Options),
     Spread(spread::Options),
     Sensitivity(sensitivity::Options),
+    Headroom(headroom::Options),
+    Energy(energy::Options),
+    Reconcile(reconcile::Options),
+    Rehearse(rehearse::Options),
 }
 
 impl Verb {
@@ -79,6 +91,8 @@ impl Verb {
         match self {
             Verb::Compare(options) => options.run(common),
             Verb::Justify(options) => options.run(common),
+            Verb::Report(options) => options.run(common),
+            Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Pick(options) => options.run(common),
             Verb::Import(options) => options.run(common),
@@ -86,6 +100,10 @@ impl Verb {
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
+            Verb::Energy(options) => options.run(common),
+            Verb::Headroom(options) => options.run(common),
+            Verb::Reconcile(options) => options.run(common),
+            Verb::Rehearse(options) => options.run(common),
         }
     }
 }

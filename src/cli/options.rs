@@ -75,4 +75,11 @@ pub(crate) enum Format {
     /// Pipe tables to paste into a report, rounded.
     #[value(alias = "md")]
     Markdown,
+    /// One page for a browser, without script, rounded.
+    #[value(alias = "htm")]
+    Html,
+    /// A spreadsheet with typed numbers and a chart, full precision; goes to a file.
+    #[cfg(feature = "xlsx")]
+    #[value(alias = "spreadsheet")]
+    Xlsx,
 }

@@ -5,6 +5,7 @@
 //! only when there are notes are their lines looked up (`place`) and drawn ([`render`]).
 
 pub mod at;
+pub mod bench;
 mod budget;
 mod budget_checks;
 mod budget_grid;
@@ -15,7 +16,6 @@ pub mod check;
 mod datum;
 pub mod error;
 mod fields;
-mod gaps;
 mod inherit;
 mod keys;
 pub(crate) mod kind;

@@ -1,10 +1,9 @@
 //! Where a number comes from: part, key, typical or limit, test conditions, source.
 
-use crate::budget::Budget;
 use crate::ledger::Slot;
 use crate::report::words;
-use crate::sheet::Datum;
 use crate::sheet::common::Descriptive;
+use crate::sheet::{BoardSheet, Datum};
 use crate::stage::{Circuit, RectifierSheet, StageSheet};
 use crate::values::{self, Value};
 
@@ -17,12 +16,12 @@ pub struct Origins {
 
 impl Origins {
     /// Of a stage of a budget.
-    pub fn of(stage: &StageSheet, budget: &Budget) -> Self {
+    pub fn of(stage: &StageSheet, board: &BoardSheet, source_of_board: Option<&str>) -> Self {
         let mut sources = part_sources(stage);
-        if let Some(source) = &budget.source {
-            sources.push((Slot::Board, "board".into(), source.clone()));
+        if let Some(source) = source_of_board {
+            sources.push((Slot::Board, "board".into(), source.to_owned()));
         }
-        Origins { values: values::all(stage, &budget.board), sources }
+        Origins { values: values::all(stage, board), sources }
     }
 
     /// The value at a key path.

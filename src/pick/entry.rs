@@ -4,7 +4,6 @@ use serde::Serialize;
 use serde::ser::{SerializeMap, Serializer};
 
 use crate::ledger::{Mechanism, Slot};
-
 use crate::worst::ValueSet;
 
 use super::slice::Slice;

@@ -3,7 +3,6 @@
 use serde_json::Value;
 
 use crate::ledger::{ALL_MECHANISMS, ALL_SLOTS, Mechanism, Slot};
-
 use crate::worst::ValueSet;
 
 use super::By;

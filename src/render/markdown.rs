@@ -40,8 +40,11 @@ fn block(block: &Block) -> String {
 /// Each side of an equation on a line of its own, as code: nothing in it is markup.
 fn equation(step: &Equation) -> String {
     let code = |words: &str| printable(words).replace('`', "'");
-    let numbers =
-        if step.numbers == step.formula { String::new() } else { format!("    = {}\n", code(&step.numbers)) };
+    let numbers = if step.numbers == step.formula || step.numbers == step.result {
+        String::new()
+    } else {
+        format!("    = {}\n", code(&step.numbers))
+    };
     format!(
         "{}\n\n    {} = {}\n{numbers}    = {}\n\n{}\n",
         escape_line(&step.name),

@@ -1,11 +1,14 @@
 //! Documents into formats: one trait, one small file a format.
 
+mod html;
 mod markdown;
 mod panels;
+pub mod plot;
 mod text;
 
 use std::io::{self, Write};
 
+pub use html::Html;
 pub use markdown::Markdown;
 pub use text::Text;
 

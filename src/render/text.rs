@@ -75,7 +75,7 @@ impl Text {
         self.wrap(text, "", &printable(&step.name));
         let indent = " ".repeat(step.symbol.width() + 3);
         self.wrap(text, &format!("  {} = ", step.symbol), &printable(&step.formula));
-        if step.numbers != step.formula {
+        if step.numbers != step.formula && step.numbers != step.result {
             self.wrap(text, &format!("{indent}= "), &printable(&step.numbers));
         }
         self.wrap(text, &format!("{indent}= "), &format!("{BOLD}{}{PLAIN}", printable(&step.result)));

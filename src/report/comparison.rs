@@ -51,7 +51,7 @@ pub fn document(comparison: &Comparison<'_>) -> Document {
     document
 }
 
-fn rail(comparison: &Comparison<'_>) -> String {
+pub(super) fn rail(comparison: &Comparison<'_>) -> String {
     let budget = comparison.budget;
     let mut rail = words::set(budget.output_voltage, D::Voltage);
     if let Some(rated) = budget.rated_load {
@@ -77,7 +77,11 @@ fn stage_columns(comparison: &Comparison<'_>, first: &str) -> Vec<Column> {
 }
 
 /// A row with one cell a stage; stages that cannot run show a dash.
-fn row(comparison: &Comparison<'_>, name: &str, cell: impl Fn(&Record<'_>, &Detail) -> Cell) -> Vec<Cell> {
+pub(super) fn row(
+    comparison: &Comparison<'_>,
+    name: &str,
+    cell: impl Fn(&Record<'_>, &Detail) -> Cell,
+) -> Vec<Cell> {
     let mut cells = vec![Cell::text(name)];
     cells.extend(comparison.headline.iter().map(|record| match &record.outcome {
         Ok(detail) => cell(record, detail),
@@ -86,7 +90,7 @@ fn row(comparison: &Comparison<'_>, name: &str, cell: impl Fn(&Record<'_>, &Deta
     cells
 }
 
-fn summary(comparison: &Comparison<'_>) -> Table {
+pub(super) fn summary(comparison: &Comparison<'_>) -> Table {
     let mut table = Table::new("", stage_columns(comparison, "at the headline"));
     table.row(row(comparison, "efficiency", |record, detail| {
         let efficiency = detail.solved.efficiency().map_or(Cell::missing("no load"), Cell::efficiency);
@@ -168,7 +172,7 @@ fn watts_and_share(watts: f64, solved: &Solved) -> Cell {
     Cell::text(format!("{}  {:>6}", Cell::watts(watts).shown(), share_of(watts, solved)))
 }
 
-fn by_mechanism(comparison: &Comparison<'_>) -> Table {
+pub(super) fn by_mechanism(comparison: &Comparison<'_>) -> Table {
     let mut table = Table::new("", stage_columns(comparison, "mechanism"));
     let largest = |watts: &dyn Fn(&Solved) -> f64| {
         let solved = comparison.headline.iter().filter_map(|record| record.outcome.as_ref().ok());
@@ -234,7 +238,7 @@ fn books(candidate: &Candidate<'_>, wanted: impl Fn(&Account) -> bool) -> bool {
     candidate.accounts.iter().any(wanted)
 }
 
-fn by_part(comparison: &Comparison<'_>) -> Table {
+pub(super) fn by_part(comparison: &Comparison<'_>) -> Table {
     let mut table = Table::new("", stage_columns(comparison, "slot"));
     for slot in ALL_SLOTS {
         if !comparison.candidates.iter().any(|candidate| books(candidate, |account| account.slot() == slot)) {
@@ -253,7 +257,7 @@ fn by_part(comparison: &Comparison<'_>) -> Table {
 }
 
 /// All entries of one stage, the largest first, beside those with every part at 25 °C.
-fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table {
+pub(super) fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table {
     let columns = vec![
         Column::text("slot"),
         Column::text("part"),
@@ -306,7 +310,7 @@ fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>) -> Table 
     table
 }
 
-fn temperatures(comparison: &Comparison<'_>) -> Table {
+pub(super) fn temperatures(comparison: &Comparison<'_>) -> Table {
     let columns = vec![
         Column::text("stage"),
         Column::text("slot"),
@@ -400,7 +404,7 @@ fn kind_words(finding: &Finding) -> String {
     finding.kind.replace('_', " ")
 }
 
-fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
+pub(super) fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
     if comparison.crossovers.is_empty() {
         document.paragraph("No stage overtakes another within the loads of the grid.");
         return;
@@ -426,7 +430,7 @@ fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
     document.table(table);
 }
 
-fn findings(comparison: &Comparison<'_>, document: &mut Document) {
+pub(super) fn findings(comparison: &Comparison<'_>, document: &mut Document) {
     let columns =
         vec![Column::text("stage"), Column::text("severity"), Column::text("slot"), Column::text("finding")];
     let mut table = Table::new("", columns).with_keys(2);

@@ -78,7 +78,7 @@ fn equation(line: &Line) -> Equation {
     let mut authority =
         if law.number.is_empty() { law.source.to_owned() } else { format!("{}: {}", law.number, law.source) };
     if !law.limits.is_empty() {
-        authority.push_str(&format!("; holds for {}", law.limits));
+        authority.push_str(&format!("; valid: {}", law.limits));
     }
     Equation {
         name: line.name.clone(),

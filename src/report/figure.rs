@@ -80,8 +80,19 @@ pub struct Stack {
     pub y: Scale,
     /// Names of the places.
     pub places: Vec<String>,
-    /// Layers from the bottom: name and one value a place; `None` where the place has no value.
-    pub layers: Vec<(String, Vec<Option<f64>>)>,
+    /// Layers from the bottom.
+    pub layers: Vec<Layer>,
+}
+
+/// A layer of stacked bars.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Layer {
+    /// Written beside the last bar.
+    pub name: String,
+    /// Layers of one fill look alike in every figure.
+    pub fill: usize,
+    /// One value a place; `None` where the place has none.
+    pub values: Vec<Option<f64>>,
 }
 
 /// Numbers on shades.

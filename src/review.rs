@@ -1,0 +1,67 @@
+//! Review: everything about a budget in one document, for the design review.
+
+use std::io::{self, Write};
+
+use crate::answer::Answer;
+use crate::budget::Budget;
+use crate::candidate::Candidate;
+use crate::compare::Comparison;
+use crate::report::Document;
+use crate::report::review::{self, Material};
+use crate::sweep::Watch;
+
+/// What is asked.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct Request {
+    /// The stage whose requirements decide the exit code; any stage when absent.
+    pub stage: Option<String>,
+    /// A date to print; none by default, so that a rerun gives the same bytes.
+    pub date: Option<String>,
+    /// The ranking of the shortlist, when there is one.
+    pub shortlist: Option<Document>,
+}
+
+/// The whole budget for a design review.
+pub fn answer<'a>(budget: &'a Budget, request: &'a Request, watch: &'a Watch) -> impl Answer + 'a {
+    Question { budget, request, watch }
+}
+
+struct Question<'a> {
+    budget: &'a Budget,
+    request: &'a Request,
+    watch: &'a Watch,
+}
+
+impl Question<'_> {
+    fn with<T>(&self, render: impl FnOnce(&Comparison<'_>) -> T) -> T {
+        let candidates = Candidate::all(self.budget);
+        render(&Comparison::of(self.budget, &candidates, self.watch))
+    }
+}
+
+impl Answer for Question<'_> {
+    fn document(&self) -> Document {
+        self.with(|comparison| {
+            let Request { date, shortlist, .. } = self.request;
+            review::document(&Material { comparison, date: date.as_deref(), shortlist: shortlist.as_ref() })
+        })
+    }
+
+    /// The numbers behind the review: those of the comparison.
+    fn json(&self, out: &mut dyn Write) -> io::Result<()> {
+        self.with(|comparison| serde_json::to_writer_pretty(&mut *out, comparison))?;
+        writeln!(out)
+    }
+
+    fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
+        crate::compare::answer(self.budget, &crate::compare::Request::default(), self.watch).csv(out)
+    }
+
+    fn met(&self) -> bool {
+        self.with(|comparison| {
+            let named = self.request.stage.as_ref();
+            let stage = named.and_then(|name| comparison.candidates.iter().position(|c| c.name() == name));
+            comparison.requirements_met(stage)
+        })
+    }
+}
