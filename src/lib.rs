@@ -46,6 +46,7 @@ pub mod grid;
 pub mod headroom;
 pub mod heat;
 pub mod hints;
+pub mod import;
 pub mod infeasible;
 pub mod input;
 pub mod justify;

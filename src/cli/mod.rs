@@ -10,6 +10,7 @@ mod energy;
 mod evidence;
 mod failure;
 mod headroom;
+mod import;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
@@ -73,6 +74,7 @@ pub(crate) enum Verb {
     Evidence(evidence::Options),
     Tabulate(tabulate::Options),
     Pick(pick::Options),
+    Import(import::Options),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -93,6 +95,7 @@ impl Verb {
             Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Pick(options) => options.run(common),
+            Verb::Import(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),

@@ -13,7 +13,7 @@ use lossbook::sweep::Watch;
 
 use super::load::Subject;
 use super::options::{Common, Writing};
-use super::{Exit, Failure, desk, interrupt};
+use super::{Exit, Failure, desk, interrupt, terminal};
 
 /// Which part for each slot of the budget's shortlist, and which frequency.
 ///
@@ -116,7 +116,7 @@ impl Options {
         let mut slices = Vec::new();
         for file in &self.merge {
             let text = files::read_text(file).map_err(|fault| {
-                Failure::asked(format!("{} cannot be read: {fault}", shown(file)), fault.hint())
+                Failure::asked(format!("{} cannot be read: {fault}", terminal::shown(file)), fault.hint())
             })?;
             let slice = merge::read(&text.text).map_err(|reason| not_a_slice(file, &reason))?;
             slices.push(slice);
@@ -124,7 +124,7 @@ impl Options {
         let outcome = merge::merge(slices).map_err(|(file, reason)| {
             let hint = "name the JSON files of all slices of one run, each once";
             match file.and_then(|file| self.merge.get(file)) {
-                Some(file) => Failure::asked(format!("{}: {reason}", shown(file)), hint),
+                Some(file) => Failure::asked(format!("{}: {reason}", terminal::shown(file)), hint),
                 None => Failure::asked(reason, hint),
             }
         })?;
@@ -138,13 +138,9 @@ impl Options {
     }
 }
 
-fn shown(file: &Path) -> String {
-    printable(&file.display().to_string()).into_owned()
-}
-
 fn not_a_slice(file: &Path, reason: &str) -> Failure {
     let hint = "slices are written with `lossbook pick BUDGET --slice K/N --format json -o FILE`";
-    Failure::asked(format!("{} is no slice: {reason}", shown(file)), hint)
+    Failure::asked(format!("{} is no slice: {reason}", terminal::shown(file)), hint)
 }
 
 fn no_shortlist(name: &str) -> Failure {
