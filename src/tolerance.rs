@@ -138,12 +138,18 @@ impl Rig {
     /// # Errors
     /// Why the values contradict one another.
     pub fn fit(&self, settings: &[(usize, f64)]) -> Result<Stage, String> {
-        let (mut sheet, mut board) = (self.sheet.clone(), self.board.clone());
-        values::set_places(&mut sheet, &mut board, settings);
+        let (sheet, board) = self.sheets(settings);
         match values::contradiction(&sheet) {
             Some(reason) => Err(reason),
             None => Ok(Stage::on_rail(&sheet.circuit, self.output_voltage, &board, &self.coupling)),
         }
+    }
+
+    /// The sheets of the stage and of its board with some values moved.
+    pub fn sheets(&self, settings: &[(usize, f64)]) -> (StageSheet, BoardSheet) {
+        let (mut sheet, mut board) = (self.sheet.clone(), self.board.clone());
+        values::set_places(&mut sheet, &mut board, settings);
+        (sheet, board)
     }
 
     /// The stage with its typical values.

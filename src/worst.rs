@@ -10,7 +10,9 @@ use crate::fitted::Stage;
 use crate::grid::OperatingPoint;
 use crate::infeasible::Infeasible;
 use crate::model;
-use crate::tolerance::{Lever, Rig};
+use crate::sheet::BoardSheet;
+use crate::stage::StageSheet;
+use crate::tolerance::{Lever, Rig, Settings};
 
 /// The set of data-sheet values that an answer is computed with; every header, caption and file says which.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -23,6 +25,11 @@ pub enum ValueSet {
 }
 
 impl ValueSet {
+    /// The set of a name.
+    pub fn from_name(name: &str) -> Option<ValueSet> {
+        [ValueSet::Typical, ValueSet::Worst].into_iter().find(|set| set.name() == name)
+    }
+
     /// Name in files, captions and options.
     pub const fn name(self) -> &'static str {
         match self {
@@ -54,6 +61,33 @@ impl Deref for Fitted<'_> {
         match self {
             Fitted::Own(stage) => stage,
             Fitted::Shared(stage) => stage,
+        }
+    }
+}
+
+/// A stage with the set of values that is taken of it.
+#[derive(Debug)]
+pub enum Taken<'s> {
+    /// Typical values, fitted already.
+    Typical(&'s Stage),
+    /// At each point those that raise the loss there.
+    Worst(Box<WorstCase>),
+}
+
+impl<'s> Taken<'s> {
+    /// A set of a fitted stage; `rig` moves its values when they have to be.
+    pub fn of(values: ValueSet, stage: &'s Stage, rig: impl FnOnce() -> Rig) -> Self {
+        match values {
+            ValueSet::Typical => Taken::Typical(stage),
+            ValueSet::Worst => Taken::Worst(Box::new(WorstCase::new(rig()))),
+        }
+    }
+
+    /// The stage at a point.
+    pub fn at(&self, point: OperatingPoint) -> Fitted<'_> {
+        match self {
+            Taken::Typical(stage) => Fitted::Own(stage),
+            Taken::Worst(worst) => Fitted::Shared(worst.stage_at(point)),
         }
     }
 }
@@ -101,7 +135,7 @@ impl WorstCase {
         if let Some(stage) = self.known.read().unwrap_or_else(PoisonError::into_inner).get(&sides) {
             return stage.clone();
         }
-        let stage = Arc::new(self.combined(&sides));
+        let stage = Arc::new(self.rig.fit(&self.settings(&sides)).unwrap_or_else(|_| self.rig.typical()));
         self.known.write().unwrap_or_else(PoisonError::into_inner).insert(sides, stage.clone());
         stage
     }
@@ -130,15 +164,20 @@ impl WorstCase {
         self.sides.iter().map(side).collect()
     }
 
-    fn combined(&self, sides: &[Side]) -> Stage {
+    /// The sheets of the stage and of its board with the values taken at a point.
+    pub fn sheets_at(&self, point: OperatingPoint) -> (StageSheet, BoardSheet) {
+        self.rig.sheets(&self.settings(&self.sides_at(point)))
+    }
+
+    fn settings(&self, sides: &[Side]) -> Settings {
         let mut settings = Vec::new();
         for (lever, side) in self.levers.iter().zip(sides) {
             if *side != Side::Typical {
                 settings.extend(lever.settings(*side));
             }
         }
-        if let Ok(stage) = self.rig.fit(&settings) {
-            return stage;
+        if self.rig.fit(&settings).is_ok() {
+            return settings;
         }
         // limits that contradict one another: take them in turn, as far as they go together
         let mut kept = Vec::new();
@@ -149,7 +188,7 @@ impl WorstCase {
                 kept.truncate(before);
             }
         }
-        self.rig.fit(&kept).unwrap_or_else(|_| self.rig.typical())
+        kept
     }
 }
 

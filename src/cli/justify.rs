@@ -10,7 +10,7 @@ use lossbook::justify::{self, Request};
 use lossbook::ledger::{ALL_MECHANISMS, ALL_SLOTS, Mechanism, Slot};
 use lossbook::sweep::Watch;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Writing};
 use super::{Exit, Failure, desk};
 
@@ -40,12 +40,16 @@ pub(crate) struct Options {
     mechanism: Option<Mechanism>,
 
     #[command(flatten)]
+    values: Values,
+
+    #[command(flatten)]
     writing: Writing,
 }
 
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
-        let budget = self.subject.load()?;
+        let mut budget = self.subject.load()?;
+        self.values.apply(&mut budget);
         let request = Request {
             stage: self.subject.stage.clone(),
             at: self.at.unwrap_or_default(),

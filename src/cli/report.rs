@@ -7,7 +7,7 @@ use clap::{Args, ValueEnum};
 use lossbook::review::{self, Request};
 use lossbook::sweep::Watch;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Format, Writing};
 use super::{Exit, Failure, desk};
 
@@ -23,6 +23,9 @@ Examples:
 pub(crate) struct Options {
     #[command(flatten)]
     subject: Subject,
+
+    #[command(flatten)]
+    values: Values,
 
     /// A date to print; without it a rerun gives the same bytes.
     #[arg(long, value_name = "DATE")]
@@ -50,7 +53,8 @@ enum Kind {
 
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
-        let budget = self.subject.load()?;
+        let mut budget = self.subject.load()?;
+        self.values.apply(&mut budget);
         let watch = Arc::new(Watch::default());
         let request = Request { stage: self.subject.stage.clone(), date: self.date.clone(), shortlist: None };
         let format = match self.format {

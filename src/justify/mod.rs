@@ -176,10 +176,12 @@ type Written = (Vec<Line>, Vec<(Chapter, String)>);
 /// Writes every line of a solved point.
 fn write(candidate: &Candidate<'_>, detail: &Detail) -> Result<Written, Infeasible> {
     let solved = &detail.solved;
-    let origins = Origins::of(candidate.sheet, candidate.budget);
+    let (sheet, board) = candidate.sheets(solved.point);
+    let fitted = candidate.fitted(solved.point);
+    let origins = Origins::of((&sheet, &board), candidate.budget);
     let mut book = Book::new(&origins);
     coordinates(solved, &mut book);
-    match (&candidate.stage.kind, &candidate.sheet.circuit) {
+    match (&fitted.kind, &sheet.circuit) {
         (Kind::Linear(regulator), _) => {
             let contributions = model::linear(regulator, solved.output_voltage, &solved.point)?;
             linear::derive(regulator, &contributions, solved, &mut book);

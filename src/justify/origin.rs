@@ -3,8 +3,8 @@
 use crate::budget::Budget;
 use crate::ledger::Slot;
 use crate::report::words;
-use crate::sheet::Datum;
 use crate::sheet::common::Descriptive;
+use crate::sheet::{BoardSheet, Datum};
 use crate::stage::{Circuit, RectifierSheet, StageSheet};
 use crate::values::{self, Value};
 
@@ -16,13 +16,13 @@ pub struct Origins {
 }
 
 impl Origins {
-    /// Of a stage of a budget.
-    pub fn of(stage: &StageSheet, budget: &Budget) -> Self {
+    /// Of a stage and its board, with the values that are taken.
+    pub fn of((stage, board): (&StageSheet, &BoardSheet), budget: &Budget) -> Self {
         let mut sources = part_sources(stage);
         if let Some(source) = &budget.source {
             sources.push((Slot::Board, "board".into(), source.clone()));
         }
-        Origins { values: values::all(stage, &budget.board), sources }
+        Origins { values: values::all(stage, board), sources }
     }
 
     /// The value at a key path.

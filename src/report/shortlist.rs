@@ -7,7 +7,6 @@ use crate::pick::{By, NAMED, Picked, merit};
 use crate::report::number::{Form, show};
 use crate::report::{Cell, Column, Document, Severity, Table, shortlist_insight, words};
 use crate::units::Dimension as D;
-use crate::worst::ValueSet;
 
 /// Rows of tables that may be long.
 const MOST_ROWS: usize = 20;
@@ -58,11 +57,8 @@ pub fn document(picked: &Picked, budget: Option<&Budget>) -> Document {
 
 /// "lossbook 0.1.0 · rail · input 3f9a21c4 · stage · ... · typical values".
 pub(super) fn caption(outcome: &Outcome, what: &str) -> String {
-    let Outcome { version, budget, input, stage, .. } = outcome;
-    format!(
-        "lossbook {version} · {budget} · input {input} · {stage} · {what} · {} values",
-        ValueSet::Typical.name()
-    )
+    let Outcome { version, budget, input, stage, values, .. } = outcome;
+    format!("lossbook {version} · {budget} · input {input} · {stage} · {what} · {} values", values.name())
 }
 
 fn ways(outcome: &Outcome) -> String {
