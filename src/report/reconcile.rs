@@ -3,8 +3,9 @@
 use crate::absorb::{Absorber, Absorbers};
 use crate::budget::Budget;
 use crate::reconcile::{COVERAGE, Point, RESOLUTION, Reconciliation, Remainder, Verdict};
+use crate::report::figure::{ErrorPoint, Errors, Figure, Plot, Scale};
 use crate::report::number::{Form, show};
-use crate::report::{Cell, Column, Document, Severity, Table, bars, caption, words};
+use crate::report::{Block, Cell, Column, Document, Severity, Table, bars, caption, words};
 use crate::units::Dimension as D;
 
 /// Singles, and pairs, that are listed.
@@ -31,6 +32,7 @@ pub fn document(budget: &Budget, result: &Reconciliation) -> Document {
     ));
     document.table(points(result));
     document.heading(2, "Remainder over the load");
+    document.blocks.push(Block::Figure(figure(result)));
     document.list(remainder(budget, result));
     document.heading(2, "What could absorb it");
     absorbers(&result.absorbers, result, &mut document);
@@ -98,6 +100,43 @@ fn points(result: &Reconciliation) -> Table {
         ]);
     }
     table
+}
+
+/// Measured less booked over the load with error bars, and the three terms through them.
+fn figure(result: &Reconciliation) -> Figure {
+    let used = || result.points.iter().filter(|point| point.difference.is_some() && point.load > 0.0);
+    let points: Vec<ErrorPoint> = used()
+        .filter_map(|point| {
+            Some(ErrorPoint {
+                x: point.load,
+                y: point.difference?,
+                half: COVERAGE * point.measured_loss_sigma,
+                stands_out: point.verdict == Verdict::Disagrees,
+            })
+        })
+        .collect();
+    let mut loads: Vec<f64> = points.iter().map(|point| point.x).collect();
+    loads.sort_by(f64::total_cmp);
+    let curve = match &result.remainder {
+        None => Vec::new(),
+        Some(fit) => {
+            let at =
+                |load: f64| fit.constant.watts + fit.linear.volts * load + fit.quadratic.ohms * load * load;
+            loads.iter().map(|load| (*load, at(*load))).collect()
+        }
+    };
+    Figure {
+        title: "Measured less booked over the load".into(),
+        caption: format!("{} · bars are {COVERAGE:.0} standard uncertainties to either side", result.stage),
+        description: sentence(result),
+        plot: Plot::Errors(Errors {
+            x: Scale { title: "load".into(), form: Form::Setting(D::Current), log: true },
+            y: Scale { title: "measured less booked".into(), form: Form::Result(D::Power), log: false },
+            points,
+            curve,
+            curve_label: "remainder, three terms".into(),
+        }),
+    }
 }
 
 fn with_sigma(value: f64, sigma: f64, dimension: D) -> String {
