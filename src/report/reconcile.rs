@@ -2,6 +2,7 @@
 
 use crate::absorb::{Absorber, Absorbers};
 use crate::budget::Budget;
+use crate::grid::Axis;
 use crate::reconcile::{COVERAGE, Point, RESOLUTION, Reconciliation, Remainder, Verdict};
 use crate::report::figure::{ErrorPoint, Errors, Figure, Plot, Scale};
 use crate::report::number::{Form, show};
@@ -13,7 +14,7 @@ const LISTED: usize = 8;
 
 /// The whole answer: the sentence, the points, the remainder in words, what could absorb it.
 pub fn document(budget: &Budget, result: &Reconciliation) -> Document {
-    let mut document = Document::new(format!("{}: {} beside its bench", budget.name, result.stage));
+    let mut document = Document::new(format!("{}: bench of {}", budget.name, result.stage));
     document.fact("computed by", Cell::text(caption::origin(budget)));
     document.fact("stage", Cell::text(result.stage.clone()));
     document.verdict(sentence(result));
@@ -26,8 +27,8 @@ pub fn document(budget: &Budget, result: &Reconciliation) -> Document {
         "± is one standard uncertainty (JCGM 100): the stated accuracies of the four readings, taken as evenly \
          distributed and independent. A point disagrees beyond {COVERAGE:.0} of them; where {COVERAGE:.0} of them exceed \
          {:.0} % of the booked loss, agreement would mean nothing. The bars show measured less booked, {COVERAGE:.0} \
-         standard uncertainties to either side. What the parts' tolerances leave open is not in them: see `lossbook \
-         spread`.",
+         standard uncertainties to either side. What the parts' tolerances leave open is not in them: see \
+         lossbook spread.",
         100.0 * RESOLUTION
     ));
     document.table(points(result));
@@ -117,12 +118,14 @@ fn figure(result: &Reconciliation) -> Figure {
         .collect();
     let mut loads: Vec<f64> = points.iter().map(|point| point.x).collect();
     loads.sort_by(f64::total_cmp);
-    let curve = match &result.remainder {
+    let curve = || match &result.remainder {
         None => Vec::new(),
         Some(fit) => {
             let at =
                 |load: f64| fit.constant.watts + fit.linear.volts * load + fit.quadratic.ohms * load * load;
-            loads.iter().map(|load| (*load, at(*load))).collect()
+            let (Some(from), Some(to)) = (loads.first(), loads.last()) else { return Vec::new() };
+            let smooth = Axis::Range { from: *from, to: *to, points: 80, log: true };
+            smooth.values().map(|load| (load, at(load))).collect()
         }
     };
     Figure {
@@ -132,8 +135,8 @@ fn figure(result: &Reconciliation) -> Figure {
         plot: Plot::Errors(Errors {
             x: Scale { title: "load".into(), form: Form::Setting(D::Current), log: true },
             y: Scale { title: "measured less booked".into(), form: Form::Result(D::Power), log: false },
+            curve: curve(),
             points,
-            curve,
             curve_label: "remainder, three terms".into(),
         }),
     }
