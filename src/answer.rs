@@ -21,6 +21,11 @@ pub trait Answer {
     /// When `out` cannot be written.
     fn csv(&self, out: &mut dyn Write) -> io::Result<()>;
 
+    /// A spreadsheet with typed numbers, for answers that have one; a fault is in words.
+    fn spreadsheet(&self) -> Option<Result<Vec<u8>, String>> {
+        None
+    }
+
     /// False when a requirement fails: for the stage asked about, or for every stage.
     fn met(&self) -> bool {
         true

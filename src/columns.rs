@@ -1,7 +1,5 @@
 //! Points as rows of a CSV file: units in the headers, full precision, one column an account of the stages present.
 
-use std::io::Write;
-
 use crate::candidate::Candidate;
 use crate::findings::Severity;
 use crate::ledger::{ALL_SLOTS, Account, Slot};
@@ -12,6 +10,18 @@ use crate::record::Record;
 pub struct Columns {
     accounts: Vec<Account>,
     temperatures: Vec<Slot>,
+    stages: Vec<StageCells>,
+}
+
+/// What all rows of a stage have in common.
+#[derive(Clone, Debug)]
+struct StageCells {
+    /// Name in the budget.
+    stage: String,
+    /// Which of the accounts it books to.
+    booked: Vec<bool>,
+    /// The mechanisms that lack data.
+    not_modelled: String,
 }
 
 /// Columns before those of the accounts.
@@ -29,85 +39,141 @@ impl Columns {
             let unheated = matches!(slot, Slot::InputCapacitors | Slot::OutputCapacitors | Slot::Board);
             !unheated && candidates.iter().any(|candidate| candidate.part_names[slot.index()].is_some())
         };
-        Columns { accounts, temperatures: ALL_SLOTS.into_iter().filter(warm).collect() }
+        let stages = candidates.iter().map(|candidate| StageCells::of(candidate, &accounts)).collect();
+        Columns { temperatures: ALL_SLOTS.into_iter().filter(warm).collect(), stages, accounts }
     }
 
     /// The header line.
     pub fn header(&self) -> Vec<u8> {
-        let mut line = FIXED.to_owned();
+        format!("{}\n", self.titles().join(",")).into_bytes()
+    }
+
+    /// Titles with their units.
+    pub fn titles(&self) -> Vec<String> {
+        let mut titles: Vec<String> = FIXED.split(',').map(str::to_owned).collect();
         for account in &self.accounts {
-            line.push_str(&format!(",{}.{} [W]", account.slot().name(), account.mechanism().name()));
+            titles.push(format!("{}.{} [W]", account.slot().name(), account.mechanism().name()));
         }
         for slot in &self.temperatures {
-            line.push_str(&format!(",{}.temperature [degC]", slot.name()));
+            titles.push(format!("{}.temperature [degC]", slot.name()));
         }
-        line.push_str(",thermal_loop_gain,not_modelled,findings\n");
-        line.into_bytes()
+        titles.extend(["thermal_loop_gain", "not_modelled", "findings"].map(str::to_owned));
+        titles
     }
 
     /// Adds the line of one point.
     pub fn row(&self, record: &Record<'_>, line: &mut Vec<u8>) {
+        let mut fields = Line { line, begun: false };
+        self.fill(record, &mut fields);
+        fields.line.push(b'\n');
+    }
+
+    /// Hands the fields of one point over, one a title.
+    pub fn fill(&self, record: &Record<'_>, fields: &mut impl Fields) {
         let (candidate, point) = (record.candidate, &record.point);
-        text(line, candidate.name());
+        let Some(cells) = self.stages.iter().find(|cells| cells.stage == candidate.name()) else { return };
+        fields.text(candidate.name());
         match &record.outcome {
             Err(reason) => {
-                line.extend_from_slice(b",infeasible,");
-                text(line, &reason.to_string());
+                fields.text("infeasible");
+                fields.text(&reason.to_string());
             }
             Ok(detail) => {
                 let mode = detail.solved.waveform.map_or("linear", |waveform| waveform.mode.name());
-                line.push(b',');
-                text(line, mode);
-                line.push(b',');
+                fields.text(mode);
+                fields.text("");
             }
         }
-        number(line, Some(point.input_voltage));
-        number(line, Some(point.load));
-        number(line, Some(point.ambient));
-        number(line, (!candidate.sheet.is_linear()).then_some(point.switching_frequency));
+        fields.number(Some(point.input_voltage));
+        fields.number(Some(point.load));
+        fields.number(Some(point.ambient));
+        fields.number((!candidate.sheet.is_linear()).then_some(point.switching_frequency));
         let solved = record.outcome.as_ref().ok().map(|detail| &detail.solved);
         let waveform = solved.and_then(|solved| solved.waveform.as_ref());
-        number(line, waveform.map(|w| w.duty));
-        number(line, waveform.map(|w| w.ripple()));
-        number(line, waveform.map(|w| w.peak));
-        number(line, waveform.map(|w| w.valley));
-        number(line, waveform.map(|w| w.frequency));
-        number(line, solved.map(|solved| solved.input_power()));
-        number(line, solved.map(|solved| solved.output_power()));
-        number(line, solved.map(|solved| solved.loss()));
-        number(line, solved.and_then(|solved| solved.efficiency()));
-        for account in &self.accounts {
-            let booked = candidate.accounts.contains(account);
-            number(line, solved.filter(|_| booked).map(|solved| solved.ledger.get(*account)));
+        fields.number(waveform.map(|w| w.duty));
+        fields.number(waveform.map(|w| w.ripple()));
+        fields.number(waveform.map(|w| w.peak));
+        fields.number(waveform.map(|w| w.valley));
+        fields.number(waveform.map(|w| w.frequency));
+        fields.number(solved.map(|solved| solved.input_power()));
+        fields.number(solved.map(|solved| solved.output_power()));
+        fields.number(solved.map(|solved| solved.loss()));
+        fields.number(solved.and_then(|solved| solved.efficiency()));
+        for (account, booked) in self.accounts.iter().zip(&cells.booked) {
+            fields.number(solved.filter(|_| *booked).map(|solved| solved.ledger.get(*account)));
         }
         for slot in &self.temperatures {
-            number(line, solved.and_then(|solved| solved.temperatures[slot.index()]));
+            fields.number(solved.and_then(|solved| solved.temperatures[slot.index()]));
         }
-        number(line, record.outcome.as_ref().ok().map(|detail| detail.loop_gain));
-        line.push(b',');
-        let missing =
-            candidate.not_modelled.iter().map(|m| format!("{}.{}", m.slot.name(), m.mechanism.name()));
-        text(line, &missing.collect::<Vec<_>>().join(" "));
-        line.push(b',');
-        if let Ok(detail) = &record.outcome {
-            let grave = detail.findings.iter().filter(|finding| finding.severity > Severity::Note);
-            let kinds = grave.map(|f| format!("{}.{}:{}", f.slot.name(), f.kind, f.severity.name()));
-            text(line, &kinds.collect::<Vec<_>>().join(" "));
+        fields.number(record.outcome.as_ref().ok().map(|detail| detail.loop_gain));
+        fields.text(&cells.not_modelled);
+        let findings = record.outcome.as_ref().map_or(&[][..], |detail| &detail.findings);
+        let mut kinds = String::new();
+        for f in findings.iter().filter(|finding| finding.severity > Severity::Note) {
+            let gap = if kinds.is_empty() { "" } else { " " };
+            [gap, f.slot.name(), ".", f.kind, ":", f.severity.name()]
+                .iter()
+                .for_each(|part| kinds.push_str(part));
         }
-        line.push(b'\n');
+        fields.text(&kinds);
     }
 }
 
-/// Adds a comma and a number at full precision; nothing after the comma without one.
+impl StageCells {
+    fn of(candidate: &Candidate<'_>, accounts: &[Account]) -> Self {
+        let missing = candidate.not_modelled.iter();
+        let missing: Vec<String> =
+            missing.map(|m| format!("{}.{}", m.slot.name(), m.mechanism.name())).collect();
+        StageCells {
+            stage: candidate.name().to_owned(),
+            booked: accounts.iter().map(|account| candidate.accounts.contains(account)).collect(),
+            not_modelled: missing.join(" "),
+        }
+    }
+}
+
+/// Takes the fields of a point one by one.
+pub trait Fields {
+    /// Words; empty for none.
+    fn text(&mut self, words: &str);
+    /// A number at full precision, or none.
+    fn number(&mut self, value: Option<f64>);
+}
+
+/// Fields of a CSV line.
+struct Line<'a> {
+    line: &'a mut Vec<u8>,
+    begun: bool,
+}
+
+impl Line<'_> {
+    fn separate(&mut self) {
+        if self.begun {
+            self.line.push(b',');
+        }
+        self.begun = true;
+    }
+}
+
+impl Fields for Line<'_> {
+    fn text(&mut self, words: &str) {
+        self.separate();
+        text(self.line, words);
+    }
+
+    fn number(&mut self, value: Option<f64>) {
+        self.separate();
+        number(self.line, value);
+    }
+}
+
+/// Adds a number at full precision; nothing without one.
 fn number(line: &mut Vec<u8>, value: Option<f64>) {
-    line.push(b',');
     if let Some(value) = value.filter(|value| value.is_finite()) {
-        let _ = match value.abs() {
-            // short for whole numbers, exponents for the very small: both read back to the same bits
-            0.0 => line.write_all(b"0"),
-            size if !(1e-5..1e15).contains(&size) => write!(line, "{value:e}"),
-            _ => write!(line, "{value}"),
-        };
+        // the shortest digits that read back to the same bits, whole numbers without their ".0"; no negative zero
+        let mut digits = zmij::Buffer::new();
+        let digits = digits.format_finite(value + 0.0);
+        line.extend_from_slice(digits.strip_suffix(".0").unwrap_or(digits).as_bytes());
     }
 }
 
@@ -139,7 +205,7 @@ mod tests {
         for value in [0.0, 0.1, 1.0 / 3.0, 4e-7, -2.5e-12, 123_456.789, 1e22, 400e3] {
             let mut line = Vec::new();
             number(&mut line, Some(value));
-            let read: f64 = String::from_utf8(line).expect("ascii")[1..].parse().expect("a number");
+            let read: f64 = String::from_utf8(line).expect("ascii").parse().expect("a number");
             assert_eq!(read.to_bits(), value.to_bits());
         }
         let mut line = Vec::new();
@@ -147,6 +213,6 @@ mod tests {
         assert_eq!(line, b"\"'=HYPERLINK(\"\"x\"\")\"");
         let mut line = Vec::new();
         number(&mut line, Some(f64::NAN));
-        assert_eq!(line, b",");
+        assert_eq!(line, b"");
     }
 }

@@ -97,6 +97,11 @@ impl Answer for Question<'_> {
         crate::report::tables::document(self.budget, &self.candidates(), self.request)
     }
 
+    #[cfg(feature = "xlsx")]
+    fn spreadsheet(&self) -> Option<Result<Vec<u8>, String>> {
+        Some(crate::workbook::bytes(self.budget, &self.candidates()))
+    }
+
     fn json(&self, out: &mut dyn Write) -> io::Result<()> {
         let text = |text: &str| serde_json::to_string(text).map_err(io::Error::other);
         write!(

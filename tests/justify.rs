@@ -127,7 +127,11 @@ fn places(candidate: &Candidate<'_>) -> Vec<PartialPoint> {
 #[test]
 fn every_printed_equation_gives_its_printed_result() {
     let (mut lines, mut modes) = (0, std::collections::BTreeSet::new());
-    for budget in budgets() {
+    let worst = |mut budget: Budget| {
+        budget.values = lossbook::worst::ValueSet::Worst;
+        budget
+    };
+    for budget in budgets().into_iter().chain(budgets().into_iter().map(worst)) {
         for candidate in Candidate::all(&budget) {
             for at in places(&candidate) {
                 let request = Request { stage: Some(candidate.name().into()), at, ..Request::default() };

@@ -21,6 +21,10 @@ pub(crate) fn give(
     watch: &Arc<Watch>,
 ) -> Result<Exit, Failure> {
     let file = writing.output.as_deref().filter(|path| *path != Path::new("-"));
+    #[cfg(feature = "xlsx")]
+    if writing.format == Format::Xlsx {
+        return spreadsheet(answer, file);
+    }
     let streams = matches!(writing.format, Format::Csv | Format::Json);
     // a bar between rows on the same terminal would be worse than none
     let progress = (!streams || file.is_some() || !io::stdout().is_terminal()).then(|| Progress::of(watch));
@@ -32,8 +36,31 @@ pub(crate) fn give(
             drop(progress);
             page(writing, common).render(&document, out)
         }
+        #[cfg(feature = "xlsx")]
+        Format::Xlsx => Ok(()),
     })?;
     Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+}
+
+/// Writes a spreadsheet to a file.
+#[cfg(feature = "xlsx")]
+fn spreadsheet(answer: &dyn Answer, file: Option<&Path>) -> Result<Exit, Failure> {
+    if file.is_none() {
+        let hint = "name it with --output table.xlsx, or use --format csv";
+        return Err(Failure::asked("a spreadsheet goes to a file", hint));
+    }
+    match answer.spreadsheet() {
+        None => {
+            let hint =
+                "`lossbook tabulate BUDGET --format xlsx --output table.xlsx` does; or use --format csv";
+            Err(Failure::asked("this verb writes no spreadsheet", hint))
+        }
+        Some(Err(fault)) => Err(Failure::asked("the spreadsheet cannot be made", fault)),
+        Some(Ok(bytes)) => {
+            to(file, |out| out.write_all(&bytes))?;
+            Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+        }
+    }
 }
 
 /// The format of a page for people.

@@ -7,6 +7,7 @@ mod check;
 mod compare;
 mod desk;
 mod energy;
+mod evidence;
 mod failure;
 mod headroom;
 pub(crate) mod interrupt;
@@ -69,7 +70,9 @@ pub(crate) enum Verb {
     Compare(compare::Options),
     Justify(justify::Options),
     Report(report::Options),
+    Evidence(evidence::Options),
     Tabulate(tabulate::Options),
+    Pick(pick::Options),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -78,7 +81,6 @@ pub(crate) enum Verb {
     Energy(energy::Options),
     Reconcile(reconcile::Options),
     Rehearse(rehearse::Options),
-    Pick(pick::Options),
 }
 
 impl Verb {
@@ -88,14 +90,15 @@ impl Verb {
             Verb::Compare(options) => options.run(common),
             Verb::Justify(options) => options.run(common),
             Verb::Report(options) => options.run(common),
+            Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Pick(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
             Verb::Energy(options) => options.run(common),
             Verb::Headroom(options) => options.run(common),
-            Verb::Pick(options) => options.run(common),
             Verb::Reconcile(options) => options.run(common),
             Verb::Rehearse(options) => options.run(common),
         }

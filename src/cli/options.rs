@@ -78,4 +78,8 @@ pub(crate) enum Format {
     /// One page for a browser, without script, rounded.
     #[value(alias = "htm")]
     Html,
+    /// A spreadsheet with typed numbers and a chart, full precision; goes to a file.
+    #[cfg(feature = "xlsx")]
+    #[value(alias = "spreadsheet")]
+    Xlsx,
 }

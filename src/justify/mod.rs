@@ -178,7 +178,7 @@ fn write(candidate: &Candidate<'_>, detail: &Detail) -> Result<Written, Infeasib
     let solved = &detail.solved;
     let (sheet, board) = candidate.sheets(solved.point);
     let fitted = candidate.fitted(solved.point);
-    let origins = Origins::of((&sheet, &board), candidate.budget);
+    let origins = Origins::of(&sheet, &board, candidate.budget.source.as_deref());
     let mut book = Book::new(&origins);
     coordinates(solved, &mut book);
     match (&fitted.kind, &sheet.circuit) {

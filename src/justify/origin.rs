@@ -1,6 +1,5 @@
 //! Where a number comes from: part, key, typical or limit, test conditions, source.
 
-use crate::budget::Budget;
 use crate::ledger::Slot;
 use crate::report::words;
 use crate::sheet::common::Descriptive;
@@ -16,11 +15,11 @@ pub struct Origins {
 }
 
 impl Origins {
-    /// Of a stage and its board, with the values that are taken.
-    pub fn of((stage, board): (&StageSheet, &BoardSheet), budget: &Budget) -> Self {
+    /// Of a stage of a budget.
+    pub fn of(stage: &StageSheet, board: &BoardSheet, source_of_board: Option<&str>) -> Self {
         let mut sources = part_sources(stage);
-        if let Some(source) = &budget.source {
-            sources.push((Slot::Board, "board".into(), source.clone()));
+        if let Some(source) = source_of_board {
+            sources.push((Slot::Board, "board".into(), source.to_owned()));
         }
         Origins { values: values::all(stage, board), sources }
     }

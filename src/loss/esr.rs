@@ -36,6 +36,7 @@ pub enum End {
 
 /// Loss of a bank with the squared RMS current of E4 (A²): I_rms² ESR/n for one kind; several kinds share the current
 /// harmonic by harmonic (E40).
+#[inline(always)]
 pub fn esr(bank: &Bank, end: End, waveform: &Waveform, mean_square: f64) -> Esr {
     let watts = match bank.kinds.as_slice() {
         [] => 0.0,

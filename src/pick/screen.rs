@@ -13,7 +13,7 @@ use super::points::Extremes;
 /// Why a part cannot stand in a slot, in words; `None` when nothing speaks against it.
 ///
 /// `stage` holds the part, with the controller that it is judged with.
-pub fn unsuitable(
+pub(crate) fn unsuitable(
     (sheet, slot): (&AnySheet, Slot),
     stage: &StageSheet,
     budget: &Budget,

@@ -34,7 +34,7 @@ pub struct Part {
     /// Name in the library.
     pub name: Arc<str>,
     /// The data sheet.
-    pub sheet: AnySheet,
+    pub(crate) sheet: AnySheet,
     /// Price of all pieces in the slot.
     pub price: Option<f64>,
     /// Data that it lacks.
@@ -116,7 +116,7 @@ fn price(sheet: &AnySheet) -> Option<f64> {
 }
 
 /// Puts a part into a slot of a stage as it is meant; the number of pieces stays.
-pub fn put_sheet(stage: &mut StageSheet, slot: Slot, name: &Arc<str>, sheet: &AnySheet) {
+pub(crate) fn put_sheet(stage: &mut StageSheet, slot: Slot, name: &Arc<str>, sheet: &AnySheet) {
     fn put<T>(placed: &mut Placed<T>, name: &Arc<str>, sheet: &Arc<T>) {
         *placed = Placed { name: name.clone(), sheet: sheet.clone(), count: placed.count };
     }

@@ -25,6 +25,7 @@ mod cell;
 pub mod comparison;
 pub mod derivation;
 pub mod energy;
+pub mod evidence;
 pub mod figure;
 mod figures;
 pub mod headroom;

@@ -204,10 +204,7 @@ fn sources(comparison: &Comparison<'_>) -> Table {
     ];
     let mut table = Table::new(caption::budget(comparison.budget, "parts"), columns).with_keys(2);
     for candidate in comparison.candidates {
-        let origins = crate::justify::origin::Origins::of(
-            (candidate.sheet, &comparison.budget.board),
-            comparison.budget,
-        );
+        let origins = crate::justify::origin::Origins::of(candidate.sheet, &comparison.budget.board, None);
         for part in candidate.sheet.parts() {
             let source = origins.source_of(part.slot, part.name);
             table.row(vec![

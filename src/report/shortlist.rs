@@ -1,6 +1,7 @@
 //! The ranking of a shortlist as a document.
 
 use crate::budget::Budget;
+
 use crate::ledger::Slot;
 use crate::pick::entry::{Disqualified, Entry, Outcome};
 use crate::pick::{By, NAMED, Picked, merit};
@@ -21,6 +22,9 @@ pub fn document(picked: &Picked, budget: Option<&Budget>) -> Document {
         document.fact("headline", Cell::text(words::point(&budget.headline)));
     }
     document.fact("combinations", Cell::text(ways(outcome)));
+    let values = outcome.values.name();
+    let origin = format!("lossbook {} · input {} · {values} values", outcome.version, outcome.input);
+    document.fact("computed by", Cell::text(origin));
     if !outcome.complete {
         let text = "Incomplete: the search was interrupted; this is the best of what was seen.";
         document.notice(Severity::Critical, text);
@@ -55,10 +59,9 @@ pub fn document(picked: &Picked, budget: Option<&Budget>) -> Document {
     document
 }
 
-/// "lossbook 0.1.0 · rail · input 3f9a21c4 · stage · ... · typical values".
+/// "synchronous · leaders over the load": the origin stands at the top of the answer once.
 pub(super) fn caption(outcome: &Outcome, what: &str) -> String {
-    let Outcome { version, budget, input, stage, values, .. } = outcome;
-    format!("lossbook {version} · {budget} · input {input} · {stage} · {what} · {} values", values.name())
+    format!("{} · {what}", outcome.stage)
 }
 
 fn ways(outcome: &Outcome) -> String {

@@ -49,7 +49,7 @@ pub fn document(budget: &Budget, candidates: &[Candidate<'_>], request: &Request
 }
 
 /// Values of an axis; 0 where the stage has none.
-pub(super) fn values(candidate: &Candidate<'_>, axis: AxisName) -> Vec<f64> {
+pub(crate) fn values(candidate: &Candidate<'_>, axis: AxisName) -> Vec<f64> {
     candidate.grid.axis(axis).map_or_else(|| vec![0.0], |axis| axis.values().collect())
 }
 
@@ -130,7 +130,7 @@ fn across_voltages(candidate: &Candidate<'_>, request: &Request, at: PartialPoin
 }
 
 /// All values of an axis, or both ends and some between when they are many.
-pub(super) fn chosen(values: &[f64]) -> Vec<f64> {
+pub(crate) fn chosen(values: &[f64]) -> Vec<f64> {
     if values.len() <= MOST_VOLTAGES {
         return values.to_vec();
     }

@@ -4,14 +4,14 @@ use std::fmt::Write as _;
 use std::path::{Path, PathBuf};
 
 /// splitmix64 (Steele, Lea and Flood 2014, from memory): small, and the same everywhere.
-pub struct Dice(u64);
+pub(crate) struct Dice(u64);
 
 impl Dice {
-    pub fn new(seed: u64) -> Self {
+    pub(crate) fn new(seed: u64) -> Self {
         Dice(seed)
     }
 
-    pub fn bits(&mut self) -> u64 {
+    pub(crate) fn bits(&mut self) -> u64 {
         self.0 = self.0.wrapping_add(0x9e37_79b9_7f4a_7c15);
         let mut z = self.0;
         z = (z ^ (z >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);
@@ -19,40 +19,40 @@ impl Dice {
         z ^ (z >> 31)
     }
 
-    pub fn below(&mut self, n: u64) -> u64 {
+    pub(crate) fn below(&mut self, n: u64) -> u64 {
         self.bits() % n
     }
 
     /// Evenly between two numbers.
-    pub fn between(&mut self, low: f64, high: f64) -> f64 {
+    pub(crate) fn between(&mut self, low: f64, high: f64) -> f64 {
         low + (high - low) * (self.bits() >> 11) as f64 / (1u64 << 53) as f64
     }
 
     /// Evenly in ratio between two numbers.
-    pub fn ratio(&mut self, low: f64, high: f64) -> f64 {
+    pub(crate) fn ratio(&mut self, low: f64, high: f64) -> f64 {
         low * (high / low).powf(self.between(0.0, 1.0))
     }
 
-    pub fn chance(&mut self, share: f64) -> bool {
+    pub(crate) fn chance(&mut self, share: f64) -> bool {
         self.between(0.0, 1.0) < share
     }
 }
 
 /// What a random shortlist is like.
 #[derive(Clone, Copy)]
-pub struct Shape {
-    pub seed: u64,
-    pub mosfets: usize,
-    pub inductors: usize,
-    pub frequencies: usize,
+pub(crate) struct Shape {
+    pub(crate) seed: u64,
+    pub(crate) mosfets: usize,
+    pub(crate) inductors: usize,
+    pub(crate) frequencies: usize,
     /// Share of the parts that lack a datum, have no price or too low a rating.
-    pub trouble: f64,
-    pub loads: usize,
-    pub light_load: &'static str,
+    pub(crate) trouble: f64,
+    pub(crate) loads: usize,
+    pub(crate) light_load: &'static str,
 }
 
 impl Shape {
-    pub fn small(seed: u64) -> Self {
+    pub(crate) fn small(seed: u64) -> Self {
         let mut dice = Dice::new(seed ^ 0x5eed);
         Shape {
             seed,
@@ -121,7 +121,7 @@ fn inductor(dice: &mut Dice, name: &str, trouble: f64, text: &mut String) {
 }
 
 /// Writes parts and budget into a folder and returns the budget's path.
-pub fn write(folder: &Path, shape: Shape) -> PathBuf {
+pub(crate) fn write(folder: &Path, shape: Shape) -> PathBuf {
     let mut dice = Dice::new(shape.seed);
     let mut parts = String::from("mosfets:\n");
     for place in 0..shape.mosfets {
@@ -158,4 +158,40 @@ pub fn write(folder: &Path, shape: Shape) -> PathBuf {
     let path = folder.join("rail.yaml");
     std::fs::write(&path, budget).expect("the budget is written");
     path
+}
+
+/// Place of the best combination at the headline when one value of the winner's part is changed, in every combination
+/// that has this part in this slot.
+#[allow(dead_code)]
+pub(crate) fn first_with(
+    budget: &lossbook::budget::Budget,
+    winner: &lossbook::pick::entry::Entry,
+    path: &str,
+    factor: f64,
+) -> u64 {
+    use lossbook::candidate::Candidate;
+    use lossbook::pick::By;
+    use lossbook::pick::space::Space;
+    let shortlist = budget.shortlist.as_ref().expect("a shortlist");
+    let space = Space::of(budget, &budget.stages[0], shortlist, By::HeadlineLoss);
+    let bare = |path: &str| -> String {
+        let pieces = path.split('[').map(|piece| piece.split_once(']').map_or(piece, |(_, rest)| rest));
+        pieces.collect()
+    };
+    let mut best = (f64::INFINITY, 0);
+    for place in 0..space.len() {
+        let mut sheet = space.sheet(&space.digits(place));
+        let mut board = budget.board.clone();
+        lossbook::values::walk(&mut sheet, &mut board, &mut |value, datum| {
+            if bare(value.path) == path && winner.part(value.slot) == Some(value.part) {
+                datum.value *= factor;
+            }
+        });
+        let candidate = Candidate::new(budget, &sheet);
+        let loss = candidate.evaluate(candidate.headline()).map_or(f64::INFINITY, |solved| solved.loss());
+        if loss < best.0 {
+            best = (loss, place);
+        }
+    }
+    best.1
 }
