@@ -31,6 +31,7 @@ pub mod candidate;
 pub mod columns;
 pub mod compare;
 pub mod crossover;
+pub mod diff;
 pub mod draws;
 pub mod edges;
 pub mod files;
@@ -69,6 +70,6 @@ pub mod tolerance;
 pub mod units;
 pub mod values;
 pub mod waveform;
-pub mod worst;
 #[cfg(feature = "xlsx")]
 pub mod workbook;
+pub mod worst;

@@ -35,14 +35,16 @@ fn sheets_hold_the_numbers_of_the_csv() {
         answer(&budget, &request, &watch).csv(&mut csv).expect("written");
         let mut rows = csv::Reader::from_reader(csv.as_slice());
         let headers = rows.headers().expect("a header").clone();
-        let records: Vec<csv::StringRecord> = rows.records().map(|record| record.expect("a record")).collect();
+        let records: Vec<csv::StringRecord> =
+            rows.records().map(|record| record.expect("a record")).collect();
         let mut book = open(bytes(&budget));
         let names = book.sheet_names();
         assert_eq!(names.len(), budget.stages.len() + 1);
         let mut numbers = 0;
         for stage in &budget.stages {
             let sheet = book.worksheet_range(&stage.name).expect("a sheet a stage");
-            let titles: Vec<String> = sheet.rows().next().expect("a header").iter().map(ToString::to_string).collect();
+            let titles: Vec<String> =
+                sheet.rows().next().expect("a header").iter().map(ToString::to_string).collect();
             let of_stage: Vec<_> = records.iter().filter(|record| record[0] == stage.name).collect();
             assert!(sheet.rows().count() > of_stage.len());
             for (record, cells) in of_stage.iter().zip(sheet.rows().skip(1)) {
@@ -54,7 +56,10 @@ fn sheets_hold_the_numbers_of_the_csv() {
                     match (&cells[place], text.parse::<f64>()) {
                         (Data::Float(value), Ok(expected)) => {
                             // the file format keeps 15 to 17 digits
-                            assert!((value - expected).abs() <= 1e-14 * expected.abs(), "{title} {value} {expected}");
+                            assert!(
+                                (value - expected).abs() <= 1e-14 * expected.abs(),
+                                "{title} {value} {expected}"
+                            );
                             numbers += 1;
                         }
                         (Data::Empty, _) => assert!(text.is_empty(), "{title}: {text}"),

@@ -51,7 +51,8 @@ fn spreadsheet(answer: &dyn Answer, file: Option<&Path>) -> Result<Exit, Failure
     }
     match answer.spreadsheet() {
         None => {
-            let hint = "`lossbook tabulate BUDGET --format xlsx --output table.xlsx` does; or use --format csv";
+            let hint =
+                "`lossbook tabulate BUDGET --format xlsx --output table.xlsx` does; or use --format csv";
             Err(Failure::asked("this verb writes no spreadsheet", hint))
         }
         Some(Err(fault)) => Err(Failure::asked("the spreadsheet cannot be made", fault)),

@@ -6,6 +6,7 @@ pub(crate) mod bug;
 mod check;
 mod compare;
 mod desk;
+mod diff;
 mod failure;
 pub(crate) mod interrupt;
 mod justify;
@@ -65,6 +66,7 @@ pub(crate) enum Verb {
     Justify(justify::Options),
     Report(report::Options),
     Tabulate(tabulate::Options),
+    Diff(diff::Options),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -79,6 +81,7 @@ impl Verb {
             Verb::Justify(options) => options.run(common),
             Verb::Report(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Diff(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),

@@ -2,8 +2,8 @@
 
 use crate::ledger::Slot;
 use crate::report::words;
-use crate::sheet::{BoardSheet, Datum};
 use crate::sheet::common::Descriptive;
+use crate::sheet::{BoardSheet, Datum};
 use crate::stage::{Circuit, RectifierSheet, StageSheet};
 use crate::values::{self, Value};
 

@@ -24,6 +24,7 @@ pub mod caption;
 mod cell;
 pub mod comparison;
 pub mod derivation;
+pub mod difference;
 pub mod figure;
 mod figures;
 mod layout;
