@@ -11,9 +11,11 @@ mod failure;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
+mod manual;
 mod options;
 mod progress;
 mod report;
+mod schema;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -67,6 +69,9 @@ pub(crate) enum Verb {
     Report(report::Options),
     Tabulate(tabulate::Options),
     Diff(diff::Options),
+    Schema(schema::Options),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -82,6 +87,9 @@ impl Verb {
             Verb::Report(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Diff(options) => options.run(common),
+            Verb::Schema(options) => options.run(common),
+            Verb::Completions(options) => options.run(common),
+            Verb::Manual(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),

@@ -26,6 +26,7 @@ pub mod quantity;
 mod reader;
 pub mod render;
 mod sample;
+mod schema;
 mod shelf;
 mod shortlist;
 mod show;
@@ -38,6 +39,7 @@ use std::path::{Path, PathBuf};
 use crate::budget::{Budget, InputFile, Library};
 pub use check::{Checked, check_path};
 pub use error::{InputError, InputErrors, Severity, Warning};
+pub use schema::{SCHEMAS, schema};
 pub use template::{TEMPLATES, template};
 
 /// A library with its warnings and the files it was read from.
