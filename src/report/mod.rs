@@ -26,6 +26,7 @@ pub mod comparison;
 pub mod derivation;
 pub mod energy;
 pub mod evidence;
+pub mod difference;
 pub mod figure;
 mod figures;
 pub mod headroom;
