@@ -33,7 +33,6 @@ pub mod quantity;
 mod reader;
 pub mod render;
 pub(crate) mod sample;
-mod sample;
 mod schema;
 mod shelf;
 mod shortlist;
