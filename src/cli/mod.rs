@@ -6,19 +6,23 @@ pub(crate) mod bug;
 mod check;
 mod compare;
 mod desk;
+mod diff;
 mod energy;
 mod evidence;
 mod failure;
 mod headroom;
+mod import;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
+mod manual;
 mod options;
 mod pick;
 mod progress;
 mod reconcile;
 mod rehearse;
 mod report;
+mod schema;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -73,6 +77,11 @@ pub(crate) enum Verb {
     Evidence(evidence::Options),
     Tabulate(tabulate::Options),
     Pick(pick::Options),
+    Import(import::Options),
+    Diff(diff::Options),
+    Schema(schema::Options),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -93,6 +102,11 @@ impl Verb {
             Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
             Verb::Pick(options) => options.run(common),
+            Verb::Import(options) => options.run(common),
+            Verb::Diff(options) => options.run(common),
+            Verb::Schema(options) => options.run(common),
+            Verb::Completions(options) => options.run(common),
+            Verb::Manual(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),

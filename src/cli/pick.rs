@@ -11,9 +11,9 @@ use lossbook::pick::{self, By, Question, Request, Slice, merge};
 use lossbook::printable::printable;
 use lossbook::sweep::Watch;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Writing};
-use super::{Exit, Failure, desk, interrupt};
+use super::{Exit, Failure, desk, interrupt, terminal};
 
 /// Which part for each slot of the budget's shortlist, and which frequency.
 ///
@@ -54,6 +54,9 @@ pub(crate) struct Options {
     merge: Vec<PathBuf>,
 
     #[command(flatten)]
+    values: Values,
+
+    #[command(flatten)]
     writing: Writing,
 }
 
@@ -88,7 +91,10 @@ impl From<Order> for By {
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         let load = |file: &PathBuf| Subject { budget: file.clone(), stage: None }.load();
-        let budget = self.budget.as_ref().map(load).transpose()?;
+        let mut budget = self.budget.as_ref().map(load).transpose()?;
+        if let Some(budget) = &mut budget {
+            self.values.apply(budget);
+        }
         let watch = Arc::new(Watch::default());
         if !self.merge.is_empty() {
             let outcome = self.merged(budget.as_ref())?;
@@ -116,7 +122,7 @@ impl Options {
         let mut slices = Vec::new();
         for file in &self.merge {
             let text = files::read_text(file).map_err(|fault| {
-                Failure::asked(format!("{} cannot be read: {fault}", shown(file)), fault.hint())
+                Failure::asked(format!("{} cannot be read: {fault}", terminal::shown(file)), fault.hint())
             })?;
             let slice = merge::read(&text.text).map_err(|reason| not_a_slice(file, &reason))?;
             slices.push(slice);
@@ -124,7 +130,7 @@ impl Options {
         let outcome = merge::merge(slices).map_err(|(file, reason)| {
             let hint = "name the JSON files of all slices of one run, each once";
             match file.and_then(|file| self.merge.get(file)) {
-                Some(file) => Failure::asked(format!("{}: {reason}", shown(file)), hint),
+                Some(file) => Failure::asked(format!("{}: {reason}", terminal::shown(file)), hint),
                 None => Failure::asked(reason, hint),
             }
         })?;
@@ -138,13 +144,9 @@ impl Options {
     }
 }
 
-fn shown(file: &Path) -> String {
-    printable(&file.display().to_string()).into_owned()
-}
-
 fn not_a_slice(file: &Path, reason: &str) -> Failure {
     let hint = "slices are written with `lossbook pick BUDGET --slice K/N --format json -o FILE`";
-    Failure::asked(format!("{} is no slice: {reason}", shown(file)), hint)
+    Failure::asked(format!("{} is no slice: {reason}", terminal::shown(file)), hint)
 }
 
 fn no_shortlist(name: &str) -> Failure {

@@ -159,7 +159,7 @@ pub(crate) fn put_sheet(stage: &mut StageSheet, slot: Slot, name: &Arc<str>, she
 #[derive(Clone, Debug)]
 #[allow(missing_docs)] // named as the kinds of part
 pub enum FittedPart {
-    Mosfet(Mosfet),
+    Mosfet(Box<Mosfet>),
     Diode(Diode),
     Inductor(Inductor),
     Bank(Bank),
@@ -173,13 +173,13 @@ pub fn take_fitted(stage: &Stage, slot: Slot) -> Option<FittedPart> {
         (Kind::Linear(regulator), Slot::Regulator) => Some(FittedPart::Regulator(regulator.clone())),
         (Kind::Linear(_), _) => None,
         (Kind::Switched(stage), slot) => match (slot, &stage.rectifier) {
-            (Slot::HighSide, _) => Some(FittedPart::Mosfet(stage.high_side.clone())),
+            (Slot::HighSide, _) => Some(FittedPart::Mosfet(Box::new(stage.high_side.clone()))),
             (Slot::Inductor, _) => Some(FittedPart::Inductor(stage.inductor.clone())),
             (Slot::Controller, _) => Some(FittedPart::Controller(stage.controller.clone())),
             (Slot::InputCapacitors, _) => Some(FittedPart::Bank(stage.input_bank.clone())),
             (Slot::OutputCapacitors, _) => Some(FittedPart::Bank(stage.output_bank.clone())),
             (Slot::LowSide, Rectifier::Synchronous { low_side, .. }) => {
-                Some(FittedPart::Mosfet(low_side.clone()))
+                Some(FittedPart::Mosfet(Box::new(low_side.clone())))
             }
             (Slot::ParallelSchottky, Rectifier::Synchronous { schottky: Some(diode), .. })
             | (Slot::FreewheelDiode, Rectifier::Diode(diode)) => Some(FittedPart::Diode(diode.clone())),

@@ -3,6 +3,8 @@
 use std::fmt::Write as _;
 use std::path::{Path, PathBuf};
 
+use lossbook::files::write_whole;
+
 /// splitmix64 (Steele, Lea and Flood 2014, from memory): small, and the same everywhere.
 pub(crate) struct Dice(u64);
 
@@ -154,9 +156,9 @@ pub(crate) fn write(folder: &Path, shape: Shape) -> PathBuf {
     );
     let library = folder.join("parts");
     std::fs::create_dir_all(&library).expect("a folder for the parts");
-    std::fs::write(library.join("random.yaml"), parts).expect("the parts are written");
+    write_whole(&library.join("random.yaml"), parts.as_bytes()).expect("the parts are written");
     let path = folder.join("rail.yaml");
-    std::fs::write(&path, budget).expect("the budget is written");
+    write_whole(&path, budget.as_bytes()).expect("the budget is written");
     path
 }
 
