@@ -267,9 +267,10 @@ fn image(prepared: &Prepared<'_>, heated: &Heated) -> Nodes {
 /// The image with K P of the other slots.
 #[inline(never)]
 fn coupled(prepared: &Prepared<'_>, waveform: Waveform, watts: Nodes, mut image: Nodes) -> Nodes {
-    let heat = &prepared.stage.heat;
-    for (node, heating, k) in &heat.coupling {
-        let source = heat.slots.iter().position(|slot| *slot == Some(*heating));
+    let synchronous = prepared.stage.is_synchronous();
+    for (node, heating, k) in &prepared.stage.heat.coupling {
+        // a controller without a thermal resistance has no temperature, but it warms others
+        let source = (0..NODES).find(|source| slot_of(*source, synchronous) == *heating);
         image[*node] +=
             k * source.map_or_else(|| unheated_watts(prepared, &waveform, *heating), |source| watts[source]);
     }
