@@ -61,7 +61,7 @@ pub fn edge_durations(
         t_ri: given
             .t_ri
             .unwrap_or_else(|| current_rise(mosfet, gate, i_on, per_overdrive, &mut near.current_rise)),
-        t_fv: given.t_fv.unwrap_or_else(|| q_gd * gate.r_on * per_overdrive),
+        t_fv: given.t_fv.unwrap_or(q_gd * gate.r_on * per_overdrive),
         t_rv: given.t_rv.unwrap_or_else(|| q_gd * gate.r_off / mosfet.plateau(i_off)),
         t_fi: current_fall(mosfet, gate.r_off, i_off, &mut near.current_fall),
     }

@@ -33,6 +33,7 @@ pub mod candidate;
 pub mod columns;
 pub mod compare;
 pub mod crossover;
+pub mod diff;
 pub mod draws;
 pub mod edges;
 pub mod energy;

@@ -27,6 +27,8 @@ pub struct Request {
     pub seed: u64,
 }
 
+/// Draws when nothing else is asked for.
+pub const DRAWS: u64 = 10_000;
 /// Contributors that are listed for each stage.
 pub const CONTRIBUTORS: usize = 10;
 /// Input voltages of the interior scan.

@@ -120,6 +120,7 @@ fn grid(candidate: &Candidate<'_>, sheet: &mut Worksheet) -> Result<u16, XlsxErr
     let formats: Vec<Format> = titles.iter().map(|title| number_format(title)).collect();
     header(sheet, 0, &titles)?;
     sheet.set_freeze_panes(1, 2)?;
+    sheet.set_landscape().set_print_fit_to_pages(1, 0);
     let mut row = 1;
     let mut start = 0;
     while start < candidate.grid.len() {
@@ -216,7 +217,8 @@ fn curves(candidate: &Candidate<'_>, name: &str, first: u16, sheet: &mut Workshe
         chart.x_axis().set_log_base(10);
     }
     chart.y_axis().set_name("efficiency").set_max(1.0).set_num_format("0%");
-    chart.set_width(720).set_height(400);
+    chart.legend().set_position(rust_xlsxwriter::ChartLegendPosition::Bottom);
+    chart.set_width(720).set_height(420);
     let beside = first + u16::try_from(volts.len()).unwrap_or(0) + 2;
     sheet.insert_chart(1, beside, &chart)?;
     Ok(())

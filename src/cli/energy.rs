@@ -3,6 +3,7 @@
 use std::sync::Arc;
 
 use clap::Args;
+use lossbook::budget::Budget;
 use lossbook::energy::{self, Request};
 use lossbook::sweep::Watch;
 
@@ -32,12 +33,19 @@ impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         let mut budget = self.subject.load()?;
         self.values.apply(&mut budget);
-        if budget.profile.is_empty() {
-            let hint = "add time shares to the budget: `profile: [{share: 70 %, load: 1 A}, {share: 30 %, load: 8 A}]`";
-            return Err(Failure::asked("energy needs a profile, and the budget has none", hint));
-        }
+        needs_profile(&budget)?;
         let request = Request { stage: self.subject.stage.clone() };
         let watch = Arc::new(Watch::default());
         desk::give(&energy::answer(&budget, &request), &self.writing, common, &watch)
     }
+}
+
+/// Fails without a profile.
+pub(crate) fn needs_profile(budget: &Budget) -> Result<(), Failure> {
+    if budget.profile.is_empty() {
+        let hint =
+            "add time shares to the budget: `profile: [{share: 70 %, load: 1 A}, {share: 30 %, load: 8 A}]`";
+        return Err(Failure::asked("energy needs a profile, and the budget has none", hint));
+    }
+    Ok(())
 }

@@ -6,6 +6,7 @@ pub(crate) mod bug;
 mod check;
 mod compare;
 mod desk;
+mod diff;
 mod energy;
 mod evidence;
 mod failure;
@@ -14,12 +15,14 @@ mod import;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
+mod manual;
 mod options;
 mod pick;
 mod progress;
 mod reconcile;
 mod rehearse;
 mod report;
+mod schema;
 mod sensitivity;
 mod spread;
 mod tabulate;
@@ -75,6 +78,10 @@ pub(crate) enum Verb {
     Tabulate(tabulate::Options),
     Pick(pick::Options),
     Import(import::Options),
+    Diff(diff::Options),
+    Schema(schema::Options),
+    Completions(manual::Completions),
+    Manual(manual::Manual),
     Check(check::Options),
     Template(template::Options),
     Spread(spread::Options),
@@ -96,6 +103,10 @@ impl Verb {
             Verb::Tabulate(options) => options.run(common),
             Verb::Pick(options) => options.run(common),
             Verb::Import(options) => options.run(common),
+            Verb::Diff(options) => options.run(common),
+            Verb::Schema(options) => options.run(common),
+            Verb::Completions(options) => options.run(common),
+            Verb::Manual(options) => options.run(common),
             Verb::Check(options) => options.run(common),
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),

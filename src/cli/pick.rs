@@ -11,7 +11,7 @@ use lossbook::pick::{self, By, Question, Request, Slice, merge};
 use lossbook::printable::printable;
 use lossbook::sweep::Watch;
 
-use super::load::Subject;
+use super::load::{Subject, Values};
 use super::options::{Common, Writing};
 use super::{Exit, Failure, desk, interrupt, terminal};
 
@@ -54,6 +54,9 @@ pub(crate) struct Options {
     merge: Vec<PathBuf>,
 
     #[command(flatten)]
+    values: Values,
+
+    #[command(flatten)]
     writing: Writing,
 }
 
@@ -88,7 +91,10 @@ impl From<Order> for By {
 impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         let load = |file: &PathBuf| Subject { budget: file.clone(), stage: None }.load();
-        let budget = self.budget.as_ref().map(load).transpose()?;
+        let mut budget = self.budget.as_ref().map(load).transpose()?;
+        if let Some(budget) = &mut budget {
+            self.values.apply(budget);
+        }
         let watch = Arc::new(Watch::default());
         if !self.merge.is_empty() {
             let outcome = self.merged(budget.as_ref())?;

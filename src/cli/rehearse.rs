@@ -45,10 +45,7 @@ impl Options {
     pub(crate) fn run(&self, _: &Common) -> Result<Exit, Failure> {
         let budget = self.subject.load()?;
         let stage = self.subject.only_stage(&budget)?;
-        let Some(accuracy) = budget.bench else {
-            let hint = "add `bench: {input_voltage: 0.1 %, input_current: 0.2 %, output_voltage: 0.1 %, output_current: 0.2 %}` to the budget";
-            return Err(Failure::asked("the budget does not say how accurate the bench is", hint));
-        };
+        let Some(accuracy) = budget.bench else { return Err(super::reconcile::no_accuracy()) };
         let sheet = budget.stages.iter().find(|sheet| sheet.name == stage);
         let mut hidden = Vec::new();
         for text in &self.hide {

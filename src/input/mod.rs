@@ -33,6 +33,7 @@ pub mod quantity;
 mod reader;
 pub mod render;
 pub(crate) mod sample;
+mod schema;
 mod shelf;
 mod shortlist;
 mod show;
@@ -46,6 +47,7 @@ use std::path::{Path, PathBuf};
 use crate::budget::{Budget, InputFile, Library};
 pub use check::{Checked, check_path};
 pub use error::{InputError, InputErrors, Severity, Warning};
+pub use schema::{SCHEMAS, schema};
 pub use template::{TEMPLATES, template};
 
 /// A library with its warnings and the files it was read from.

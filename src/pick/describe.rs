@@ -23,6 +23,7 @@ pub fn outcome(space: &Space<'_>, plan: Plan, found: &Found) -> Outcome {
     Outcome {
         version: env!("CARGO_PKG_VERSION").into(),
         budget: space.budget.name.clone(),
+        values: space.budget.values,
         input: space.budget.fingerprint(),
         stage: space.base.name.clone(),
         currency: space.budget.currency.clone(),

@@ -112,6 +112,8 @@ pub struct Outcome {
     pub version: String,
     /// Name of the budget.
     pub budget: String,
+    /// Set of data-sheet values that was taken.
+    pub values: ValueSet,
     /// Fingerprint of all inputs.
     pub input: String,
     /// Name of the stage.
@@ -148,7 +150,7 @@ impl Outcome {
     pub fn entries<M: SerializeMap>(&self, map: &mut M) -> Result<(), M::Error> {
         map.serialize_entry("lossbook", &self.version)?;
         map.serialize_entry("budget", &self.budget)?;
-        map.serialize_entry("values", ValueSet::Typical.name())?;
+        map.serialize_entry("values", &self.values)?;
         map.serialize_entry("input", &self.input)?;
         map.serialize_entry("currency", &self.currency)?;
         map.serialize_entry("stage", &self.stage)?;

@@ -1,10 +1,10 @@
 //! One combination: its value, or why it has none.
 
-use crate::fitted::Stage;
 use crate::infeasible::Infeasible;
 use crate::ledger::Slot;
 use crate::limits::Limits;
 use crate::model;
+use crate::worst::Taken;
 
 use super::By;
 use super::points::{Points, holds};
@@ -36,7 +36,7 @@ pub struct Fault {
 ///
 /// Every term of a value is 0 or more, or a maximum: what has been added up so far is a lower bound of the value.
 pub fn judge(
-    (stage, limits): (&Stage, &Limits),
+    (stage, limits): (&Taken<'_>, &Limits),
     (points, by): (&Points, By),
     (start, cut): (f64, f64),
     solved: &mut u64,
@@ -48,6 +48,7 @@ pub fn judge(
     for (place, point) in points.list.iter().enumerate() {
         let fault = |slot, kind| Judgement::Disqualified(Fault { slot, kind, point: place });
         *solved += 1;
+        let stage = &*stage.at(*point);
         let here = match model::evaluate(stage, *point) {
             Ok(here) => here,
             Err(reason) => {

@@ -22,10 +22,7 @@ pub fn read(text: &str) -> Result<Outcome, String> {
     let json: Value = serde_json::from_str(text).map_err(|error| format!("it is no JSON: {error}"))?;
     let text = |key: &str| string(&json, key);
     let by = By::from_name(&text("by")?).ok_or("`by` is no known order of ranking")?;
-    let values = ValueSet::Typical.name();
-    if text("values")? != values {
-        return Err(format!("its values are not {values}"));
-    }
+    let values = ValueSet::from_name(&text("values")?).ok_or("`values` is no known set of values")?;
     let slice = match json.get("slice").and_then(Value::as_array).map(Vec::as_slice) {
         Some([number, of]) => Slice {
             number: number.as_u64().ok_or("`slice` is no pair of numbers")?,
@@ -37,6 +34,7 @@ pub fn read(text: &str) -> Result<Outcome, String> {
     Ok(Outcome {
         version: text("lossbook")?,
         budget: text("budget")?,
+        values,
         input: text("input")?,
         stage: text("stage")?,
         currency: json.get("currency").and_then(Value::as_str).map(Into::into),
@@ -81,8 +79,11 @@ pub fn merge(slices: Vec<Outcome>) -> Result<Outcome, Wrong> {
                 "it ranks another budget or other parts than the first file; run all slices from the same inputs",
             );
         }
-        if (slice.by, slice.top, slice.exhaustive) != (first.by, first.top, first.exhaustive) {
-            return wrong("it was run with another --by, --top or --exhaustive than the first file");
+        let asked = |slice: &Outcome| (slice.by, slice.top, slice.exhaustive, slice.values);
+        if asked(slice) != asked(&first) {
+            return wrong(
+                "it was run with another --by, --top, --exhaustive or --values than the first file",
+            );
         }
         if slice.slice.of != of {
             return wrong(&format!("it is one of {} slices, the first file one of {of}", slice.slice.of));

@@ -8,7 +8,9 @@ use crate::sheet::form::Faults;
 use crate::sheet::form::Form;
 use crate::stage::{Circuit, RectifierSheet, StageSheet};
 use crate::sweep;
+use crate::tolerance::Rig;
 use crate::values;
+use crate::worst::Taken;
 
 use super::By;
 use super::space::{Digits, Space};
@@ -148,10 +150,11 @@ fn changed(space: &Space<'_>, digits: &[usize], (path, slot): (&str, Slot), chan
 /// What is ranked by, lower being better; infinite where it cannot run.
 fn value(space: &Space<'_>, sheet: &StageSheet, digits: &[usize]) -> f64 {
     let stage = Stage::fit(sheet, space.budget);
+    let taken = Taken::of(space.budget.values, &stage, || Rig::new(space.budget, sheet));
     let points = space.points_of(digits);
     let mut total = space.by.floor();
     for (point, weight) in points.list.iter().zip(&points.weights) {
-        let Ok(solved) = model::evaluate(&stage, *point) else { return f64::INFINITY };
+        let Ok(solved) = model::evaluate(&taken.at(*point), *point) else { return f64::INFINITY };
         total = match space.by {
             By::JunctionMargin => {
                 let margin = crate::ratings::junction_margin(sheet, &solved);

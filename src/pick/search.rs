@@ -5,6 +5,8 @@ use std::ops::Range;
 use crate::fitted::Stage;
 use crate::limits::Limits;
 use crate::sweep::{self, Watch};
+use crate::tolerance::Rig;
+use crate::worst::Taken;
 
 use super::judge::{Fault, Judgement, judge};
 use super::slice::Slice;
@@ -130,7 +132,9 @@ impl Found {
             };
             before.clone_from(&digits);
             let points = space.points_of(&digits);
-            match judge((stage, limits), (points, space.by), (start, cut), &mut self.solved) {
+            let taken =
+                Taken::of(space.budget.values, stage, || Rig::new(space.budget, &space.sheet(&digits)));
+            match judge((&taken, limits), (points, space.by), (start, cut), &mut self.solved) {
                 Judgement::Abandoned => self.abandoned += 1,
                 Judgement::Disqualified(fault) => self.count(fault, place, 1),
                 Judgement::Value(value) => {

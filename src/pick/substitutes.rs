@@ -7,7 +7,9 @@ use crate::limits::Limits;
 use crate::report::words;
 use crate::stage::StageSheet;
 use crate::sweep;
+use crate::tolerance::Rig;
 use crate::units::Dimension;
+use crate::worst::Taken;
 
 use super::judge::{Judgement, judge};
 use super::space::{Digits, Space};
@@ -85,7 +87,8 @@ fn substitute(space: &Space<'_>, digits: Digits, digit: usize) -> Option<Substit
     let (stage, limits) = (Stage::fit(&sheet, space.budget), Limits::of(&sheet));
     let start = if space.by.starts_at_price() { space.price(&digits)? } else { space.by.floor() };
     let points = space.points_of(&digits);
-    match judge((&stage, &limits), (points, space.by), (start, f64::INFINITY), &mut 0) {
+    let taken = Taken::of(space.budget.values, &stage, || Rig::new(space.budget, &sheet));
+    match judge((&taken, &limits), (points, space.by), (start, f64::INFINITY), &mut 0) {
         Judgement::Value(value) => {
             let candidate = Candidate::new(space.budget, &sheet);
             let loss = candidate.evaluate(candidate.headline()).ok()?.loss();

@@ -24,6 +24,7 @@ pub mod caption;
 mod cell;
 pub mod comparison;
 pub mod derivation;
+pub mod difference;
 pub mod energy;
 pub mod evidence;
 pub mod figure;

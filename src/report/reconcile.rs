@@ -2,9 +2,11 @@
 
 use crate::absorb::{Absorber, Absorbers};
 use crate::budget::Budget;
+use crate::grid::Axis;
 use crate::reconcile::{COVERAGE, Point, RESOLUTION, Reconciliation, Remainder, Verdict};
+use crate::report::figure::{ErrorPoint, Errors, Figure, Plot, Scale};
 use crate::report::number::{Form, show};
-use crate::report::{Cell, Column, Document, Severity, Table, bars, caption, words};
+use crate::report::{Block, Cell, Column, Document, Severity, Table, bars, caption, words};
 use crate::units::Dimension as D;
 
 /// Singles, and pairs, that are listed.
@@ -12,7 +14,7 @@ const LISTED: usize = 8;
 
 /// The whole answer: the sentence, the points, the remainder in words, what could absorb it.
 pub fn document(budget: &Budget, result: &Reconciliation) -> Document {
-    let mut document = Document::new(format!("{}: {} beside its bench", budget.name, result.stage));
+    let mut document = Document::new(format!("{}: bench of {}", budget.name, result.stage));
     document.fact("computed by", Cell::text(caption::origin(budget)));
     document.fact("stage", Cell::text(result.stage.clone()));
     document.verdict(sentence(result));
@@ -25,12 +27,13 @@ pub fn document(budget: &Budget, result: &Reconciliation) -> Document {
         "± is one standard uncertainty (JCGM 100): the stated accuracies of the four readings, taken as evenly \
          distributed and independent. A point disagrees beyond {COVERAGE:.0} of them; where {COVERAGE:.0} of them exceed \
          {:.0} % of the booked loss, agreement would mean nothing. The bars show measured less booked, {COVERAGE:.0} \
-         standard uncertainties to either side. What the parts' tolerances leave open is not in them: see `lossbook \
-         spread`.",
+         standard uncertainties to either side. What the parts' tolerances leave open is not in them: see \
+         lossbook spread.",
         100.0 * RESOLUTION
     ));
     document.table(points(result));
     document.heading(2, "Remainder over the load");
+    document.blocks.push(Block::Figure(figure(result)));
     document.list(remainder(budget, result));
     document.heading(2, "What could absorb it");
     absorbers(&result.absorbers, result, &mut document);
@@ -98,6 +101,45 @@ fn points(result: &Reconciliation) -> Table {
         ]);
     }
     table
+}
+
+/// Measured less booked over the load with error bars, and the three terms through them.
+fn figure(result: &Reconciliation) -> Figure {
+    let used = || result.points.iter().filter(|point| point.difference.is_some() && point.load > 0.0);
+    let points: Vec<ErrorPoint> = used()
+        .filter_map(|point| {
+            Some(ErrorPoint {
+                x: point.load,
+                y: point.difference?,
+                half: COVERAGE * point.measured_loss_sigma,
+                stands_out: point.verdict == Verdict::Disagrees,
+            })
+        })
+        .collect();
+    let mut loads: Vec<f64> = points.iter().map(|point| point.x).collect();
+    loads.sort_by(f64::total_cmp);
+    let curve = || match &result.remainder {
+        None => Vec::new(),
+        Some(fit) => {
+            let at =
+                |load: f64| fit.constant.watts + fit.linear.volts * load + fit.quadratic.ohms * load * load;
+            let (Some(from), Some(to)) = (loads.first(), loads.last()) else { return Vec::new() };
+            let smooth = Axis::Range { from: *from, to: *to, points: 80, log: true };
+            smooth.values().map(|load| (load, at(load))).collect()
+        }
+    };
+    Figure {
+        title: "Measured less booked over the load".into(),
+        caption: format!("{} · bars are {COVERAGE:.0} standard uncertainties to either side", result.stage),
+        description: sentence(result),
+        plot: Plot::Errors(Errors {
+            x: Scale { title: "load".into(), form: Form::Setting(D::Current), log: true },
+            y: Scale { title: "measured less booked".into(), form: Form::Result(D::Power), log: false },
+            curve: curve(),
+            points,
+            curve_label: "remainder, three terms".into(),
+        }),
+    }
 }
 
 fn with_sigma(value: f64, sigma: f64, dimension: D) -> String {

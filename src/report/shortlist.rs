@@ -8,7 +8,6 @@ use crate::pick::{By, NAMED, Picked, merit};
 use crate::report::number::{Form, show};
 use crate::report::{Cell, Column, Document, Severity, Table, shortlist_insight, words};
 use crate::units::Dimension as D;
-use crate::worst::ValueSet;
 
 /// Rows of tables that may be long.
 const MOST_ROWS: usize = 20;
@@ -23,7 +22,7 @@ pub fn document(picked: &Picked, budget: Option<&Budget>) -> Document {
         document.fact("headline", Cell::text(words::point(&budget.headline)));
     }
     document.fact("combinations", Cell::text(ways(outcome)));
-    let values = ValueSet::Typical.name();
+    let values = outcome.values.name();
     let origin = format!("lossbook {} · input {} · {values} values", outcome.version, outcome.input);
     document.fact("computed by", Cell::text(origin));
     if !outcome.complete {

@@ -35,14 +35,14 @@ pub(crate) fn exponential(m: &Matrix, t: f64) -> Matrix {
 /// Solution of a x = b for three unknowns, by elimination with the largest pivot.
 pub(crate) fn solve(mut a: Matrix, mut b: State) -> State {
     for column in 0..3 {
-        let pivot = (column..3).max_by(|p, q| a[*p][column].abs().total_cmp(&a[*q][column].abs())).unwrap();
+        let pivot = (column..3).max_by(|p, q| a[*p][column].abs().total_cmp(&a[*q][column].abs()));
+        let pivot = pivot.unwrap_or(column);
         a.swap(column, pivot);
         b.swap(column, pivot);
         for row in column + 1..3 {
             let share = a[row][column] / a[column][column];
-            for other in column..3 {
-                a[row][other] -= share * a[column][other];
-            }
+            let above = a[column];
+            a[row] = std::array::from_fn(|place| a[row][place] - share * above[place]);
             b[row] -= share * b[column];
         }
     }
