@@ -12,12 +12,17 @@ pub const ACTIVE_SHARES: [f64; 4] = [0.25, 0.50, 0.75, 1.00];
 /// Regulation (EU) 2019/1782 averages so for mains-fed external supplies; an on-board rail borrows the load points and the
 /// averaging, nothing else of it.
 pub fn mean_active(candidate: &Candidate<'_>, point: OperatingPoint, rated: f64) -> Result<f64, Infeasible> {
-    let mut sum = 0.0;
-    for share in ACTIVE_SHARES {
+    let mut efficiencies = [0.0; ACTIVE_SHARES.len()];
+    for (efficiency, share) in efficiencies.iter_mut().zip(ACTIVE_SHARES) {
         let solved = candidate.evaluate(point.with(AxisName::Load, share * rated))?;
-        sum += solved.efficiency().unwrap_or(0.0);
+        *efficiency = solved.efficiency().unwrap_or(0.0);
     }
-    Ok(sum / ACTIVE_SHARES.len() as f64)
+    Ok(mean_of_shares(efficiencies))
+}
+
+/// Arithmetic mean of the efficiencies at the four shares.
+pub fn mean_of_shares(efficiencies: [f64; ACTIVE_SHARES.len()]) -> f64 {
+    efficiencies.iter().sum::<f64>() / ACTIVE_SHARES.len() as f64
 }
 
 /// Mean powers of a profile.

@@ -3,6 +3,7 @@
 use std::path::PathBuf;
 use std::sync::Arc;
 
+use crate::bench::Accuracy;
 use crate::grid::{Axis, Grid, OperatingPoint, PartialPoint};
 use crate::ledger::Slot;
 use crate::sheet::{
@@ -104,17 +105,17 @@ pub struct ProfilePoint {
     pub at: PartialPoint,
 }
 
-/// Stated accuracies of the bench's instruments, as fractions of the reading and of the range.
+/// Stated accuracies of the bench's instruments.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct BenchAccuracy {
     /// Input voltage.
-    pub input_voltage: f64,
+    pub input_voltage: Accuracy,
     /// Input current.
-    pub input_current: f64,
+    pub input_current: Accuracy,
     /// Output voltage.
-    pub output_voltage: f64,
+    pub output_voltage: Accuracy,
     /// Output current.
-    pub output_current: f64,
+    pub output_current: Accuracy,
 }
 
 /// What may stand in each slot of a stage; a slot not named keeps its part.

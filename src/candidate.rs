@@ -11,6 +11,7 @@ use crate::infeasible::Infeasible;
 use crate::ledger::{Account, SLOTS, Slot};
 use crate::model::{self, Prepared, Solved};
 use crate::ratings;
+use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 use crate::tolerance::Rig;
 use crate::worst::{Fitted, ValueSet, WorstCase};
@@ -127,6 +128,14 @@ impl<'a> Candidate<'a> {
         match &self.worst {
             None => Fitted::Own(&self.stage),
             Some(worst) => Fitted::Shared(worst.stage_at(point)),
+        }
+    }
+
+    /// The sheets of the stage and of its board at a point, with the values that are taken there.
+    pub fn sheets(&self, point: OperatingPoint) -> (StageSheet, BoardSheet) {
+        match &self.worst {
+            None => (self.sheet.clone(), self.budget.board.clone()),
+            Some(worst) => worst.sheets_at(point),
         }
     }
 

@@ -1,7 +1,5 @@
 //! Points as rows of a CSV file: units in the headers, full precision, one column an account of the stages present.
 
-use std::io::Write;
-
 use crate::candidate::Candidate;
 use crate::findings::Severity;
 use crate::ledger::{ALL_SLOTS, Account, Slot};
@@ -12,6 +10,18 @@ use crate::record::Record;
 pub struct Columns {
     accounts: Vec<Account>,
     temperatures: Vec<Slot>,
+    stages: Vec<StageCells>,
+}
+
+/// What all rows of a stage have in common.
+#[derive(Clone, Debug)]
+struct StageCells {
+    /// Name in the budget.
+    stage: String,
+    /// Which of the accounts it books to.
+    booked: Vec<bool>,
+    /// The mechanisms that lack data.
+    not_modelled: String,
 }
 
 /// Columns before those of the accounts.
@@ -29,7 +39,8 @@ impl Columns {
             let unheated = matches!(slot, Slot::InputCapacitors | Slot::OutputCapacitors | Slot::Board);
             !unheated && candidates.iter().any(|candidate| candidate.part_names[slot.index()].is_some())
         };
-        Columns { accounts, temperatures: ALL_SLOTS.into_iter().filter(warm).collect() }
+        let stages = candidates.iter().map(|candidate| StageCells::of(candidate, &accounts)).collect();
+        Columns { temperatures: ALL_SLOTS.into_iter().filter(warm).collect(), stages, accounts }
     }
 
     /// The header line.
@@ -58,8 +69,9 @@ impl Columns {
     }
 
     /// Hands the fields of one point over, one a title.
-    pub fn fill(&self, record: &Record<'_>, fields: &mut dyn Fields) {
+    pub fn fill(&self, record: &Record<'_>, fields: &mut impl Fields) {
         let (candidate, point) = (record.candidate, &record.point);
+        let Some(cells) = self.stages.iter().find(|cells| cells.stage == candidate.name()) else { return };
         fields.text(candidate.name());
         match &record.outcome {
             Err(reason) => {
@@ -87,21 +99,36 @@ impl Columns {
         fields.number(solved.map(|solved| solved.output_power()));
         fields.number(solved.map(|solved| solved.loss()));
         fields.number(solved.and_then(|solved| solved.efficiency()));
-        for account in &self.accounts {
-            let booked = candidate.accounts.contains(account);
-            fields.number(solved.filter(|_| booked).map(|solved| solved.ledger.get(*account)));
+        for (account, booked) in self.accounts.iter().zip(&cells.booked) {
+            fields.number(solved.filter(|_| *booked).map(|solved| solved.ledger.get(*account)));
         }
         for slot in &self.temperatures {
             fields.number(solved.and_then(|solved| solved.temperatures[slot.index()]));
         }
         fields.number(record.outcome.as_ref().ok().map(|detail| detail.loop_gain));
-        let missing =
-            candidate.not_modelled.iter().map(|m| format!("{}.{}", m.slot.name(), m.mechanism.name()));
-        fields.text(&missing.collect::<Vec<_>>().join(" "));
+        fields.text(&cells.not_modelled);
         let findings = record.outcome.as_ref().map_or(&[][..], |detail| &detail.findings);
-        let grave = findings.iter().filter(|finding| finding.severity > Severity::Note);
-        let kinds = grave.map(|f| format!("{}.{}:{}", f.slot.name(), f.kind, f.severity.name()));
-        fields.text(&kinds.collect::<Vec<_>>().join(" "));
+        let mut kinds = String::new();
+        for f in findings.iter().filter(|finding| finding.severity > Severity::Note) {
+            let gap = if kinds.is_empty() { "" } else { " " };
+            [gap, f.slot.name(), ".", f.kind, ":", f.severity.name()]
+                .iter()
+                .for_each(|part| kinds.push_str(part));
+        }
+        fields.text(&kinds);
+    }
+}
+
+impl StageCells {
+    fn of(candidate: &Candidate<'_>, accounts: &[Account]) -> Self {
+        let missing = candidate.not_modelled.iter();
+        let missing: Vec<String> =
+            missing.map(|m| format!("{}.{}", m.slot.name(), m.mechanism.name())).collect();
+        StageCells {
+            stage: candidate.name().to_owned(),
+            booked: accounts.iter().map(|account| candidate.accounts.contains(account)).collect(),
+            not_modelled: missing.join(" "),
+        }
     }
 }
 
@@ -143,12 +170,10 @@ impl Fields for Line<'_> {
 /// Adds a number at full precision; nothing without one.
 fn number(line: &mut Vec<u8>, value: Option<f64>) {
     if let Some(value) = value.filter(|value| value.is_finite()) {
-        let _ = match value.abs() {
-            // short for whole numbers, exponents for the very small: both read back to the same bits
-            0.0 => line.write_all(b"0"),
-            size if !(1e-5..1e15).contains(&size) => write!(line, "{value:e}"),
-            _ => write!(line, "{value}"),
-        };
+        // the shortest digits that read back to the same bits, whole numbers without their ".0"; no negative zero
+        let mut digits = zmij::Buffer::new();
+        let digits = digits.format_finite(value + 0.0);
+        line.extend_from_slice(digits.strip_suffix(".0").unwrap_or(digits).as_bytes());
     }
 }
 

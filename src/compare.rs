@@ -281,7 +281,7 @@ fn bands(budget: &Budget, candidates: &[Candidate<'_>], crossovers: &[Crossover]
 }
 
 /// Smallest load above zero and largest load of the grid, A.
-fn load_range(budget: &Budget) -> Option<(f64, f64)> {
+pub(crate) fn load_range(budget: &Budget) -> Option<(f64, f64)> {
     let axis = budget.grid.axis(AxisName::Load)?;
     let (from, to) = match axis {
         crate::grid::Axis::List(values) => {

@@ -1,11 +1,13 @@
 //! Edges of the switch node (E13-E16c): plateau, edge times, node capacitance and its energy.
 
+use crate::loss::gate_drive;
 use crate::near::{Memory, NearLogarithm};
+use crate::parts::controller::DriverLaw;
 use crate::parts::junction::JunctionCharge;
 use crate::parts::mosfet::Mosfet;
 
 /// A MOSFET behind its driver.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct GateLoop {
     /// Gate voltage while on, V.
     pub v_gate: f64,
@@ -13,6 +15,16 @@ pub struct GateLoop {
     pub r_on: f64,
     /// Driver and gate resistance while discharging, Ω.
     pub r_off: f64,
+    /// Share of the gate power that heats the MOSFET (E21).
+    pub own_share: f64,
+}
+
+impl GateLoop {
+    /// Gate resistance of a MOSFET behind a driver, Ω, at a gate voltage, V.
+    pub fn of(v_gate: f64, r_g: f64, driver: &DriverLaw) -> Self {
+        let own_share = gate_drive::own_share(r_g, [driver.r_source, driver.r_sink]);
+        GateLoop { v_gate, r_on: driver.r_source + r_g, r_off: driver.r_sink + r_g, own_share }
+    }
 }
 
 /// The four edge times, s.
@@ -44,19 +56,34 @@ pub fn edge_durations(
     near: &mut Memory,
 ) -> EdgeDurations {
     let given = &mosfet.edge_times;
+    let per_overdrive = 1.0 / (gate.v_gate - mosfet.plateau(i_on));
     EdgeDurations {
-        t_ri: given.t_ri.unwrap_or_else(|| current_rise(mosfet, gate, i_on, &mut near.current_rise)),
-        t_fv: given.t_fv.unwrap_or_else(|| q_gd * gate.r_on / (gate.v_gate - mosfet.plateau(i_on))),
+        t_ri: given
+            .t_ri
+            .unwrap_or_else(|| current_rise(mosfet, gate, i_on, per_overdrive, &mut near.current_rise)),
+        t_fv: given.t_fv.unwrap_or(q_gd * gate.r_on * per_overdrive),
         t_rv: given.t_rv.unwrap_or_else(|| q_gd * gate.r_off / mosfet.plateau(i_off)),
         t_fi: current_fall(mosfet, gate.r_off, i_off, &mut near.current_fall),
     }
 }
 
 #[inline(always)]
-fn current_rise(mosfet: &Mosfet, gate: &GateLoop, current: f64, near: &mut NearLogarithm) -> f64 {
+fn current_rise(
+    mosfet: &Mosfet,
+    gate: &GateLoop,
+    current: f64,
+    per_overdrive: f64,
+    near: &mut NearLogarithm,
+) -> f64 {
     let (v_th, v_pl) = (mosfet.v_th, mosfet.plateau(current));
-    let charging = gate.r_on * mosfet.gate_capacitance * near.at((gate.v_gate - v_th) / (gate.v_gate - v_pl));
-    charging + mosfet.l_source * current / (gate.v_gate - 0.5 * (v_th + v_pl))
+    let charging = gate.r_on * mosfet.gate_capacitance * near.at((gate.v_gate - v_th) * per_overdrive);
+    charging + inductive(mosfet, current, gate.v_gate - 0.5 * (v_th + v_pl))
+}
+
+/// Time that the common source inductance adds while the driver has `v` volts left for it, s.
+#[inline(always)]
+fn inductive(mosfet: &Mosfet, current: f64, v: f64) -> f64 {
+    if mosfet.l_source > 0.0 { mosfet.l_source * current / v } else { 0.0 }
 }
 
 /// Time in which the channel current falls from `current` to zero, s (t_fi of E15), unless it was measured.
@@ -66,8 +93,8 @@ pub fn current_fall(mosfet: &Mosfet, r_off: f64, current: f64, near: &mut NearLo
         return given;
     }
     let (v_th, v_pl) = (mosfet.v_th, mosfet.plateau(current));
-    let discharging = r_off * mosfet.gate_capacitance * near.at(v_pl / v_th);
-    discharging + mosfet.l_source * current / (0.5 * (v_th + v_pl))
+    let discharging = r_off * mosfet.gate_capacitance * near.at(v_pl * mosfet.per_threshold);
+    discharging + inductive(mosfet, current, 0.5 * (v_th + v_pl))
 }
 
 /// Capacitance of the switch node: that of the high side and that of whatever is between the node and ground.

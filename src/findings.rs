@@ -3,10 +3,10 @@
 use std::fmt;
 
 use crate::fitted::{Kind, Rectifier, Stage};
+use crate::gaps::{Effect, Gaps};
 use crate::ledger::{Account, Mechanism, Slot};
-use crate::sheet::common::Descriptive;
-use crate::sheet::{BoardSheet, Datum, InductorSheet, MosfetSheet};
-use crate::stage::{Circuit, RectifierSheet, StageSheet, SwitchedSheet};
+use crate::sheet::BoardSheet;
+use crate::stage::{Circuit, RectifierSheet, StageSheet};
 use crate::values;
 
 /// How much a finding matters.
@@ -170,11 +170,30 @@ pub fn accounts(stage: &Stage) -> Vec<Account> {
 /// What the model assumes about the parts of a stage, whatever the point.
 pub fn assumptions(stage: &StageSheet, board: &BoardSheet) -> Vec<Finding> {
     let mut notes = Vec::new();
+    let mut of = |slot: Slot, sheet: &dyn Gaps| {
+        let assumed = sheet.gaps().into_iter().filter(|gap| gap.effect == Effect::Assumed);
+        notes.extend(assumed.map(|gap| {
+            let text =
+                if gap.key.is_empty() { gap.text.to_owned() } else { format!("{}: {}", gap.key, gap.text) };
+            Finding::new(Severity::Note, gap.kind, slot, text)
+        }));
+    };
     match &stage.circuit {
-        Circuit::Linear(regulator) => {
-            no_thermal_resistance(Slot::Regulator, &regulator.sheet.r_th_ja, &mut notes);
+        Circuit::Linear(regulator) => of(Slot::Regulator, &*regulator.sheet),
+        Circuit::Switched(stage) => {
+            of(Slot::HighSide, &*stage.high_side.sheet);
+            match &stage.rectifier {
+                RectifierSheet::Synchronous { low_side, parallel_schottky } => {
+                    of(Slot::LowSide, &*low_side.sheet);
+                    parallel_schottky.iter().for_each(|diode| of(Slot::ParallelSchottky, &*diode.sheet));
+                }
+                RectifierSheet::Diode { freewheel_diode } => {
+                    of(Slot::FreewheelDiode, &*freewheel_diode.sheet)
+                }
+            }
+            of(Slot::Inductor, &*stage.inductor.sheet);
+            of(Slot::Controller, &*stage.controller.sheet);
         }
-        Circuit::Switched(switched) => of_switched(switched, &mut notes),
     }
     for value in values::all(stage, board) {
         if value.datum.typical_is_assumed() && value.modelled {
@@ -188,81 +207,4 @@ pub fn assumptions(stage: &StageSheet, board: &BoardSheet) -> Vec<Finding> {
         }
     }
     notes
-}
-
-fn of_switched(stage: &SwitchedSheet, notes: &mut Vec<Finding>) {
-    let mut note = |kind, slot, text: String| notes.push(Finding::new(Severity::Note, kind, slot, text));
-    let mut mosfet = |slot: Slot, sheet: &MosfetSheet| {
-        if sheet.r_ds_on_hot.is_none() {
-            note("hot_ratio_assumed", slot, "no r_ds_on_hot: 1.5 at 125 °C assumed".into());
-        }
-        if sheet.q_gs2_is_estimated() {
-            note("q_gs2_estimated", slot, "no q_gs2: q_gs (1 - v_gs_th/v_gs_plateau) estimated".into());
-        }
-        if sheet.r_g.is_none() {
-            note("r_g_assumed", slot, "no r_g: 1 Ω assumed".into());
-        }
-        if sheet.q_rr.as_ref().is_some_and(|q_rr| q_rr.exponent.is_none()) {
-            note("recovery_exponent_assumed", slot, "no exponent of q_rr: 0.5 assumed".into());
-        }
-        no_thermal_resistance_text(sheet.r_th_ja.as_ref())
-            .into_iter()
-            .for_each(|text| note("at_ambient", slot, text));
-    };
-    mosfet(Slot::HighSide, &stage.high_side.sheet);
-    let diode = match &stage.rectifier {
-        RectifierSheet::Synchronous { low_side, parallel_schottky } => {
-            mosfet(Slot::LowSide, &low_side.sheet);
-            parallel_schottky.as_ref().map(|placed| (Slot::ParallelSchottky, placed))
-        }
-        RectifierSheet::Diode { freewheel_diode } => Some((Slot::FreewheelDiode, freewheel_diode)),
-    };
-    if let Some((slot, placed)) = diode {
-        let sheet = &placed.sheet;
-        if sheet.v_f.len() < 2 {
-            note("v_f_without_drift", slot, "v_f at one temperature only: no drift".into());
-        }
-        let temperatures = |first: &f64| sheet.i_r.iter().any(|point| point.t_j.value != *first);
-        if sheet.i_r.first().is_some_and(|point| !temperatures(&point.t_j.value)) {
-            note(
-                "leakage_slope_assumed",
-                slot,
-                "i_r at one temperature only: doubling per 10 K assumed".into(),
-            );
-        }
-        if sheet.q_rr.as_ref().is_some_and(|q_rr| q_rr.exponent.is_none()) {
-            note("recovery_exponent_assumed", slot, "no exponent of q_rr: 0.5 assumed".into());
-        }
-        no_thermal_resistance_text(sheet.r_th_ja.as_ref())
-            .into_iter()
-            .for_each(|text| note("at_ambient", slot, text));
-    }
-    inductor(&stage.inductor.sheet, &mut note);
-    let controller = &stage.controller.sheet;
-    let low_driver = controller.low_side.as_ref().is_some_and(|driver| driver.is_estimated());
-    if controller.high_side.is_estimated() || low_driver {
-        let text = "driver resistance from the peak current: v_drive / i".to_owned();
-        note("driver_estimated", Slot::Controller, text);
-    }
-}
-
-fn inductor(sheet: &InductorSheet, note: &mut impl FnMut(&'static str, Slot, String)) {
-    if sheet.r_th.is_none() && sheet.temperature_rise.is_some() {
-        note("r_th_from_rise", Slot::Inductor, "r_th from the printed temperature rise and dcr".into());
-    }
-}
-
-fn no_thermal_resistance(slot: Slot, r_th: &Option<Datum>, notes: &mut Vec<Finding>) {
-    if let Some(text) = no_thermal_resistance_text(r_th.as_ref()) {
-        notes.push(Finding::new(Severity::Note, "at_ambient", slot, text));
-    }
-}
-
-fn no_thermal_resistance_text(r_th: Option<&Datum>) -> Option<String> {
-    r_th.is_none().then(|| "no r_th_ja: the part stays at ambient".to_owned())
-}
-
-/// True when a part says where its values come from.
-pub fn has_source(descriptive: &Descriptive) -> bool {
-    descriptive.source.as_ref().is_some_and(|source| !source.trim().is_empty())
 }

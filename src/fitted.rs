@@ -1,6 +1,7 @@
 //! A stage with its curves fitted and its drive resolved: what the model evaluates.
 
 use crate::budget::{Budget, Coupling};
+use crate::edges::GateLoop;
 use crate::ledger::Slot;
 use crate::parts::capacitor::Bank;
 use crate::parts::controller::{Controller, Supply};
@@ -119,6 +120,10 @@ pub struct Drive {
     pub r_high: f64,
     /// On-resistance of the low side at 25 °C, all devices, Ω.
     pub r_low: f64,
+    /// High-side gate behind its driver.
+    pub high_gate: GateLoop,
+    /// Low-side gate behind its driver.
+    pub low_gate: GateLoop,
     /// Gate charge of the high side, all devices, C.
     pub q_high: f64,
     /// Gate charge of the low side, which switches at about zero volts: Q_g - Q_gd, all devices, C.
@@ -146,6 +151,10 @@ pub type Nodes = [f64; NODES];
 pub struct HeatFlow {
     /// R_th/n of each node, K/W; `None` keeps the node at ambient.
     pub to_ambient: [Option<f64>; NODES],
+    /// The same with 0 for a node that stays at ambient, K/W.
+    pub resistance: Nodes,
+    /// Slots of the nodes that have a temperature.
+    pub slots: [Option<Slot>; NODES],
     /// K of each pair: heated node, heating slot, K/W.
     pub coupling: Vec<(usize, Slot, f64)>,
 }
@@ -221,6 +230,13 @@ impl Switched {
         switched
     }
 
+    /// Draws the consequences of parts that were exchanged: what the gates see and how heat flows.
+    pub fn reassemble(&mut self, coupling: &[Coupling]) {
+        self.heat =
+            heat_flow(&self.high_side, &self.rectifier, &self.inductor, self.controller.r_th, coupling);
+        self.full_drive = self.drive_of(self.controller.v_drive);
+    }
+
     /// True with a MOSFET as rectifier.
     pub fn is_synchronous(&self) -> bool {
         matches!(self.rectifier, Rectifier::Synchronous { .. })
@@ -252,10 +268,12 @@ impl Switched {
             v_high,
             v_low: v_drive,
             r_high: high.on_resistance.at(v_high) / high.n,
+            high_gate: GateLoop::of(v_high, high.r_g, &self.controller.high_side),
             q_high: high.n * high.gate_charge.at(v_high),
             ..Drive::default()
         };
         if let Rectifier::Synchronous { low_side, .. } = &self.rectifier {
+            drive.low_gate = GateLoop::of(v_drive, low_side.r_g, &self.controller.low_side);
             drive.r_low = low_side.on_resistance.at(v_drive) / low_side.n;
             drive.q_low = low_side.n * (low_side.gate_charge.at(v_drive) - low_side.gate_charge.q_gd);
         }
@@ -290,5 +308,14 @@ fn heat_flow(
         .filter_map(|pair| Some((node_of(pair.heated)?, pair.heating, pair.resistance)))
         .filter(|(node, ..)| to_ambient[*node].is_some())
         .collect();
-    HeatFlow { to_ambient, coupling }
+    let has_schottky = matches!(rectifier, Rectifier::Synchronous { schottky: Some(_), .. });
+    let slots = std::array::from_fn(|node| {
+        let exists = match node {
+            SCHOTTKY => has_schottky,
+            CONTROLLER => controller.is_some(),
+            _ => true,
+        };
+        exists.then(|| slot_of(node, synchronous))
+    });
+    HeatFlow { to_ambient, resistance: to_ambient.map(|r| r.unwrap_or(0.0)), slots, coupling }
 }

@@ -5,7 +5,7 @@
 //! From a fitted stage, an operating point and temperatures to every contribution of the ledger: [`Prepared`] holds what
 //! temperatures do not change, [`Prepared::heated`] calls the mechanisms of [`crate::loss`], [`evaluate`] settles the heat.
 
-use crate::edges::{self, GateLoop, NodeCapacitance};
+use crate::edges::{self, NodeCapacitance};
 use crate::fitted::{
     CONTROLLER, Drive, HIGH, INDUCTOR, Kind, NODES, Nodes, RECTIFIER, Rectifier, SCHOTTKY, Stage, Switched,
 };
@@ -23,7 +23,7 @@ use crate::loss::{
     gate_drive::{self, DrivePower, GatePower},
     ground_current::{self, GroundCurrent},
     leakage::{self, Leakage, ReverseVoltage},
-    output_charge::{self, OutputCharge},
+    output_charge::{self, IdleSwing, OutputCharge},
     overlap::{self, EdgeConditions, LowSideOverlap, Overlap},
     pass::{self, Pass},
     recovery::{self, Recovery},
@@ -68,12 +68,23 @@ pub struct Prepared<'a> {
     pub node_energy: f64,
     /// Gate-drain charge of the high side at the input voltage, C.
     pub q_gd: f64,
-    /// High-side gate loop.
-    pub high_gate: GateLoop,
-    /// Low-side gate loop.
-    pub low_gate: GateLoop,
+    /// How the idle node swings.
+    pub idle_swing: IdleSwing,
+    /// 1/(f L), A/V.
+    pub ripple_per_volt: f64,
+    /// V_s: what the gate charge is drawn from (E21), V.
+    pub v_supply: f64,
     /// R_ac(f) - R_dc at 25 °C, not below 0, Ω; `None` without data.
     pub ac_excess: Option<f64>,
+}
+
+/// Resistances at their temperatures over those at 25 °C.
+#[derive(Clone, Copy, Debug)]
+#[allow(missing_docs)] // named as the parts
+pub struct HotRatios {
+    pub high_side: f64,
+    pub low_side: f64,
+    pub winding: f64,
 }
 
 /// Contributions that heat a part, with their terms. A mechanism that the stage does not have is `None`.
@@ -144,24 +155,19 @@ impl<'a> Prepared<'a> {
         let drive = stage.drive(v_in, output_voltage);
         let board_ratio = hot_ratio(stage.board.temperature.unwrap_or(point.ambient));
         let v_out = output_voltage + point.load * stage.board.load_path * board_ratio;
-        let gate = |v_gate, r_g: f64, driver: &crate::parts::controller::DriverLaw| GateLoop {
-            v_gate,
-            r_on: driver.r_source + r_g,
-            r_off: driver.r_sink + r_g,
-        };
         let leaks = match &stage.rectifier {
             Rectifier::Synchronous { schottky, .. } => schottky.as_ref().is_some_and(|d| d.leakage.is_some()),
             Rectifier::Diode(diode) => diode.leakage.is_some(),
         };
-        let (rectifier, low_gate) = match &stage.rectifier {
+        let rectifier = match &stage.rectifier {
             Rectifier::Synchronous { low_side, schottky } => {
                 let own = low_side.q_oss.unwrap_or_default();
-                let across = schottky.as_ref().and_then(|diode| diode.q_c).unwrap_or_default();
-                (own.plus(across), gate(drive.v_low, low_side.r_g, &controller.low_side))
+                own.plus(schottky.as_ref().and_then(|diode| diode.q_c).unwrap_or_default())
             }
-            Rectifier::Diode(diode) => (diode.q_c.unwrap_or_default(), gate(0.0, 0.0, &controller.low_side)),
+            Rectifier::Diode(diode) => diode.q_c.unwrap_or_default(),
         };
         let node = NodeCapacitance { high_side: stage.high_side.q_oss.unwrap_or_default(), rectifier };
+        let (inductance, node_charge) = (stage.inductor.inductance(point.load), node.total_charge(v_in));
         let ac = stage.inductor.ac_per_root_hertz;
         Prepared {
             stage,
@@ -169,28 +175,51 @@ impl<'a> Prepared<'a> {
             point,
             v_out,
             drive,
-            inductance: stage.inductor.inductance(point.load),
+            inductance,
             board_ratio,
             reverse: if leaks { [v_in, v_out].map(ReverseVoltage::of) } else { Default::default() },
             node,
-            node_charge: node.total_charge(v_in),
+            node_charge,
             node_energy: node.capacitive_energy(v_in, 0.0),
             q_gd: stage.high_side.q_gd.charge(v_in),
-            high_gate: gate(drive.v_high, stage.high_side.r_g, &controller.high_side),
-            low_gate,
+            idle_swing: IdleSwing::of(inductance, node_charge, v_in, v_out),
+            ripple_per_volt: 1.0 / (point.switching_frequency * inductance),
+            v_supply: match controller.supply {
+                Supply::External(efficiency) => controller.v_drive / efficiency,
+                _ if stage.drives_from_input(output_voltage) => v_in,
+                _ => v_out,
+            },
             ac_excess: ac.map(|ac| (ac * point.switching_frequency.sqrt() - stage.inductor.dcr).max(0.0)),
         }
     }
 
     /// The path of the inductor current at temperatures.
-    #[inline]
-    pub fn current_path(&self, t: &Nodes, near: &mut Memory) -> CurrentPath {
+    #[inline(always)]
+    pub fn current_path(&self, t: &Nodes) -> CurrentPath {
+        self.path(t, &self.hot(t))
+    }
+
+    /// How much the resistances have grown at temperatures.
+    #[inline(always)]
+    pub fn hot(&self, t: &Nodes) -> HotRatios {
+        HotRatios {
+            high_side: self.stage.high_side.hot_ratio(t[HIGH]),
+            low_side: match &self.stage.rectifier {
+                Rectifier::Synchronous { low_side, .. } => low_side.hot_ratio(t[RECTIFIER]),
+                Rectifier::Diode(_) => 1.0,
+            },
+            winding: self.stage.inductor.hot_ratio(t[INDUCTOR]),
+        }
+    }
+
+    #[inline(always)]
+    fn path(&self, t: &Nodes, hot: &HotRatios) -> CurrentPath {
         let (stage, point) = (self.stage, &self.point);
         let board = &stage.board;
         let r_path = board.low_side_path * self.board_ratio;
         let off = match &stage.rectifier {
-            Rectifier::Synchronous { low_side, .. } => OffPath::Synchronous {
-                r_channel: self.drive.r_low * low_side.hot_ratio(t[RECTIFIER], &mut near.low_ratio),
+            Rectifier::Synchronous { .. } => OffPath::Synchronous {
+                r_channel: self.drive.r_low * hot.low_side,
                 r_path,
                 v_dead: self.dead_time_drop(point.load, t),
                 dead_share: (stage.controller.t_1 + stage.controller.t_2) * point.switching_frequency,
@@ -205,10 +234,9 @@ impl<'a> Prepared<'a> {
             load: point.load,
             frequency: point.switching_frequency,
             inductance: self.inductance,
-            r_high: self.drive.r_high * stage.high_side.hot_ratio(t[HIGH], &mut near.high_ratio)
-                + board.high_side_path * self.board_ratio,
-            r_series: stage.inductor.dcr * stage.inductor.hot_ratio(t[INDUCTOR])
-                + (board.output_path + board.sense) * self.board_ratio,
+            ripple_per_volt: self.ripple_per_volt,
+            r_high: self.drive.r_high * hot.high_side + board.high_side_path * self.board_ratio,
+            r_series: stage.inductor.dcr * hot.winding + (board.output_path + board.sense) * self.board_ratio,
             off,
         }
     }
@@ -224,7 +252,7 @@ impl<'a> Prepared<'a> {
     }
 
     /// Drop of whatever carries the dead-time current, V: the Schottky's when one is fitted (E19).
-    #[inline]
+    #[inline(always)]
     fn dead_time_drop(&self, current: f64, t: &Nodes) -> f64 {
         match &self.stage.rectifier {
             Rectifier::Synchronous { schottky: Some(diode), .. } => {
@@ -235,23 +263,36 @@ impl<'a> Prepared<'a> {
         }
     }
 
-    /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
+    /// Currents and duties at temperatures; fails where no waveform or no gate drive exists.
     #[inline(always)]
-    pub fn heated(&self, t: &Nodes, near: &mut Memory) -> Result<Heated, Infeasible> {
-        let (stage, v_in) = (self.stage, self.point.input_voltage);
-        let (controller, high) = (&stage.controller, &stage.high_side);
-        let path = self.current_path(t, near);
-        let waveform = Waveform::solve(&path, self.light_load_rule())
-            .ok_or(Infeasible::InputTooLow { v_in, v_out: self.v_out })?;
-        let frequency = waveform.frequency;
-        let overdrive = self.drive.v_high - high.plateau(waveform.peak);
+    pub fn waveform(&self, t: &Nodes, hot: &HotRatios) -> Result<Waveform, Infeasible> {
+        let Some(waveform) = Waveform::solve(&self.path(t, hot), self.light_load_rule()) else {
+            return Err(Infeasible::InputTooLow { v_in: self.point.input_voltage, v_out: self.v_out });
+        };
+        let overdrive = self.drive.v_high - self.stage.high_side.plateau(waveform.peak);
         if overdrive <= LEAST_OVERDRIVE {
             return Err(Infeasible::DriveTooLow { v_drive: self.drive.v_high, peak: waveform.peak });
         }
+        Ok(waveform)
+    }
+
+    /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
+    pub fn heated(&self, t: &Nodes, near: &mut Memory) -> Result<Heated, Infeasible> {
+        let hot = self.hot(t);
+        Ok(self.heated_by(self.waveform(t, &hot)?, t, &hot, near))
+    }
+
+    /// What heats the parts at temperatures with the waveform that belongs to them.
+    #[inline(always)]
+    pub fn heated_by(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios, near: &mut Memory) -> Heated {
+        let (stage, v_in) = (self.stage, self.point.input_voltage);
+        let (controller, high) = (&stage.controller, &stage.high_side);
+        let frequency = waveform.frequency;
 
         // high side
         let i_on = waveform.valley.max(0.0);
-        let durations = edges::edge_durations(high, &self.high_gate, self.q_gd, [i_on, waveform.peak], near);
+        let durations =
+            edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak], near);
         let conditions = EdgeConditions {
             v_in,
             i_on,
@@ -260,12 +301,16 @@ impl<'a> Prepared<'a> {
             surplus_current: high.transconductance * (self.drive.v_high - high.plateau(i_on)),
             frequency,
         };
-        let v_node =
-            output_charge::voltage_before_turn_on(&waveform, &self.node, v_in, self.v_out, controller.t_2);
-        let r_high = self.drive.r_high * high.hot_ratio(t[HIGH], &mut near.high_ratio);
-        let drivers = [controller.high_side.r_source, controller.high_side.r_sink];
-        let high_gate =
-            gate_drive::gate_power(self.drive.q_high, self.drive.v_high, high.r_g, drivers, frequency);
+        let v_node = output_charge::voltage_before_turn_on(
+            &waveform,
+            &self.node,
+            v_in,
+            controller.t_2,
+            self.idle_swing,
+        );
+        let met = if v_node > 0.0 { self.node.capacitive_energy(v_in, v_node) } else { self.node_energy };
+        let r_high = self.drive.r_high * hot.high_side;
+        let high_gate = gate_drive::gate_power(self.drive.q_high, &self.drive.high_gate, frequency);
 
         // rectifier
         let law = match &stage.rectifier {
@@ -274,7 +319,7 @@ impl<'a> Prepared<'a> {
             Rectifier::Diode(diode) => diode.recovery.as_ref(),
         };
         let switched_off = if waveform.is_continuous() { waveform.valley } else { 0.0 };
-        let rectifier = self.heated_rectifier(&waveform, t, near);
+        let rectifier = self.heated_rectifier(&waveform, t, hot, near);
         let low_gate = match &rectifier {
             HeatedRectifier::Synchronous { gate, .. } => *gate,
             HeatedRectifier::Diode { .. } => GatePower::default(),
@@ -282,30 +327,39 @@ impl<'a> Prepared<'a> {
 
         // inductor
         let inductor = &stage.inductor;
-        let copper_ratio = inductor.hot_ratio(t[INDUCTOR]);
-        let settled = if waveform.is_continuous() { 0.0 } else { v_node };
+        let ringing = if waveform.is_continuous() {
+            Ringing::default()
+        } else {
+            ringing::ringing(&self.node, v_in, v_node, frequency)
+        };
 
-        Ok(Heated {
+        Heated {
             waveform,
             high_conduction: conduction::high_side(&waveform, r_high),
             overlap: overlap::high_side(&conditions, durations),
-            output_charge: output_charge::high_side(&self.node, v_in, v_node, frequency),
+            output_charge: output_charge::high_side(met, v_node, frequency),
             recovery: law.map(|law| recovery::recovery(law, v_in, switched_off, frequency)),
             high_gate,
             rectifier,
-            winding: winding::winding(&waveform, inductor.dcr * copper_ratio),
+            winding: winding::winding(&waveform, inductor.dcr * hot.winding),
             ac_winding: self
                 .ac_excess
-                .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * copper_ratio)),
+                .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * hot.winding)),
             core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n, &mut near.core)),
-            ringing: ringing::ringing(&self.node, v_in, settled, frequency),
-            drive: gate_drive::drive_power(&high_gate, &low_gate, self.supply_voltage(), frequency),
+            ringing,
+            drive: gate_drive::drive_power(&high_gate, &low_gate, self.v_supply, frequency),
             bias: bias::bias(&waveform, v_in, controller.i_q, controller.i_q_sleep),
-        })
+        }
     }
 
     #[inline(always)]
-    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes, near: &mut Memory) -> HeatedRectifier {
+    fn heated_rectifier(
+        &self,
+        waveform: &Waveform,
+        t: &Nodes,
+        hot: &HotRatios,
+        near: &mut Memory,
+    ) -> HeatedRectifier {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let controller = &stage.controller;
         match &stage.rectifier {
@@ -316,12 +370,12 @@ impl<'a> Prepared<'a> {
             Rectifier::Synchronous { low_side, schottky } => {
                 let (t_1, t_2, frequency) = (controller.t_1, controller.t_2, waveform.frequency);
                 let ends = DeadTimeEnds::of(waveform, t_1, t_2);
-                let resistance = self.drive.r_low * low_side.hot_ratio(t[RECTIFIER], &mut near.low_ratio);
+                let resistance = self.drive.r_low * hot.low_side;
                 let reverse = (-waveform.valley).max(0.0);
                 let (overlap, high_dead_time) = if reverse > 0.0 {
                     let t_fi = edges::current_fall(
                         low_side,
-                        self.low_gate.r_off,
+                        self.drive.low_gate.r_off,
                         reverse,
                         &mut NearLogarithm::default(),
                     );
@@ -333,25 +387,19 @@ impl<'a> Prepared<'a> {
                 } else {
                     Default::default()
                 };
-                let output_charge = if controller.adaptive {
+                let moved = waveform.peak * t_1;
+                let output_charge = if controller.adaptive || moved >= self.node_charge {
                     OutputCharge::default()
                 } else {
-                    output_charge::low_side(&self.node, v_in, waveform.peak * t_1, frequency)
+                    output_charge::low_side(&self.node, v_in, moved, frequency)
                 };
                 let drop = |current| self.dead_time_drop(current, t);
-                let drivers = [controller.low_side.r_source, controller.low_side.r_sink];
                 HeatedRectifier::Synchronous {
                     conduction: conduction::low_side(waveform, ends, t_1, t_2, resistance),
                     overlap,
                     output_charge,
                     dead_time: dead_time::rectifier(waveform, ends, [t_1, t_2], self.node_charge, drop),
-                    gate: gate_drive::gate_power(
-                        self.drive.q_low,
-                        self.drive.v_low,
-                        low_side.r_g,
-                        drivers,
-                        frequency,
-                    ),
+                    gate: gate_drive::gate_power(self.drive.q_low, &self.drive.low_gate, frequency),
                     schottky: schottky.as_ref().map(|diode| {
                         leakage::leakage(waveform, diode, self.reverse, t[SCHOTTKY], &mut near.leakage)
                     }),
@@ -361,17 +409,8 @@ impl<'a> Prepared<'a> {
         }
     }
 
-    /// V_s: what the gate charge is drawn from (E21), V.
-    #[inline]
-    pub fn supply_voltage(&self) -> f64 {
-        match self.stage.controller.supply {
-            Supply::External(efficiency) => self.stage.controller.v_drive / efficiency,
-            _ if self.stage.drives_from_input(self.output_voltage) => self.point.input_voltage,
-            _ => self.v_out,
-        }
-    }
-
     /// The contributions that heat no part of the heat network.
+    #[inline(always)]
     pub fn unheated(&self, waveform: &Waveform) -> Unheated {
         let (stage, load) = (self.stage, self.point.load);
         let input_square = waveform.input_capacitor_square(load);
@@ -406,7 +445,7 @@ impl<'a> Prepared<'a> {
 
 impl Heated {
     /// Watts that heat each node.
-    #[inline]
+    #[inline(always)]
     pub fn node_watts(&self) -> Nodes {
         let mut watts = [0.0; NODES];
         watts[HIGH] = self.high_conduction.watts
@@ -447,7 +486,7 @@ impl Heated {
 }
 
 /// Books every contribution of a switched stage to its account.
-#[inline]
+#[inline(always)]
 pub fn ledger(heated: &Heated, unheated: &Unheated) -> Ledger {
     use Account as A;
     let mut ledger = Ledger::default();

@@ -7,6 +7,29 @@
 /// Largest relative distance at which the series serves.
 const CLOSE: f64 = 1.0 / 256.0;
 
+/// Terms of the binomial series.
+const TERMS: usize = 6;
+
+/// A power with a fixed exponent p and the coefficients of (1 + d)^p - 1.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Power {
+    /// p
+    pub exponent: f64,
+    binomial: [f64; TERMS],
+}
+
+impl Power {
+    /// x^p
+    pub fn of(exponent: f64) -> Self {
+        let mut coefficient = 1.0;
+        let binomial = std::array::from_fn(|k| {
+            coefficient *= (exponent - k as f64) / (k + 1) as f64;
+            coefficient
+        });
+        Power { exponent, binomial }
+    }
+}
+
 /// x^p for one exponent p.
 #[derive(Clone, Copy, Debug, Default)]
 pub struct NearPower {
@@ -15,24 +38,21 @@ pub struct NearPower {
 }
 
 impl NearPower {
-    /// x^p for x > 0. Every call on one value must name the same p.
+    /// x^p for x > 0. Every call on one value must name the same power.
     #[inline(always)]
-    pub fn at(&mut self, x: f64, p: f64) -> f64 {
+    pub fn at(&mut self, x: f64, power: &Power) -> f64 {
         let d = x * self.inverse - 1.0;
         if d.abs() < CLOSE {
-            // binomial series
-            let tail =
-                (p - 3.0) * 0.25 * d * (1.0 + (p - 4.0) * 0.2 * d * (1.0 + (p - 5.0) * (1.0 / 6.0) * d));
-            let series =
-                p * d * (1.0 + (p - 1.0) * 0.5 * d * (1.0 + (p - 2.0) * (1.0 / 3.0) * d * (1.0 + tail)));
+            let [c1, c2, c3, c4, c5, c6] = power.binomial;
+            let series = d * (c1 + d * (c2 + d * (c3 + d * (c4 + d * (c5 + d * c6)))));
             return self.value + self.value * series;
         }
-        self.anchor(x, p)
+        self.anchor(x, power.exponent)
     }
 
     #[inline(never)]
     fn anchor(&mut self, x: f64, p: f64) -> f64 {
-        *self = NearPower { inverse: 1.0 / x, value: x.powf(p) };
+        *self = NearPower { inverse: 1.0 / x, value: (p * x.ln()).exp() };
         self.value
     }
 }
@@ -88,10 +108,6 @@ impl NearExponential {
 /// What one point remembers from pass to pass.
 #[derive(Clone, Copy, Debug, Default)]
 pub struct Memory {
-    /// R(T)/R(25 °C) of the high side.
-    pub high_ratio: NearPower,
-    /// R(T)/R(25 °C) of the low side.
-    pub low_ratio: NearPower,
     /// Logarithm of the current rise.
     pub current_rise: NearLogarithm,
     /// Logarithm of the current fall.
@@ -137,8 +153,9 @@ mod tests {
                 let x = x0 * (1.0 + f64::from(step) / 61.0 / 256.0);
                 for p in [-0.45, 0.5, 1.3, 2.3] {
                     let mut near = NearPower::default();
-                    near.at(x0, p);
-                    close(near.at(x, p), x.powf(p));
+                    let power = Power::of(p);
+                    close(near.at(x0, &power), x0.powf(p));
+                    close(near.at(x, &power), x.powf(p));
                 }
                 let mut near = NearLogarithm::default();
                 near.at(x0);

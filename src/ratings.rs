@@ -1,12 +1,13 @@
 //! Ratings: what a solved point asks of each part, held against its data sheet and the budget's derating.
 
+use std::fmt::{self, Display};
+
 use crate::budget::{Budget, Derating};
 use crate::findings::{Finding, Severity};
 use crate::fitted::{Kind, Stage};
 use crate::ledger::Slot;
 use crate::loss::esr::{self, End};
 use crate::model::{Prepared, Solved};
-use crate::near::Memory;
 use crate::parts::capacitor::Bank;
 use crate::printable::printable;
 use crate::report::number::quantity;
@@ -24,14 +25,26 @@ struct Rating<'a> {
     /// Kind of finding when the rating itself is exceeded, and when only the derating is.
     kinds: [&'static str; 2],
     /// What is stressed: "V_IN across the high side".
-    what: &'a str,
+    what: &'a dyn Display,
     /// Key of the rating.
-    key: &'a str,
+    key: &'a dyn Display,
     stress: f64,
     limit: f64,
     /// Share of the limit that may be used.
     share: f64,
     dimension: D,
+}
+
+/// What is stressed of a part of a bank; put into words only when it is asked for.
+struct OfPart<'a> {
+    name: &'a str,
+    what: &'static str,
+}
+
+impl Display for OfPart<'_> {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        write!(f, "{}: {}", printable(self.name), self.what)
+    }
 }
 
 struct Checker<'a> {
@@ -57,12 +70,12 @@ impl Checker<'_> {
         }
     }
 
-    fn voltage(&mut self, slot: Slot, what: &str, key: &str, stress: f64, limit: &Datum) {
+    fn voltage(&mut self, slot: Slot, what: &dyn Display, key: &str, stress: f64, limit: &Datum) {
         self.rating(&Rating {
             slot,
             kinds: ["voltage_rating", "voltage_derating"],
             what,
-            key,
+            key: &key,
             stress,
             limit: limit.value,
             share: self.derating.voltage,
@@ -70,13 +83,13 @@ impl Checker<'_> {
         });
     }
 
-    fn current(&mut self, slot: Slot, what: &str, key: &str, stress: f64, limit: &Option<Datum>) {
+    fn current(&mut self, slot: Slot, what: &str, key: &str, stress: f64, limit: Option<&Datum>) {
         let Some(limit) = limit else { return };
         self.rating(&Rating {
             slot,
             kinds: ["current_rating", "current_derating"],
-            what,
-            key,
+            what: &what,
+            key: &key,
             stress,
             limit: limit.value,
             share: 1.0,
@@ -112,9 +125,9 @@ pub fn check(sheet: &StageSheet, stage: &Stage, budget: &Budget, solved: &Solved
     match (&sheet.circuit, &stage.kind) {
         (Circuit::Linear(regulator), _) => {
             let (sheet, v_in) = (&regulator.sheet, solved.point.input_voltage);
-            checker.voltage(Slot::Regulator, "V_IN", "v_in_max", v_in, &sheet.v_in_max);
+            checker.voltage(Slot::Regulator, &"V_IN", "v_in_max", v_in, &sheet.v_in_max);
             let each = solved.point.load / f64::from(regulator.count);
-            checker.current(Slot::Regulator, "load", "i_out_max", each, &Some(sheet.i_out_max.clone()));
+            checker.current(Slot::Regulator, "load", "i_out_max", each, Some(&sheet.i_out_max));
             checker.junction(Slot::Regulator, solved, "t_j_max", Some(&sheet.t_j_max));
         }
         (Circuit::Switched(sheet), Kind::Switched(switched)) => {
@@ -207,10 +220,10 @@ fn switched_stage(
             End::Input => waveform.input_capacitor_square(load),
             End::Output => waveform.output_capacitor_square(load),
         };
-        capacitors(checker, slot, placed, voltage, &rms_each(bank, end, waveform, mean_square));
+        capacitors(checker, slot, placed, voltage, rms_each(bank, end, waveform, mean_square));
     }
     let controller = &sheet.controller.sheet;
-    checker.voltage(Slot::Controller, "V_IN", "v_in_max", v_in, &controller.v_in_max);
+    checker.voltage(Slot::Controller, &"V_IN", "v_in_max", v_in, &controller.v_in_max);
     checker.junction(Slot::Controller, solved, "t_j_max", controller.t_j_max.as_ref());
     if drive.v_low < prepared.stage.controller.v_drive {
         let text = format!("the drive voltage is cut to V_IN, {}", quantity(drive.v_low, D::Voltage));
@@ -218,8 +231,7 @@ fn switched_stage(
     }
     if waveform.mode == Mode::PulseSkipping && prepared.stage.skip_peak > 0.0 {
         let temperatures = crate::heat::nodes_of(prepared, solved);
-        let ripple = Waveform::continuous(&prepared.current_path(&temperatures, &mut Memory::default()))
-            .map_or(0.0, |w| w.ripple());
+        let ripple = Waveform::continuous(&prepared.current_path(&temperatures)).map_or(0.0, |w| w.ripple());
         if prepared.stage.skip_peak > ripple {
             let text = format!(
                 "the stated peak {} is above the ripple {}: the border to continuous mode is abrupt",
@@ -236,9 +248,14 @@ fn switched_stage(
     }
 }
 
-fn rms_each(bank: &Bank, end: End, waveform: &Waveform, mean_square: f64) -> Vec<f64> {
-    let shares = esr::shares(bank, end, waveform, mean_square);
-    shares.iter().zip(&bank.kinds).map(|(share, kind)| share.mean_square.sqrt() / kind.n).collect()
+/// RMS current of each capacitor of every kind, A.
+fn rms_each(bank: &Bank, end: End, waveform: &Waveform, mean_square: f64) -> impl Iterator<Item = f64> {
+    let shares = match bank.kinds.as_slice() {
+        [_] => Vec::new(),
+        _ => esr::shares(bank, end, waveform, mean_square),
+    };
+    let square = move |kind: usize| shares.get(kind).map_or(mean_square, |share| share.mean_square);
+    bank.kinds.iter().enumerate().map(move |(kind, of)| square(kind).sqrt() / of.n)
 }
 
 fn mosfet(
@@ -249,18 +266,18 @@ fn mosfet(
     solved: &Solved,
 ) {
     let sheet = &placed.sheet;
-    checker.voltage(slot, "V_IN", "v_ds_max", v_in, &sheet.v_ds_max);
+    checker.voltage(slot, &"V_IN", "v_ds_max", v_in, &sheet.v_ds_max);
     checker.rating(&Rating {
         slot,
         kinds: ["gate_voltage_rating", "gate_voltage_derating"],
-        what: "gate voltage",
-        key: "v_gs_max",
+        what: &"gate voltage",
+        key: &"v_gs_max",
         stress: v_gate,
         limit: sheet.v_gs_max.value,
         share: checker.derating.gate_voltage,
         dimension: D::Voltage,
     });
-    checker.current(slot, "RMS current", "i_d_max", rms / f64::from(placed.count), &sheet.i_d_max);
+    checker.current(slot, "RMS current", "i_d_max", rms / f64::from(placed.count), sheet.i_d_max.as_ref());
     checker.junction(slot, solved, "t_j_max", Some(&sheet.t_j_max));
     let specified = sheet.r_ds_on.iter().filter_map(|point| point.condition("v_gs"));
     let lowest = specified.fold(f64::INFINITY, f64::min);
@@ -291,21 +308,20 @@ fn diode(
     solved: &Solved,
 ) {
     let sheet = &placed.sheet;
-    checker.voltage(slot, "V_IN", "v_rrm", v_in, &sheet.v_rrm);
+    checker.voltage(slot, &"V_IN", "v_rrm", v_in, &sheet.v_rrm);
     let each = mean / f64::from(placed.count);
-    checker.current(slot, "mean current", "i_f_max", each, &Some(sheet.i_f_max.clone()));
+    checker.current(slot, "mean current", "i_f_max", each, Some(&sheet.i_f_max));
     checker.junction(slot, solved, "t_j_max", Some(&sheet.t_j_max));
 }
 
 fn inductor(checker: &mut Checker<'_>, placed: &Placed<InductorSheet>, waveform: &Waveform, solved: &Solved) {
     let (sheet, count) = (&placed.sheet, f64::from(placed.count));
     if let Some((limit, drop)) = saturation_current(sheet) {
-        let key = format!("the current for {:.0} % drop,", 100.0 * drop);
         checker.rating(&Rating {
             slot: Slot::Inductor,
             kinds: ["saturation", "saturation_margin"],
-            what: "peak current",
-            key: &key,
+            what: &"peak current",
+            key: &format_args!("the current for {:.0} % drop,", 100.0 * drop),
             stress: waveform.peak / count,
             limit,
             share: checker.derating.saturation,
@@ -313,12 +329,12 @@ fn inductor(checker: &mut Checker<'_>, placed: &Placed<InductorSheet>, waveform:
         });
     }
     let rms = waveform.inductor_square().sqrt() / count;
-    checker.current(Slot::Inductor, "RMS current", "i_rms_max", rms, &sheet.i_rms_max);
+    checker.current(Slot::Inductor, "RMS current", "i_rms_max", rms, sheet.i_rms_max.as_ref());
     checker.junction(Slot::Inductor, solved, "t_max", sheet.t_max.as_ref());
 }
 
 /// Current at which the inductance has dropped, and by how much: as stated, else the last point of the curve.
-fn saturation_current(sheet: &InductorSheet) -> Option<(f64, f64)> {
+pub fn saturation_current(sheet: &InductorSheet) -> Option<(f64, f64)> {
     if let Some(saturation) = &sheet.saturation {
         return Some((saturation.i.value, saturation.drop.value));
     }
@@ -331,18 +347,18 @@ fn capacitors(
     slot: Slot,
     bank: &[Placed<CapacitorSheet>],
     voltage: f64,
-    rms_each: &[f64],
+    rms_each: impl Iterator<Item = f64>,
 ) {
     for (placed, rms) in bank.iter().zip(rms_each) {
-        let what = format!("{}: voltage", printable(&placed.name));
-        checker.voltage(slot, &what, "v_max", voltage, &placed.sheet.v_max);
+        let of = |what| OfPart { name: &placed.name, what };
+        checker.voltage(slot, &of("voltage"), "v_max", voltage, &placed.sheet.v_max);
         if let Some(limit) = &placed.sheet.i_rms_max {
             checker.rating(&Rating {
                 slot,
                 kinds: ["ripple_current_rating", "ripple_current_derating"],
-                what: &format!("{}: ripple current", printable(&placed.name)),
-                key: "i_rms_max",
-                stress: *rms,
+                what: &of("ripple current"),
+                key: &"i_rms_max",
+                stress: rms,
                 limit: limit.value,
                 share: checker.derating.ripple_current,
                 dimension: D::Current,

@@ -19,6 +19,8 @@ pub struct Request {
     pub date: Option<String>,
     /// The ranking of the shortlist, when there is one.
     pub shortlist: Option<Document>,
+    /// Answers to further questions, each a section of its own.
+    pub further: Vec<Document>,
 }
 
 /// The whole budget for a design review.
@@ -42,8 +44,13 @@ impl Question<'_> {
 impl Answer for Question<'_> {
     fn document(&self) -> Document {
         self.with(|comparison| {
-            let Request { date, shortlist, .. } = self.request;
-            review::document(&Material { comparison, date: date.as_deref(), shortlist: shortlist.as_ref() })
+            let Request { date, shortlist, further, .. } = self.request;
+            review::document(&Material {
+                comparison,
+                date: date.as_deref(),
+                shortlist: shortlist.as_ref(),
+                further,
+            })
         })
     }
 

@@ -27,6 +27,12 @@ pub struct Request {
     pub gain: f64,
 }
 
+impl Default for Request {
+    fn default() -> Self {
+        Request { stage: None, at: PartialPoint::default(), gain: 0.005 }
+    }
+}
+
 /// Step of the central differences, relative.
 const STEP: f64 = 2e-3;
 /// Step of inputs on the temperature scale, K.

@@ -27,6 +27,8 @@ pub struct Request {
     pub seed: u64,
 }
 
+/// Draws when nothing else is asked for.
+pub const DRAWS: u64 = 10_000;
 /// Contributors that are listed for each stage.
 pub const CONTRIBUTORS: usize = 10;
 /// Input voltages of the interior scan.
@@ -285,7 +287,7 @@ fn interior(candidate: &Candidate<'_>, worst: &WorstCase, points: &[OperatingPoi
     let Some(axis) = candidate.grid.axis(AxisName::InputVoltage) else { return Vec::new() };
     let low = axis.values().fold(f64::INFINITY, f64::min);
     let high = axis.values().fold(f64::NEG_INFINITY, f64::max);
-    if !(high > low) {
+    if high <= low {
         return Vec::new();
     }
     let scan = |point: &OperatingPoint| {

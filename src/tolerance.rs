@@ -145,7 +145,7 @@ impl Rig {
         }
     }
 
-    /// The sheets with some values moved.
+    /// The sheets of the stage and of its board with some values moved.
     pub fn sheets(&self, settings: &[(usize, f64)]) -> (StageSheet, BoardSheet) {
         let (mut sheet, mut board) = (self.sheet.clone(), self.board.clone());
         values::set_places(&mut sheet, &mut board, settings);

@@ -38,6 +38,8 @@ pub struct CurrentPath {
     pub frequency: f64,
     /// L at the load current, H.
     pub inductance: f64,
+    /// 1/(f L): ripple a volt across the inductance makes in a period, A/V.
+    pub ripple_per_volt: f64,
     /// R_h: high-side channel and its path.
     pub r_high: f64,
     /// R_s: winding, output path and sense resistor.
@@ -110,7 +112,7 @@ pub struct Waveform {
 /// Mean square of a ramp from a to b (E4): (a² + a b + b²)/3, A².
 #[inline(always)]
 pub fn ramp_mean_square(a: f64, b: f64) -> f64 {
-    (a * a + a * b + b * b) / 3.0
+    (a * a + a * b + b * b) * (1.0 / 3.0)
 }
 
 impl Waveform {
@@ -150,8 +152,7 @@ impl Waveform {
         }
         let duty = numerator / denominator;
         let v_on = path.v_in - i * (path.r_high + path.r_series) - path.v_out;
-        let period = 1.0 / path.frequency;
-        let ripple = v_on * duty * period / path.inductance;
+        let ripple = v_on * duty * path.ripple_per_volt;
         let (valley, peak) = (i - 0.5 * ripple, i + 0.5 * ripple);
         Some(Waveform {
             mode: Mode::Continuous,
@@ -163,7 +164,7 @@ impl Waveform {
             frequency: path.frequency,
             clock: path.frequency,
             v_on,
-            falling_slope: ripple / ((1.0 - duty) * period),
+            falling_slope: ripple * path.frequency / (1.0 - duty),
             inductance: path.inductance,
         })
     }
@@ -183,8 +184,9 @@ impl Waveform {
             return None;
         }
         let (i, l, f) = (path.load, path.inductance, path.frequency);
-        // time of one pulse per ampere of peak
-        let pulse = l * (1.0 / v_on + 1.0 / v_off);
+        // times of the rise and of the fall of one pulse per ampere of peak, and of both
+        let (rise, fall) = (l / v_on, l / v_off);
+        let pulse = rise + fall;
         let natural_peak = (2.0 * i / (f * pulse)).sqrt();
         let smallest_peak = rule.skip_peak.max(v_on * rule.t_on_min / l);
         let (mode, peak, frequency) = if natural_peak < smallest_peak {
@@ -194,8 +196,8 @@ impl Waveform {
         };
         Some(Waveform {
             mode,
-            duty: l * peak * frequency / v_on,
-            off_duty: l * peak * frequency / v_off,
+            duty: rise * peak * frequency,
+            off_duty: fall * peak * frequency,
             valley: 0.0,
             peak,
             mean_square: peak * peak / 3.0,

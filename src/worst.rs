@@ -12,7 +12,7 @@ use crate::infeasible::Infeasible;
 use crate::model;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
-use crate::tolerance::{Lever, Rig};
+use crate::tolerance::{Lever, Rig, Settings};
 
 /// The set of data-sheet values that an answer is computed with; every header, caption and file says which.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -25,6 +25,11 @@ pub enum ValueSet {
 }
 
 impl ValueSet {
+    /// The set of a name.
+    pub fn from_name(name: &str) -> Option<ValueSet> {
+        [ValueSet::Typical, ValueSet::Worst].into_iter().find(|set| set.name() == name)
+    }
+
     /// Name in files, captions and options.
     pub const fn name(self) -> &'static str {
         match self {
@@ -56,6 +61,33 @@ impl Deref for Fitted<'_> {
         match self {
             Fitted::Own(stage) => stage,
             Fitted::Shared(stage) => stage,
+        }
+    }
+}
+
+/// A stage with the set of values that is taken of it.
+#[derive(Debug)]
+pub enum Taken<'s> {
+    /// Typical values, fitted already.
+    Typical(&'s Stage),
+    /// At each point those that raise the loss there.
+    Worst(Box<WorstCase>),
+}
+
+impl<'s> Taken<'s> {
+    /// A set of a fitted stage; `rig` moves its values when they have to be.
+    pub fn of(values: ValueSet, stage: &'s Stage, rig: impl FnOnce() -> Rig) -> Self {
+        match values {
+            ValueSet::Typical => Taken::Typical(stage),
+            ValueSet::Worst => Taken::Worst(Box::new(WorstCase::new(rig()))),
+        }
+    }
+
+    /// The stage at a point.
+    pub fn at(&self, point: OperatingPoint) -> Fitted<'_> {
+        match self {
+            Taken::Typical(stage) => Fitted::Own(stage),
+            Taken::Worst(worst) => Fitted::Shared(worst.stage_at(point)),
         }
     }
 }
@@ -103,7 +135,7 @@ impl WorstCase {
         if let Some(stage) = self.known.read().unwrap_or_else(PoisonError::into_inner).get(&sides) {
             return stage.clone();
         }
-        let stage = Arc::new(self.combined(&sides));
+        let stage = Arc::new(self.rig.fit(&self.settings(&sides)).unwrap_or_else(|_| self.rig.typical()));
         self.known.write().unwrap_or_else(PoisonError::into_inner).insert(sides, stage.clone());
         stage
     }
@@ -132,17 +164,12 @@ impl WorstCase {
         self.sides.iter().map(side).collect()
     }
 
-    /// The sheets that the stage of a point is fitted to.
+    /// The sheets of the stage and of its board with the values taken at a point.
     pub fn sheets_at(&self, point: OperatingPoint) -> (StageSheet, BoardSheet) {
         self.rig.sheets(&self.settings(&self.sides_at(point)))
     }
 
-    fn combined(&self, sides: &[Side]) -> Stage {
-        self.rig.fit(&self.settings(sides)).unwrap_or_else(|_| self.rig.typical())
-    }
-
-    /// Values of the limits that go together.
-    fn settings(&self, sides: &[Side]) -> Vec<(usize, f64)> {
+    fn settings(&self, sides: &[Side]) -> Settings {
         let mut settings = Vec::new();
         for (lever, side) in self.levers.iter().zip(sides) {
             if *side != Side::Typical {

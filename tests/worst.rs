@@ -84,3 +84,50 @@ fn every_form_of_the_answer_says_which_values() -> Result<(), Box<dyn Error>> {
     }
     Ok(())
 }
+
+#[test]
+fn derivations_show_the_limits_that_are_taken() -> Result<(), Box<dyn Error>> {
+    let budget = example(ValueSet::Worst)?;
+    let request = lossbook::justify::Request { stage: Some("synchronous".into()), ..Default::default() };
+    let mut bytes = Vec::new();
+    lossbook::justify::answer(&budget, &request).json(&mut bytes)?;
+    let text = String::from_utf8(bytes)?;
+    let json: serde_json::Value = serde_json::from_str(&text)?;
+    assert_eq!(json["values"], "worst");
+    // the limits of the example's files, typed by hand
+    for origin in ["inductance = 2.64 µH min", "dcr = 6.1 mΩ max", "q_g[0] = 13 nC max"] {
+        assert!(text.contains(origin), "{origin}");
+    }
+    let loss = Candidate::new(&budget, &budget.stages[0]).evaluate(budget.headline)?.loss();
+    assert_eq!(json["point"]["loss"].as_f64(), Some(loss));
+    Ok(())
+}
+
+#[test]
+fn a_ranking_by_worst_values_ranks_by_worst_values() -> Result<(), Box<dyn Error>> {
+    let file = Path::new(env!("CARGO_MANIFEST_DIR")).join("budgets/grain-dryer-camera.yaml");
+    let run = |extra: &[&str]| -> Result<serde_json::Value, Box<dyn Error>> {
+        let mut command = std::process::Command::new(env!("CARGO_BIN_EXE_lossbook"));
+        let out = command
+            .arg("pick")
+            .arg(&file)
+            .args(["--format", "json", "--values", "worst"])
+            .args(extra)
+            .output()?;
+        Ok(serde_json::from_slice(&out.stdout)?)
+    };
+    let (bound, whole) = (run(&["--slice", "2/12"])?, run(&["--slice", "2/12", "--exhaustive"])?);
+    assert_eq!(bound["values"], "worst");
+    let ranking = bound["ranking"].as_array().ok_or("ranking")?;
+    assert_eq!(ranking.len(), whole["ranking"].as_array().ok_or("ranking")?.len());
+    for (short, long) in ranking.iter().zip(whole["ranking"].as_array().ok_or("ranking")?) {
+        // cutting off what cannot win loses nothing
+        assert_eq!(
+            (&short["high_side"], &short["low_side"], &short["value"]),
+            (&long["high_side"], &long["low_side"], &long["value"])
+        );
+        // what is ranked by is the loss that the entry itself states
+        assert_eq!(short["value"], short["loss"]);
+    }
+    Ok(())
+}

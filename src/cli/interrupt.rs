@@ -1,11 +1,16 @@
 //! Ctrl-C and requests to end: no half-written file stays behind.
 
 use std::path::{Path, PathBuf};
-use std::sync::{Mutex, MutexGuard, PoisonError};
+use std::sync::atomic::Ordering;
+use std::sync::{Arc, Mutex, MutexGuard, PoisonError};
 
 use lossbook::files;
+use lossbook::sweep::Watch;
 
 use super::{Exit, terminal};
+
+/// A search that can be ended with a result.
+static SEARCH: Mutex<Option<Arc<Watch>>> = Mutex::new(None);
 
 /// The temporary file that is being written.
 static DRAFT: Mutex<Option<PathBuf>> = Mutex::new(None);
@@ -18,6 +23,9 @@ fn draft() -> MutexGuard<'static, Option<PathBuf>> {
 pub(crate) fn listen() {
     // without a handler the system ends the run, less politely
     let _ = ctrlc::set_handler(|| {
+        if SEARCH.lock().unwrap_or_else(PoisonError::into_inner).as_ref().is_some_and(|watch| end(watch)) {
+            return;
+        }
         // held to the end, so that no file gets its name after this was said
         let mut file = draft();
         let changed = if file.is_some() { "; no file was changed" } else { "" };
@@ -27,6 +35,20 @@ pub(crate) fn listen() {
         terminal::say(&format!("\ninterrupted{changed}"));
         std::process::exit(Exit::Interrupted as i32);
     });
+}
+
+/// From now on the first interrupt ends the search, which then gives what it has; the next one ends the run.
+pub(crate) fn stops_search(watch: &Arc<Watch>) {
+    *SEARCH.lock().unwrap_or_else(PoisonError::into_inner) = Some(watch.clone());
+}
+
+/// Ends a search; false when it was ended before.
+fn end(watch: &Watch) -> bool {
+    let first = !watch.stop.swap(true, Ordering::Relaxed);
+    if first {
+        terminal::say("\ninterrupted; the best so far follows");
+    }
+    first
 }
 
 /// Remembers the temporary file that has to go on an interrupt.

@@ -26,8 +26,6 @@ Examples:
 pub(crate) struct Options {
     #[command(flatten)]
     subject: Subject,
-    #[command(flatten)]
-    values: Values,
 
     /// Coordinates of the point, the others as at the headline: "input_voltage=24V load=6A ambient=60degC".
     #[arg(long, value_name = "POINT", value_parser = point)]
@@ -40,6 +38,9 @@ pub(crate) struct Options {
     /// Only what the entries of this mechanism need.
     #[arg(long, value_name = "MECHANISM", value_parser = mechanism)]
     mechanism: Option<Mechanism>,
+
+    #[command(flatten)]
+    values: Values,
 
     #[command(flatten)]
     writing: Writing,

@@ -64,6 +64,19 @@ impl Subject {
         Ok(budget)
     }
 
+    /// The stage named, or the only one of the budget.
+    pub(crate) fn only_stage(&self, budget: &Budget) -> Result<String, Failure> {
+        match (&self.stage, budget.stages.as_slice()) {
+            (Some(stage), _) => Ok(stage.clone()),
+            (None, [only]) => Ok(only.name.clone()),
+            (None, stages) => {
+                let names: Vec<String> =
+                    stages.iter().map(|stage| format!("--stage {}", printable(&stage.name))).collect();
+                Err(Failure::asked("the budget has several stages", format!("add {}", names.join(" or "))))
+            }
+        }
+    }
+
     fn known_stage(&self, budget: &Budget) -> Result<(), Failure> {
         let names = || budget.stages.iter().map(|stage| stage.name.as_str());
         match self.stage.as_deref() {

@@ -7,13 +7,20 @@ mod check;
 mod compare;
 mod desk;
 mod diff;
+mod energy;
+mod evidence;
 mod failure;
+mod headroom;
+mod import;
 pub(crate) mod interrupt;
 mod justify;
 mod load;
 mod manual;
 mod options;
+mod pick;
 mod progress;
+mod reconcile;
+mod rehearse;
 mod report;
 mod schema;
 mod sensitivity;
@@ -67,7 +74,10 @@ pub(crate) enum Verb {
     Compare(compare::Options),
     Justify(justify::Options),
     Report(report::Options),
+    Evidence(evidence::Options),
     Tabulate(tabulate::Options),
+    Pick(pick::Options),
+    Import(import::Options),
     Diff(diff::Options),
     Schema(schema::Options),
     Completions(manual::Completions),
@@ -76,6 +86,10 @@ pub(crate) enum Verb {
     Template(template::Options),
     Spread(spread::Options),
     Sensitivity(sensitivity::Options),
+    Headroom(headroom::Options),
+    Energy(energy::Options),
+    Reconcile(reconcile::Options),
+    Rehearse(rehearse::Options),
 }
 
 impl Verb {
@@ -85,7 +99,10 @@ impl Verb {
             Verb::Compare(options) => options.run(common),
             Verb::Justify(options) => options.run(common),
             Verb::Report(options) => options.run(common),
+            Verb::Evidence(options) => options.run(common),
             Verb::Tabulate(options) => options.run(common),
+            Verb::Pick(options) => options.run(common),
+            Verb::Import(options) => options.run(common),
             Verb::Diff(options) => options.run(common),
             Verb::Schema(options) => options.run(common),
             Verb::Completions(options) => options.run(common),
@@ -94,6 +111,10 @@ impl Verb {
             Verb::Template(options) => options.run(common),
             Verb::Spread(options) => options.run(common),
             Verb::Sensitivity(options) => options.run(common),
+            Verb::Energy(options) => options.run(common),
+            Verb::Headroom(options) => options.run(common),
+            Verb::Reconcile(options) => options.run(common),
+            Verb::Rehearse(options) => options.run(common),
         }
     }
 }

@@ -35,7 +35,7 @@ impl Progress {
             }
             let bar = ProgressBar::with_draw_target(Some(0), ProgressDrawTarget::stderr());
             if let Ok(style) =
-                ProgressStyle::with_template("{bar:30} {percent} % of {len} points, {eta} left")
+                ProgressStyle::with_template("{bar:30} {percent} % of {len}, {per_sec}, {eta} left")
             {
                 bar.set_style(style);
             }

@@ -26,7 +26,7 @@ pub(crate) struct Options {
     subject: Subject,
 
     /// Number of random draws.
-    #[arg(long, value_name = "N", default_value_t = 10_000, value_parser = clap::value_parser!(u64).range(20..=1_000_000))]
+    #[arg(long, value_name = "N", default_value_t = spread::DRAWS, value_parser = clap::value_parser!(u64).range(20..=1_000_000))]
     draws: u64,
 
     /// Seed of the draws.

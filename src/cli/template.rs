@@ -4,6 +4,7 @@ use std::path::PathBuf;
 
 use clap::Args;
 use clap::builder::PossibleValuesParser;
+use lossbook::import;
 use lossbook::input::{self, TEMPLATES};
 
 use super::options::Common;
@@ -16,16 +17,20 @@ use super::{Exit, Failure, desk, terminal};
 #[command(after_help = "\
 Examples:
   lossbook template mosfets > parts/mine.yaml
-  lossbook template budget -o rail.yaml")]
+  lossbook template budget -o rail.yaml
+  lossbook template csv > mosfets.csv           a table for `lossbook import`")]
 pub(crate) struct Options {
     /// What to start.
-    #[arg(value_name = "KIND", value_parser = PossibleValuesParser::new(TEMPLATES))]
+    #[arg(value_name = "KIND", value_parser = PossibleValuesParser::new(TEMPLATES.into_iter().chain([CSV])))]
     kind: String,
 
     /// Write it to this new file instead of standard output.
     #[arg(short, long, value_name = "FILE")]
     output: Option<PathBuf>,
 }
+
+/// The table that `import` reads.
+const CSV: &str = "csv";
 
 impl Options {
     pub(crate) fn run(&self, _: &Common) -> Result<Exit, Failure> {
@@ -39,7 +44,8 @@ impl Options {
                 "name a new file",
             ));
         }
-        let Some(text) = input::template(&self.kind) else {
+        let text = if self.kind == CSV { Some(import::TEMPLATE.into()) } else { input::template(&self.kind) };
+        let Some(text) = text else {
             return Err(Failure::asked("there is no such template", TEMPLATES.join(", ")));
         };
         desk::to(self.output.as_deref(), |out| out.write_all(text.as_bytes()))?;

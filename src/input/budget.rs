@@ -4,7 +4,8 @@ use std::collections::HashSet;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use super::budget_grid::{self, MOST_POINTS, RatedLoad, value};
+use super::budget_checks as checks;
+use super::budget_grid::{self, RatedLoad, value};
 use super::budget_keys as keys;
 use super::error::Blame;
 use super::error::InputError;
@@ -19,11 +20,10 @@ use super::path::Trail;
 use super::place::{Source, resolve};
 use super::shelf::Shelf;
 use super::{budget_stages, budget_terms as terms, shortlist, yaml};
-use crate::budget::{Budget, Coupling, InputFile};
+use crate::budget::{Budget, InputFile};
 use crate::files;
-use crate::grid::{AxisName, Grid, OperatingPoint};
+use crate::grid::{AxisName, OperatingPoint};
 use crate::hints::Vocabulary;
-use crate::ledger::Slot;
 use crate::sheet::BoardSheet;
 use crate::stage::StageSheet;
 
@@ -178,7 +178,12 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             self.required("headline", "{input_voltage: 24 V, load: 6 A, ambient: 60 °C}", |n, t, notes| {
                 headline(n, rated, t, notes)
             });
-        let frequency = self.frequency(&stages, grid.as_ref());
+        let frequency = grid.as_ref().map_or(0.0, |grid| {
+            let named =
+                self.fields.peek("headline").is_none_or(|node| node.get("switching_frequency").is_some());
+            checks::count(&stages, grid, self.notes);
+            checks::frequency(&stages, grid, named, self.notes)
+        });
         let requirements =
             self.optional("requirements", |n, t, notes| terms::requirements(n, rated, t, notes));
         let board = self.optional("board", terms::board);
@@ -188,7 +193,7 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
         let shortlist = self.shortlist(&shelf, &stages);
         let derating = self.optional("derating", terms::derating).unwrap_or_default();
         let (board, coupling) = board.unwrap_or((BoardSheet::default(), Vec::new()));
-        self.coupled_slots(&stages, &coupling);
+        checks::coupling(&stages, &coupling, self.notes);
         let fields = std::mem::replace(&mut self.fields, Fields::empty());
         fields.close(|| KEYS.to_vec(), self.notes);
         if self.notes.errors() > 0 {
@@ -272,93 +277,6 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             None => RatedLoad::Absent,
             Some(None) => RatedLoad::Broken,
             Some(Some(load)) => RatedLoad::Stated(load),
-        }
-    }
-
-    /// Every switched stage needs a frequency, the headline exactly one; and the grid must be countable.
-    fn frequency(&mut self, stages: &[StageSheet], grid: Option<&Grid>) -> f64 {
-        let Some(grid) = grid else { return 0.0 };
-        let axis = AxisName::SwitchingFrequency;
-        let own = grid.axis(axis);
-        let top = Trail::TOP;
-        let switched: Vec<&StageSheet> = stages.iter().filter(|stage| !stage.is_linear()).collect();
-        for stage in switched.iter().filter(|stage| own.is_none() && stage.switching_frequency.is_none()) {
-            let blame = Blame::new(
-                "has no switching frequency",
-                "add `switching_frequency: 400 kHz` to the grid, or to the stage",
-            );
-            self.notes.key_error(&top.key("stages").key(&stage.name), blame);
-        }
-        let takes_grid = switched.iter().any(|stage| stage.switching_frequency.is_none());
-        if own.is_some() && !stages.is_empty() && !takes_grid && self.notes.errors() == 0 {
-            let blame = Blame::new("no stage takes its frequency from the grid", "take it out");
-            self.notes.doubt(&top.key("grid").key(axis.name()), blame);
-        }
-        let several = switched.iter().filter_map(|stage| stage.switching_frequency.as_ref().or(own));
-        let several = several.filter(|values| values.len() > 1).count();
-        let named = self.headline_frequency();
-        if several > 0 && !named {
-            let blame = Blame::new(
-                "the frequency has several values, and the headline names none of them",
-                "add `switching_frequency: 400 kHz` to the headline",
-            );
-            self.notes.key_error(&top.key("headline"), blame);
-        }
-        self.count(stages, grid);
-        match own {
-            Some(values) if takes_grid => values.at(0),
-            _ => 0.0,
-        }
-    }
-
-    fn headline_frequency(&self) -> bool {
-        let headline = self.fields.peek("headline");
-        headline.is_none_or(|node| node.get(AxisName::SwitchingFrequency.name()).is_some())
-    }
-
-    /// Heat between slots that no stage has together.
-    fn coupled_slots(&mut self, stages: &[StageSheet], coupling: &[Coupling]) {
-        let of_stage = |stage: &StageSheet, slot: Slot| {
-            slot == Slot::Board || budget_stages::slots(stage.rectifier_name()).contains(&slot)
-        };
-        // stages with errors are not among them
-        if self.notes.errors() > 0 {
-            return;
-        }
-        let top = Trail::TOP;
-        let board = top.key("board");
-        let trail = board.key(keys::COUPLING.name);
-        for pair in coupling {
-            let together = |stage: &StageSheet| of_stage(stage, pair.heated) && of_stage(stage, pair.heating);
-            if !stages.iter().any(together) {
-                let blame = Blame::new("no stage has both slots", "take it out, or check the names");
-                self.notes.doubt(&trail.key(pair.heated.name()).key(pair.heating.name()), blame);
-            }
-        }
-    }
-
-    fn count(&mut self, stages: &[StageSheet], grid: &Grid) {
-        let axis = AxisName::SwitchingFrequency;
-        let points = stages.iter().map(|stage| {
-            let grid = match (&stage.switching_frequency, stage.is_linear()) {
-                (_, true) => grid.without(axis),
-                (Some(own), _) => grid.with(axis, own.clone()),
-                (None, _) => grid.clone(),
-            };
-            grid.len()
-        });
-        let points = points.fold(0, u64::saturating_add).max(grid.without(axis).len());
-        if points > MOST_POINTS {
-            let sizes: Vec<String> =
-                grid.axes.iter().map(|(name, values)| format!("{} {}", name.name(), values.len())).collect();
-            let blame = Blame::new(
-                format!(
-                    "the stages have {points} points in all, more than {MOST_POINTS} ({})",
-                    sizes.join(", ")
-                ),
-                "take fewer points on an axis",
-            );
-            self.notes.key_error(&Trail::TOP.key("grid"), blame);
         }
     }
 

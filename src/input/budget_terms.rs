@@ -10,12 +10,14 @@ use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_fields;
 use super::sample::key_names;
+use crate::bench::Accuracy;
 use crate::budget::{BenchAccuracy, Coupling, Derating, Limit, ProfilePoint, Requirement};
 use crate::grid::{ALL_AXES, AxisName};
 use crate::hints::{Vocabulary, nearest};
 use crate::ledger::{ALL_SLOTS, Slot};
 use crate::sheet::BoardSheet;
 use crate::sheet::form::Key;
+use crate::units::Dimension as D;
 
 /// Items of a list, each with its trail; a single mapping counts as a list of one.
 fn each<'n>(
@@ -147,7 +149,7 @@ pub(crate) fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option
     let mut fields = Fields::open(node, trail, like, notes)?;
     let read = KEYS.each_ref().map(|key| {
         let node = fields.require(key.name, key.example, notes)?;
-        value(node, key, &trail.key(key.name), notes)
+        accuracy(node, key, &trail.key(key.name), notes)
     });
     fields.close(|| KEYS.map(|key| key.name).to_vec(), notes);
     let [input_voltage, input_current, output_voltage, output_current] = read;
@@ -159,6 +161,27 @@ pub(crate) fn bench(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Option
     })
 }
 
+/// Accuracy of one instrument: of reading, or of reading and of range with its full scale.
+fn accuracy(node: &Node, key: &Key, trail: &Trail<'_>, notes: &mut Notes) -> Option<Accuracy> {
+    if !matches!(node, Node::Map(_)) {
+        let of_reading = value(node, key, trail, notes)?;
+        return Some(Accuracy { of_reading, of_range: 0.0 });
+    }
+    let dimension = if key.name.ends_with("voltage") { D::Voltage } else { D::Current };
+    let full_scale = Key::new("full_scale", dimension, "full scale of the range");
+    let like = "`{reading: 0.1 %, range: 0.05 %, full_scale: 40 V}`";
+    let mut fields = Fields::open(node, trail, like, notes)?;
+    let mut read = |key: &Key, notes: &mut Notes| {
+        let node = fields.require(key.name, key.example, notes)?;
+        value(node, key, &trail.key(key.name), notes)
+    };
+    let reading = read(&keys::accuracy("reading"), notes);
+    let range = read(&keys::accuracy("range"), notes);
+    let full_scale = read(&full_scale, notes);
+    fields.close(|| vec!["reading", "range", "full_scale"], notes);
+    Some(Accuracy { of_reading: reading?, of_range: range? * full_scale? })
+}
+
 /// Margins to ratings.
 pub(crate) fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Derating {
     const RATIOS: [Key; 4] = [
@@ -167,13 +190,10 @@ pub(crate) fn derating(node: &Node, trail: &Trail<'_>, notes: &mut Notes) -> Der
         keys::derated("saturation"),
         keys::derated("ripple_current"),
     ];
-    const MARGIN: Key = Key::new(
-        "junction_margin",
-        crate::units::Dimension::TemperatureDifference,
-        "distance to a junction rating",
-    )
-    .zero()
-    .example("25 K");
+    const MARGIN: Key =
+        Key::new("junction_margin", D::TemperatureDifference, "distance to a junction rating")
+            .zero()
+            .example("25 K");
     let mut derating = Derating::default();
     let like = "`{voltage: 80 %, junction_margin: 25 K}`";
     let Some(mut fields) = Fields::open(node, trail, like, notes) else { return derating };

@@ -7,6 +7,7 @@ use super::notes::Notes;
 use super::path::Trail;
 use super::reader::read_checked;
 use crate::budget::Library;
+use crate::gaps::Gaps;
 use crate::ledger::Slot;
 use crate::sheet::form::{Faults, Form};
 use crate::sheet::{
@@ -199,14 +200,17 @@ impl AnySheet {
     }
 
     /// What the model assumes or leaves out because the sheet does not say it.
-    pub(crate) fn gaps(&self, gaps: &mut Faults) {
-        match self {
-            AnySheet::Mosfet(sheet) => super::gaps::mosfet(sheet, gaps),
-            AnySheet::Diode(sheet) => super::gaps::diode(sheet, gaps),
-            AnySheet::Inductor(sheet) => super::gaps::inductor(sheet, gaps),
-            AnySheet::Capacitor(sheet) => super::gaps::capacitor(sheet, gaps),
-            AnySheet::Controller(sheet) => super::gaps::controller(sheet, gaps),
-            AnySheet::LinearRegulator(sheet) => super::gaps::linear_regulator(sheet, gaps),
+    pub(crate) fn gaps(&self, faults: &mut Faults) {
+        let gaps = match self {
+            AnySheet::Mosfet(sheet) => sheet.gaps(),
+            AnySheet::Diode(sheet) => sheet.gaps(),
+            AnySheet::Inductor(sheet) => sheet.gaps(),
+            AnySheet::Capacitor(sheet) => sheet.gaps(),
+            AnySheet::Controller(sheet) => sheet.gaps(),
+            AnySheet::LinearRegulator(sheet) => sheet.gaps(),
+        };
+        for gap in gaps {
+            faults.warn(gap.key, gap.text, gap.hint);
         }
     }
 }

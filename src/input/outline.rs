@@ -5,15 +5,16 @@
 //! that a large file can be read part by part.
 
 use std::borrow::Cow;
-use std::collections::HashMap;
 use std::path::Path;
 
 use saphyr_parser::{Event, Marker, Parser, ScanError, Span};
 
 use super::error::Blame;
 use super::error::{InputError, OtherPlace};
+use super::keys::Keys;
 use super::notes::MOST;
 use super::place::{Spot, excerpt};
+use super::stretches::{self, Stretch};
 use crate::printable::printable;
 
 /// Most keys of one mapping: parts of one kind in one file.
@@ -21,23 +22,6 @@ const MOST_KEYS: usize = 1_000_000;
 
 /// Deepest nesting of mappings and lists.
 pub(crate) const DEEPEST: usize = 64;
-
-/// Length from which a stretch is not extended, in bytes: long enough to be worth a parser, short enough to be
-/// shared among cores.
-const STRETCH: usize = 32 * 1024;
-
-/// Stretches of a text that can be read on their own.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub(crate) struct Stretch {
-    /// First byte.
-    pub(crate) start: usize,
-    /// First byte after it.
-    pub(crate) end: usize,
-    /// Line on which it begins, from 1.
-    pub(crate) line: usize,
-    /// Key at the top of the file to which it belongs; `None` when the stretch repeats that key itself.
-    pub(crate) kind: Option<Box<str>>,
-}
 
 /// What the guard learnt of a text.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
@@ -87,35 +71,6 @@ struct Frame<'t> {
     /// True when a value must come next.
     after_key: bool,
     keys: Keys<'t>,
-}
-
-/// Keys of a mapping with their places; hashed once there are many.
-#[derive(Default)]
-struct Keys<'t> {
-    list: Vec<(Cow<'t, str>, Spot)>,
-    hashed: HashMap<Cow<'t, str>, usize>,
-}
-
-impl<'t> Keys<'t> {
-    /// Adds a key; the place of an equal one, if there was one.
-    fn add(&mut self, key: Cow<'t, str>, spot: Spot) -> Option<Spot> {
-        let known = if self.list.len() < 32 {
-            self.list.iter().position(|(earlier, _)| *earlier == key)
-        } else {
-            if self.hashed.is_empty() {
-                self.hashed = self.list.iter().enumerate().map(|(i, (key, _))| (key.clone(), i)).collect();
-            }
-            self.hashed.get(&key).copied()
-        };
-        if let Some(known) = known {
-            return self.list.get(known).map(|(_, spot)| *spot);
-        }
-        if !self.hashed.is_empty() {
-            self.hashed.insert(key.clone(), self.list.len());
-        }
-        self.list.push((key, spot));
-        None
-    }
 }
 
 struct Guard<'t> {
@@ -215,12 +170,12 @@ impl<'t> Guard<'t> {
         frame.after_key = true;
         if depth == 1 {
             self.top.push((text.as_ref().into(), spot));
-        } else if depth == 2 && !frame.flow {
-            self.entries.push((self.top.len() - 1, spot));
+        } else if let Some(top) = self.top.len().checked_sub(1).filter(|_| depth == 2 && !frame.flow) {
+            self.entries.push((top, spot));
         }
         if text == "<<" {
             self.fault(spot, "merge keys are not read", "write the keys out");
-        } else if frame.keys.list.len() >= MOST_KEYS {
+        } else if frame.keys.len() >= MOST_KEYS {
             let reason = format!("more than {MOST_KEYS} keys stand in one mapping");
             self.fault(spot, reason, "split it into several files");
             self.stop = true;
@@ -310,39 +265,8 @@ impl<'t> Guard<'t> {
         self.text.get(start..)?.split('\n').next()
     }
 
-    /// Byte at which a line begins; the end of the text beyond the last one.
-    fn byte(&self, line: usize) -> usize {
-        self.lines.get(line - 1).copied().unwrap_or(self.text.len())
-    }
-
     fn outline(self) -> Outline {
-        let mut stretches = Vec::with_capacity(self.entries.len());
-        let whole_lines = self.top.windows(2).all(|pair| pair[0].1.line < pair[1].1.line)
-            && self.top.iter().all(|(_, spot)| spot.start == 0);
-        if !whole_lines {
-            stretches.push(Stretch { start: 0, end: self.text.len(), line: 1, kind: None });
-        }
-        for (index, (name, spot)) in self.top.iter().enumerate().filter(|_| whole_lines) {
-            let end = self.top.get(index + 1).map_or(self.text.len(), |(_, next)| self.byte(next.line));
-            let from = self.entries.partition_point(|(top, _)| *top < index);
-            let to = self.entries.partition_point(|(top, _)| *top <= index);
-            let own = &self.entries[from..to];
-            if own.is_empty() {
-                stretches.push(Stretch { start: self.byte(spot.line), end, line: spot.line, kind: None });
-            }
-            let mut open: Option<Stretch> = None;
-            for (place, (_, entry)) in own.iter().enumerate() {
-                let end = own.get(place + 1).map_or(end, |(_, next)| self.byte(next.line));
-                let start = self.byte(entry.line);
-                let own =
-                    open.get_or_insert(Stretch { start, end, line: entry.line, kind: Some(name.clone()) });
-                own.end = end;
-                if own.end - own.start >= STRETCH {
-                    stretches.extend(open.take());
-                }
-            }
-            stretches.extend(open);
-        }
+        let stretches = stretches::cut(self.text, &self.lines, &self.top, &self.entries);
         let top = self.top.into_iter().map(|(name, spot)| (name, spot.line)).collect();
         Outline { top, stretches }
     }
@@ -410,33 +334,5 @@ mod tests {
         let many: String = (0..100).map(|i| format!("k{i}: 1\n")).collect();
         assert!(faults(&many).is_empty());
         assert_eq!(faults(&(many + "k50: 1\n")), ["101:1 the key `k50` stands here a second time"]);
-    }
-
-    #[test]
-    fn long_files_are_cut_between_parts() {
-        let part = format!("  a: {{x: {}}}\n", "1".repeat(STRETCH / 3));
-        let text =
-            format!("mosfets:\n{}", (0..9).map(|i| part.replace('a', &format!("a{i}"))).collect::<String>());
-        let outline = guard(Path::new("x"), &text).expect("sound");
-        let pieces: Vec<&str> = outline.stretches.iter().map(|s| &text[s.start..s.end]).collect();
-        assert_eq!(pieces.len(), 3);
-        assert_eq!(format!("mosfets:\n{}", pieces.concat()), text);
-        assert_eq!(outline.stretches.iter().map(|s| s.line).collect::<Vec<_>>(), [2, 5, 8]);
-    }
-
-    #[test]
-    fn parts_can_be_read_one_by_one() {
-        let text = "# head\nmosfets:\n  a:\n    x: 1\n  # note\n  b: {x: 2}\ndiodes: {c: {x: 3}}\nempty:\n";
-        let outline = guard(Path::new("x"), text).expect("sound");
-        let seen: Vec<_> =
-            outline.stretches.iter().map(|s| (s.line, s.kind.as_deref(), &text[s.start..s.end])).collect();
-        assert_eq!(
-            seen,
-            [
-                (3, Some("mosfets"), "  a:\n    x: 1\n  # note\n  b: {x: 2}\n"),
-                (7, None, "diodes: {c: {x: 3}}\n"),
-                (8, None, "empty:\n"),
-            ]
-        );
     }
 }

@@ -176,10 +176,7 @@ type Written = (Vec<Line>, Vec<(Chapter, String)>);
 /// Writes every line of a solved point.
 fn write(candidate: &Candidate<'_>, detail: &Detail) -> Result<Written, Infeasible> {
     let solved = &detail.solved;
-    let (sheet, board) = match &candidate.worst {
-        None => (candidate.sheet.clone(), candidate.budget.board.clone()),
-        Some(worst) => worst.sheets_at(solved.point),
-    };
+    let (sheet, board) = candidate.sheets(solved.point);
     let fitted = candidate.fitted(solved.point);
     let origins = Origins::of(&sheet, &board, candidate.budget.source.as_deref());
     let mut book = Book::new(&origins);

@@ -4,7 +4,6 @@ use super::book::{Book, PURE};
 use super::case::Case;
 use super::laws;
 use crate::fitted::{HIGH, INDUCTOR, RECTIFIER, Rectifier};
-use crate::near::NearPower;
 use crate::parts::mosfet::{ASSUMED_HOT_RATIO, Mosfet};
 use crate::sheet::MosfetSheet;
 use crate::stage::RectifierSheet;
@@ -99,7 +98,7 @@ pub(super) fn channel(switch: &Switch<'_>, book: &mut Book<'_>) {
         switch.curves.hot_exponent,
         PURE,
     );
-    let hot = switch.curves.hot_ratio(switch.t_j, &mut NearPower::default());
+    let hot = switch.curves.hot_ratio(switch.t_j);
     book.step(
         &format!("R_DS(on)_{end}: on-resistance of all devices at T_J"),
         &format!("{r_25}/n_{end}·((T_J_{end} + 273.15)/298.15)^p_{end}"),

@@ -4,7 +4,6 @@ use super::book::{Book, Chapter, PURE, SQUARE_AMPERES};
 use super::case::Case;
 use super::{laws, resistance};
 use crate::fitted::{RECTIFIER, Rectifier, SCHOTTKY};
-use crate::near::Memory;
 use crate::units::Dimension as D;
 use crate::waveform::{Mode, OffPath};
 
@@ -118,7 +117,7 @@ pub(super) fn forward_voltage(case: &Case<'_>, book: &mut Book<'_>, symbol: &str
 
 fn continuous(case: &Case<'_>, book: &mut Book<'_>) {
     let waveform = case.waveform();
-    let path = case.prepared.current_path(case.nodes, &mut Memory::default());
+    let path = case.prepared.current_path(case.nodes);
     book.law(&laws::BALANCE);
     book.step(
         "R_h: resistance while the node is high",

@@ -16,7 +16,7 @@ pub struct AcWinding {
 /// (I_L,rms² - I²)(R_ac(f) - R_dc), not below 0 (E31). `excess_resistance` hot, in Ω.
 ///
 /// R_ac(f) = R_ac,ref √(f/f_ref) by skin effect, at the clock's frequency: while skipping the pulses keep their width.
-#[inline]
+#[inline(always)]
 pub fn ac_winding(waveform: &Waveform, load: f64, excess_resistance: f64) -> AcWinding {
     let ripple_square = waveform.output_capacitor_square(load);
     AcWinding { ripple_square, excess_resistance, watts: ripple_square * excess_resistance }

@@ -14,7 +14,7 @@ pub struct Bias {
 /// V_i I_q, or V_i (I_sleep + (I_q - I_sleep) f_e/f) while pulses are skipped (E42).
 ///
 /// I_q is the non-switching value of the data sheet; the switching one would count the gate charge twice.
-#[inline]
+#[inline(always)]
 pub fn bias(waveform: &Waveform, v_in: f64, i_q: f64, i_q_sleep: Option<f64>) -> Bias {
     let current = match (waveform.mode, i_q_sleep) {
         (Mode::PulseSkipping, Some(sleep)) => sleep + (i_q - sleep) * waveform.frequency / waveform.clock,

@@ -23,7 +23,7 @@ pub struct Copper {
 }
 
 /// Board copper at its temperature (E41). Source: the current each path carries.
-#[inline]
+#[inline(always)]
 pub fn copper(waveform: &Waveform, board: &Board, load: f64, hot_ratio: f64) -> Copper {
     let high_side_path = waveform.duty * waveform.mean_square * board.high_side_path * hot_ratio;
     let low_side_path = waveform.off_duty * waveform.mean_square * board.low_side_path * hot_ratio;

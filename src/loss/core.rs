@@ -19,21 +19,21 @@ pub struct Core {
 
 /// Core loss of n inductors in parallel (E32, E33, E34).
 ///
-/// P = n K (s λ)^β f_e^α (D1^(1-α) + D2^(1-α)), λ = V_on D1/f_e; iGSE (Venkatachalam et al., COMPEL 2002) in closed form
+/// P = n K (s λ)^β f_e^α (D1^(1-α) + D2^(1-α)), λ = V_on D1/f_e = L dI; iGSE (Venkatachalam et al., COMPEL 2002) in closed form
 /// for a triangle. With a material table the composite waveform hypothesis (Sullivan et al. 2010, from memory). Zero at 0 A in discontinuous mode.
-#[inline]
+#[inline(always)]
 pub fn core(waveform: &Waveform, law: &CoreLaw, n: f64, near: &mut CoreMemory) -> Core {
     if waveform.frequency <= 0.0 || waveform.duty <= 0.0 {
         return Core::default();
     }
-    let volt_seconds = waveform.v_on * waveform.duty / waveform.frequency;
+    let volt_seconds = waveform.inductance * waveform.ripple();
     match law {
         CoreLaw::Power(law) => {
             let swing = law.per_volt_second * volt_seconds;
-            let exponent = 1.0 - law.alpha;
             let duty_factor =
-                near.rise.at(waveform.duty, exponent) + near.fall.at(waveform.off_duty, exponent);
-            let density = near.swing.at(swing, law.beta) * near.frequency.at(waveform.frequency, law.alpha);
+                near.rise.at(waveform.duty, &law.of_duty) + near.fall.at(waveform.off_duty, &law.of_duty);
+            let density = near.swing.at(swing, &law.of_swing)
+                * near.frequency.at(waveform.frequency, &law.of_frequency);
             Core { volt_seconds, swing, duty_factor, watts: n * law.k * density * duty_factor }
         }
         CoreLaw::Material(law) => {

@@ -26,7 +26,7 @@ pub struct DeadTime {
 ///
 /// `drop` gives the diode's voltage in V at a current in A of all devices. Source: ISL6314 data sheet eq. 22, which uses
 /// peak and valley; the mean currents and the node's transit are derived.
-#[inline]
+#[inline(always)]
 pub fn rectifier(
     waveform: &Waveform,
     ends: DeadTimeEnds,
@@ -63,7 +63,7 @@ pub struct HighSideDeadTime {
 
 /// Negative valley: once the node has risen the current flows in the high side's body diode,
 /// |I_v| V_sd max(t_2 - Q_node/|I_v|, 0) f (E17). Derived.
-#[inline]
+#[inline(always)]
 pub fn high_side(current: f64, v_sd: f64, t_2: f64, node_charge: f64, frequency: f64) -> HighSideDeadTime {
     let time = (t_2 - node_charge / current).max(0.0);
     HighSideDeadTime { current, v_sd, time, watts: current * v_sd * time * frequency }

@@ -1,5 +1,7 @@
 //! Gate drive: charging and discharging the gates (E20, E21).
 
+use crate::edges::GateLoop;
+
 /// Gate power of one switch and where it is burnt.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct GatePower {
@@ -13,22 +15,20 @@ pub struct GatePower {
     pub watts: f64,
 }
 
-/// What one gate costs inside its MOSFET (E21). `r_g` and the driver's resistances in Ω; `frequency` is f_e in Hz.
-///
-/// Of Q V_dr one half is lost while charging and one while discharging; r_g and the driver share each. Source: division of a resistive loss.
-#[inline]
-pub fn gate_power(
-    charge: f64,
-    v_gate: f64,
-    r_g: f64,
-    [r_source, r_sink]: [f64; 2],
-    frequency: f64,
-) -> GatePower {
-    let own_share = 0.5 * (share(r_g, r_source) + share(r_g, r_sink));
+/// What one gate costs inside its MOSFET (E21). `charge` in C; `frequency` is f_e in Hz.
+#[inline(always)]
+pub fn gate_power(charge: f64, gate: &GateLoop, frequency: f64) -> GatePower {
+    let GateLoop { v_gate, own_share, .. } = *gate;
     GatePower { charge, v_gate, own_share, watts: frequency * charge * v_gate * own_share }
 }
 
-#[inline]
+/// Share of the gate power that heats the MOSFET itself; `r_g` and the driver's resistances while charging and while discharging in Ω.
+///
+/// Of Q V_dr one half is lost while charging and one while discharging; r_g and the driver share each. Source: division of a resistive loss.
+pub fn own_share(r_g: f64, [r_source, r_sink]: [f64; 2]) -> f64 {
+    0.5 * (share(r_g, r_source) + share(r_g, r_sink))
+}
+
 fn share(r_g: f64, r_driver: f64) -> f64 {
     if r_g > 0.0 { r_g / (r_g + r_driver) } else { 0.0 }
 }
@@ -48,7 +48,7 @@ pub struct DrivePower {
 ///
 /// V_s: input voltage for a drive made from the input, output voltage for one made from the output, V_drive/efficiency
 /// for an external rail. The low side switches at about zero volts and needs Q_g - Q_gd (MIC2182 data sheet p. 17).
-#[inline]
+#[inline(always)]
 pub fn drive_power(high: &GatePower, low: &GatePower, v_supply: f64, frequency: f64) -> DrivePower {
     let total = frequency * (high.charge + low.charge) * v_supply;
     DrivePower { v_supply, total, watts: (total - high.watts - low.watts).max(0.0) }

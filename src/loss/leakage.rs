@@ -34,7 +34,7 @@ impl ReverseVoltage {
 /// n (D1 V_i I_R(V_i, T_j) + (1 - D1 - D2) V_o I_R(V_o, T_j)) (E27), or `None` without leakage data.
 ///
 /// Source: ln I_R linear in T between data-sheet points; AN869 (ST) gives a slope of 0.055 /K. Voltages in V, T_j in °C.
-#[inline]
+#[inline(always)]
 pub fn leakage(
     waveform: &Waveform,
     diode: &Diode,

@@ -44,7 +44,7 @@ pub struct Overlap {
 /// Source: derived. The commonly printed sum ½ V I (t_on + t_off) + E_cap counts the node's energy twice; against a
 /// transient solution of the switching cell it reads 1.07 to 1.56 times too high (mean 1.32 over 14 random cells), this
 /// account 0.87 to 1.17 (mean 1.00). Valid for a gate-driven edge with constant inductor current.
-#[inline]
+#[inline(always)]
 pub fn high_side(at: &EdgeConditions, edges: EdgeDurations) -> Overlap {
     let on_edge = 0.5 * at.v_in * at.i_on * (edges.t_ri + MILLER_WEIGHT * edges.t_fv);
     let on_node = at.i_on * at.node_energy / at.surplus_current;
@@ -72,7 +72,7 @@ pub struct LowSideOverlap {
 }
 
 /// Low side turning off against |I_v|: V_i |I_v|/2 t_fi f (E17). Zero unless the valley is negative.
-#[inline]
+#[inline(always)]
 pub fn low_side(v_in: f64, current: f64, t_fi: f64, frequency: f64) -> LowSideOverlap {
     LowSideOverlap { current, t_fi, watts: 0.5 * v_in * current * t_fi * frequency }
 }

@@ -14,12 +14,12 @@ pub struct Recovery {
 /// V_i Q_rr(I_v) f with Q_rr(I_v) = n Q_rr,ref (I_v/(n I_ref))^a, less the output charge that the test counted (E18).
 ///
 /// Source: V_i Q_rr f as in the ADP3162 data sheet, eq. 23, and printed with IRF7832; exponent a = 0.5 from memory. In continuous mode with I_v > 0 only.
-#[inline]
+#[inline(always)]
 pub fn recovery(law: &RecoveryLaw, v_in: f64, valley: f64, frequency: f64) -> Recovery {
     if valley <= 0.0 {
         return Recovery::default();
     }
-    let ratio = valley / law.current;
+    let ratio = valley * law.per_current;
     let growth = if law.exponent == 0.5 { ratio.sqrt() } else { ratio.powf(law.exponent) };
     let charge = (law.charge * growth - law.counted_output_charge).max(0.0);
     Recovery { charge, watts: v_in * charge * frequency }

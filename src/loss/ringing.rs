@@ -14,7 +14,7 @@ pub struct Ringing {
 }
 
 /// E_ring f_e with the node settling at `v_node` (E16b); for linear capacitances ½ (C_h + C_r) v². Derived.
-#[inline]
+#[inline(always)]
 pub fn ringing(node: &NodeCapacitance, v_in: f64, v_node: f64, frequency: f64) -> Ringing {
     let energy = node.ringing_energy(v_in, v_node).max(0.0);
     Ringing { v_node, energy, watts: energy * frequency }

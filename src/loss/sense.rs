@@ -14,7 +14,7 @@ pub struct Sense {
 }
 
 /// I_L,rms² R_sense (E41). `resistance` hot, in Ω.
-#[inline]
+#[inline(always)]
 pub fn sense(waveform: &Waveform, resistance: f64) -> Sense {
     let mean_square = waveform.inductor_square();
     Sense { mean_square, resistance, watts: mean_square * resistance }

@@ -10,7 +10,7 @@ pub struct Snubber {
 }
 
 /// C V_i² f_e (E41): one half at each edge. Valid when the snubber settles within each part of the period.
-#[inline]
+#[inline(always)]
 pub fn snubber(capacitance: f64, v_in: f64, frequency: f64) -> Snubber {
     Snubber { capacitance, watts: capacitance * v_in * v_in * frequency }
 }

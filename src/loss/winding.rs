@@ -14,7 +14,7 @@ pub struct Winding {
 }
 
 /// R(T) I_L,rms² (E31). `resistance` is the hot DC resistance in Ω.
-#[inline]
+#[inline(always)]
 pub fn winding(waveform: &Waveform, resistance: f64) -> Winding {
     let mean_square = waveform.inductor_square();
     Winding { mean_square, resistance, watts: resistance * mean_square }

@@ -5,9 +5,11 @@
 /// Source: coefficient 0.00393 /K at 20 °C of IEC 60028. Valid from about -50 to 200 °C.
 #[inline]
 pub fn hot_ratio(temperature: f64) -> f64 {
-    (1.0 + PER_KELVIN * (temperature - 20.0)) / (1.0 + PER_KELVIN * 5.0)
+    (1.0 + PER_KELVIN * (temperature - 20.0)) * PER_COLD
 }
 
+/// R(20 °C)/R(25 °C).
+const PER_COLD: f64 = 1.0 / (1.0 + PER_KELVIN * 5.0);
 /// Temperature coefficient at 20 °C, 1/K.
 pub const PER_KELVIN: f64 = 0.003_93;
 

@@ -3,6 +3,7 @@
 use std::f64::consts::{LN_2, PI};
 
 use crate::fit;
+use crate::near::Power;
 use crate::sheet::inductor::{Core, InductorSheet};
 
 /// Core loss of one inductor against volt-seconds, duties and frequency.
@@ -25,6 +26,20 @@ pub struct PowerLaw {
     pub beta: f64,
     /// s: flux swing in T (or ripple in A) per volt-second.
     pub per_volt_second: f64,
+    /// f^α
+    pub of_frequency: Power,
+    /// (s λ)^β
+    pub of_swing: Power,
+    /// D^(1-α)
+    pub of_duty: Power,
+}
+
+impl PowerLaw {
+    /// From K, both exponents and the swing per volt-second.
+    pub fn of(k: f64, alpha: f64, beta: f64, per_volt_second: f64) -> Self {
+        let [of_frequency, of_swing, of_duty] = [alpha, beta, 1.0 - alpha].map(Power::of);
+        PowerLaw { k, alpha, beta, per_volt_second, of_frequency, of_swing, of_duty }
+    }
 }
 
 impl CoreLaw {
@@ -37,7 +52,7 @@ impl CoreLaw {
         let [a, alpha, beta] = fit::plane(&sheet.core_loss_logs())?;
         let at_half = LN_2 * alpha; // ln of 2 (1/2)^(1-α)
         let per_volt_second = 1.0 / sheet.inductance.value;
-        Some(CoreLaw::Power(PowerLaw { k: (a - at_half).exp(), alpha, beta, per_volt_second }))
+        Some(CoreLaw::Power(PowerLaw::of((a - at_half).exp(), alpha, beta, per_volt_second)))
     }
 
     fn of_core(core: &Core) -> Option<Self> {
@@ -45,7 +60,7 @@ impl CoreLaw {
         if let (Some(k), Some(alpha), Some(beta)) = (&core.k, &core.alpha, &core.beta) {
             let (alpha, beta) = (alpha.value, beta.value);
             let k = volume * igse_coefficient(k.value, alpha, beta);
-            return Some(CoreLaw::Power(PowerLaw { k, alpha, beta, per_volt_second }));
+            return Some(CoreLaw::Power(PowerLaw::of(k, alpha, beta, per_volt_second)));
         }
         MaterialLaw::fit(&core.material_logs(), volume, per_volt_second).map(CoreLaw::Material)
     }

@@ -3,8 +3,22 @@
 /// A curve through points: linear between them, the first value held below them, the last segment continued above.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Curve {
-    points: Vec<[f64; 2]>,
-    slope_above: f64,
+    lines: Vec<Line>,
+}
+
+/// A straight line that counts from one point of a curve to the next.
+#[derive(Clone, Copy, Debug, PartialEq)]
+struct Line {
+    from: f64,
+    value: f64,
+    slope: f64,
+}
+
+/// Where an x falls among the points of a curve; serves every curve through points at the same x.
+#[derive(Clone, Copy, Debug)]
+pub struct Place {
+    line: usize,
+    beyond: f64,
 }
 
 impl Curve {
@@ -17,46 +31,54 @@ impl Curve {
                 Err(place) => sorted.insert(place, [x, y]),
             }
         }
-        let slope_above = match sorted.as_slice() {
-            [.., a, b] => (b[1] - a[1]) / (b[0] - a[0]),
+        let slope = |pair: &[[f64; 2]]| match pair {
+            [a, b] => (b[1] - a[1]) / (b[0] - a[0]),
             _ => 0.0,
         };
-        Curve { points: sorted, slope_above }
+        let last = slope(sorted.get(sorted.len().saturating_sub(2)..).unwrap_or_default());
+        let slopes = sorted.windows(2).map(slope).chain([last]);
+        let line = |(point, slope): (&[f64; 2], f64)| Line { from: point[0], value: point[1], slope };
+        Curve { lines: sorted.iter().zip(slopes).map(line).collect() }
+    }
+
+    /// The place of x.
+    #[inline(always)]
+    pub fn place(&self, x: f64) -> Place {
+        let mut place = Place { line: 0, beyond: 0.0 };
+        for (index, line) in self.lines.iter().enumerate() {
+            // the first value holds below the first point
+            if x <= line.from {
+                break;
+            }
+            place = Place { line: index, beyond: x - line.from };
+        }
+        place
+    }
+
+    /// Value at a place.
+    #[inline(always)]
+    pub fn on(&self, place: Place) -> f64 {
+        self.lines.get(place.line).map_or(0.0, |line| line.value + line.slope * place.beyond)
     }
 
     /// Value at x.
-    #[inline]
+    #[inline(always)]
     pub fn at(&self, x: f64) -> f64 {
-        let (Some(first), Some(last)) = (self.points.first(), self.points.last()) else {
-            return 0.0;
-        };
-        if x <= first[0] {
-            return first[1];
-        }
-        if x >= last[0] {
-            return last[1] + self.slope_above * (x - last[0]);
-        }
-        let mut low = first;
-        for high in &self.points[1..] {
-            if x < high[0] {
-                return low[1] + (high[1] - low[1]) * (x - low[0]) / (high[0] - low[0]);
-            }
-            low = high;
-        }
-        last[1]
+        self.on(self.place(x))
     }
 
     /// Value at x, clamped to the values at both ends.
+    #[inline]
     pub fn clamped_at(&self, x: f64) -> f64 {
-        match self.points.last() {
-            Some(last) => self.at(x.min(last[0])),
+        match self.lines.last() {
+            Some(last) => self.at(x.min(last.from)),
             None => 0.0,
         }
     }
 
-    /// The points, sorted.
-    pub fn points(&self) -> &[[f64; 2]] {
-        &self.points
+    /// Where the points stand, in order.
+    pub fn xs(&self) -> impl Iterator<Item = f64> + '_ {
+        self.lines.iter().map(|line| line.from)
     }
 }
 

@@ -12,6 +12,8 @@ use crate::stage::Placed;
 pub struct Diode {
     /// Number in parallel.
     pub n: f64,
+    /// 1/n
+    share: f64,
     /// Forward voltage of one device.
     pub forward: ForwardLaw,
     /// Reverse leakage of one device, when known.
@@ -31,6 +33,7 @@ impl Diode {
         let q_c = JunctionCharge::from_sheet(sheet.q_c.as_ref(), sheet.c_j.as_ref(), "v_r");
         Diode {
             n,
+            share: 1.0 / n,
             forward: ForwardLaw::fit(sheet),
             leakage: LeakageLaw::fit(&sheet.i_r),
             q_c: q_c.map(|q| q.times(n)),
@@ -40,18 +43,27 @@ impl Diode {
     }
 
     /// Forward voltage at a current of all devices and a junction temperature, V.
-    #[inline]
+    #[inline(always)]
     pub fn forward_voltage(&self, current: f64, t_j: f64) -> f64 {
-        self.forward.at(current / self.n, t_j)
+        self.forward.at(current * self.share, t_j)
+    }
+
+    /// Growth of the forward voltage with temperature at a current of all devices, V/K.
+    #[inline]
+    pub fn forward_drift(&self, current: f64) -> f64 {
+        self.forward.drift(current * self.share)
     }
 }
 
 /// Forward voltage against current and temperature (E25).
 #[derive(Clone, Debug, PartialEq)]
 pub struct ForwardLaw {
+    /// V_f at the first temperature, V.
     cold: Curve,
-    /// The second curve with its temperature and that of the first.
-    hot: Option<(Curve, f64, f64)>,
+    /// dV_f/dT, V/K, through points at the same currents; `None` with one temperature.
+    drift: Option<Curve>,
+    /// The first temperature, °C.
+    t_cold: f64,
 }
 
 impl ForwardLaw {
@@ -66,22 +78,29 @@ impl ForwardLaw {
             .collect();
         match curves.as_slice() {
             [(t_cold, cold), (t_hot, hot), ..] => {
-                ForwardLaw { cold: cold.clone(), hot: Some((hot.clone(), *t_cold, *t_hot)) }
+                let currents: Vec<f64> = cold.xs().chain(hot.xs()).collect();
+                let through = |y: &dyn Fn(f64) -> f64| Curve::through(currents.iter().map(|i| (*i, y(*i))));
+                let drift = through(&|i| (hot.at(i) - cold.at(i)) / (t_hot - t_cold));
+                ForwardLaw { cold: through(&|i| cold.at(i)), drift: Some(drift), t_cold: *t_cold }
             }
-            [(_, only)] => ForwardLaw { cold: only.clone(), hot: None },
-            [] => ForwardLaw { cold: Curve::default(), hot: None },
+            [(t_only, only)] => ForwardLaw { cold: only.clone(), drift: None, t_cold: *t_only },
+            [] => ForwardLaw { cold: Curve::default(), drift: None, t_cold: 25.0 },
         }
     }
 
     /// V_f(i, T) of one device, V: linear between the two temperatures and beyond them, floor 50 mV.
-    #[inline]
+    #[inline(always)]
     pub fn at(&self, i: f64, t_j: f64) -> f64 {
-        let cold = self.cold.at(i);
-        let v_f = match &self.hot {
-            Some((hot, t_cold, t_hot)) => cold + (hot.at(i) - cold) * (t_j - t_cold) / (t_hot - t_cold),
-            None => cold,
-        };
-        v_f.max(0.05)
+        let place = self.cold.place(i);
+        let cold = self.cold.on(place);
+        let drift = self.drift.as_ref().map_or(0.0, |drift| drift.on(place));
+        (cold + drift * (t_j - self.t_cold)).max(0.05)
+    }
+
+    /// dV_f/dT of one device at a current, V/K.
+    #[inline]
+    pub fn drift(&self, i: f64) -> f64 {
+        self.drift.as_ref().map_or(0.0, |drift| drift.at(i))
     }
 }
 

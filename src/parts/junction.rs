@@ -49,7 +49,7 @@ impl JunctionCharge {
     /// E(v) = Q(v) v / 3, J: the integral of v dQ.
     #[inline]
     pub fn energy(self, v: f64) -> f64 {
-        self.charge(v) * v / 3.0
+        self.charge(v) * v * (1.0 / 3.0)
     }
 }
 

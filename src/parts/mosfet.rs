@@ -1,28 +1,33 @@
 //! MOSFET: the curves of the model, for n devices in parallel.
 
-use crate::near::NearPower;
 use crate::parts::curve::Curve;
+use crate::parts::hot::{COLD_KELVIN, HotLaw};
 use crate::parts::junction::JunctionCharge;
 use crate::sheet::edge_times::EdgeTimes;
 use crate::sheet::mosfet::{MosfetSheet, Recovery};
 use crate::stage::Placed;
-
-/// 25 °C in K, the reference of on-resistances.
-const COLD_KELVIN: f64 = 298.15;
 
 /// n MOSFETs in parallel with the curves read from their data sheet.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Mosfet {
     /// Number in parallel.
     pub n: f64,
+    /// 1/n
+    share: f64,
     /// On-resistance of one device at 25 °C against gate voltage.
     pub on_resistance: OnResistance,
     /// Exponent p of R(T) = R_25 (T/298.15 K)^p (E11).
     pub hot_exponent: f64,
+    /// The law with this exponent.
+    hot: HotLaw,
     /// Threshold voltage, V.
     pub v_th: f64,
+    /// 1/V_th, 1/V.
+    pub per_threshold: f64,
     /// Transconductance of all devices, n I_test/(V_pl,test - V_th), S (E13).
     pub transconductance: f64,
+    /// Its inverse, V/A.
+    volts_per_ampere: f64,
     /// Gate capacitance between threshold and plateau of all devices, F (E13).
     pub gate_capacitance: f64,
     /// Gate-drain charge of all devices against voltage.
@@ -57,10 +62,14 @@ impl Mosfet {
         let edges = driver_edges.cloned().unwrap_or_default().or(Some(&own_edges));
         Mosfet {
             n,
+            share: 1.0 / n,
             on_resistance: OnResistance::fit(sheet),
             hot_exponent: hot_exponent(sheet),
+            hot: HotLaw::of(hot_exponent(sheet)),
             v_th,
+            per_threshold: 1.0 / v_th,
             transconductance: n * i_test / (v_pl - v_th),
+            volts_per_ampere: (v_pl - v_th) / (n * i_test),
             gate_capacitance: n * sheet.q_gs2() / (v_pl - v_th),
             q_gd: q_gd.times(n),
             q_oss: q_oss.map(|q| q.times(n)),
@@ -75,21 +84,21 @@ impl Mosfet {
     }
 
     /// R(T_j)/R(25 °C) (E11).
-    #[inline]
-    pub fn hot_ratio(&self, t_j: f64, near: &mut NearPower) -> f64 {
-        near.at((t_j + 273.15) * (1.0 / COLD_KELVIN), self.hot_exponent)
+    #[inline(always)]
+    pub fn hot_ratio(&self, t_j: f64) -> f64 {
+        self.hot.at(t_j)
     }
 
     /// Plateau voltage at a drain current of all devices (E13), V.
-    #[inline]
+    #[inline(always)]
     pub fn plateau(&self, current: f64) -> f64 {
-        self.v_th + current / self.transconductance
+        self.v_th + current * self.volts_per_ampere
     }
 
     /// Body diode forward voltage at a current of all devices, V; never below 50 mV.
-    #[inline]
+    #[inline(always)]
     pub fn body_diode(&self, current: f64) -> f64 {
-        self.v_sd.at(current / self.n).max(0.05)
+        self.v_sd.at(current * self.share).max(0.05)
     }
 }
 
@@ -204,6 +213,8 @@ pub struct RecoveryLaw {
     pub charge: f64,
     /// n I_ref, A.
     pub current: f64,
+    /// 1/(n I_ref), 1/A.
+    pub per_current: f64,
     /// Exponent of the growth with current.
     pub exponent: f64,
     /// Output charge that the test counted too, C.
@@ -220,9 +231,11 @@ impl RecoveryLaw {
             (Some(true), Some(v_r), Some(junction)) => n * junction.charge(v_r),
             _ => 0.0,
         };
+        let current = n * recovery.charge.condition("i").unwrap_or(1.0);
         RecoveryLaw {
             charge: n * recovery.charge.value,
-            current: n * recovery.charge.condition("i").unwrap_or(1.0),
+            current,
+            per_current: 1.0 / current,
             exponent: recovery.exponent.as_ref().map_or(ASSUMED_RECOVERY_EXPONENT, |exponent| exponent.value),
             counted_output_charge: counted,
         }

@@ -27,6 +27,25 @@ fn cells(value: f64, largest: f64) -> usize {
     ((value / largest * HALF as f64).round() as usize).clamp(1, HALF)
 }
 
+/// Cells of one half of an error bar, which stands in wide tables.
+const ERROR_HALF: usize = 7;
+
+/// A value with its half-width about a zero line, all to the same largest end: "   ─●─│   ".
+pub fn error_bar(value: f64, half: f64, largest: f64) -> String {
+    let place = |x: f64| {
+        let cells = if largest > 0.0 { x / largest * ERROR_HALF as f64 } else { 0.0 };
+        (cells.round().clamp(-(ERROR_HALF as f64), ERROR_HALF as f64) + ERROR_HALF as f64) as usize
+    };
+    let (from, to, middle) = (place(value - half), place(value + half), place(value));
+    let cell = |at: usize| match at {
+        at if at == middle => "●",
+        at if (from..=to).contains(&at) => "─",
+        at if at == ERROR_HALF => "│",
+        _ => SPACE,
+    };
+    (0..=2 * ERROR_HALF).map(cell).collect()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -38,5 +57,8 @@ mod tests {
         assert_eq!(plain([None, Some(0.001)]), "          │█");
         assert_eq!(plain([Some(0.0), Some(0.0)]), "          │");
         assert_eq!(one_sided(1.0, 2.0), "█████");
+        let plain = |value, half| error_bar(value, half, 2.0).replace(SPACE, " ");
+        assert_eq!(plain(0.0, 0.6), "     ──●──     ");
+        assert_eq!(plain(1.0, 0.3), "       │  ─●─  ");
     }
 }

@@ -32,6 +32,8 @@ pub enum Plot {
     Stack(Stack),
     /// A table of numbers on shades.
     Heat(Heat),
+    /// Points with error bars and a line at zero.
+    Errors(Errors),
 }
 
 /// One axis.
@@ -56,6 +58,34 @@ pub struct Curves {
     pub series: Vec<Series>,
     /// Upright lines at places of x, with words.
     pub marks: Vec<(f64, String)>,
+}
+
+/// Measured differences with what they may be off by.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Errors {
+    /// From left to right.
+    pub x: Scale,
+    /// From bottom to top; zero is always shown.
+    pub y: Scale,
+    /// Place, value and half-width of its bar.
+    pub points: Vec<ErrorPoint>,
+    /// What is fitted to them: places and values.
+    pub curve: Vec<(f64, f64)>,
+    /// What the curve is.
+    pub curve_label: String,
+}
+
+/// A point with its error bar.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ErrorPoint {
+    /// Place.
+    pub x: f64,
+    /// Value.
+    pub y: f64,
+    /// Half-width of its bar.
+    pub half: f64,
+    /// True for one that stands out: drawn filled.
+    pub stands_out: bool,
 }
 
 /// A line.

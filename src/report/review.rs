@@ -16,6 +16,8 @@ pub struct Material<'a> {
     pub date: Option<&'a str>,
     /// The ranking of the shortlist.
     pub shortlist: Option<&'a Document>,
+    /// Answers to further questions.
+    pub further: &'a [Document],
 }
 
 /// The whole review.
@@ -49,6 +51,15 @@ pub fn document(material: &Material<'_>) -> Document {
     if let Some(shortlist) = material.shortlist {
         document.heading(2, "Shortlist");
         nested(shortlist, 1, &mut document);
+    }
+    for answer in material.further {
+        // "Rail: spread by part tolerance" is a section "Spread by part tolerance" of the rail's review
+        let own = answer.title.strip_prefix(budget.name.as_str()).unwrap_or(&answer.title);
+        let title = own.trim_start_matches([':', ' ']);
+        let mut letters = title.chars();
+        let first = letters.next().map(|letter| letter.to_uppercase().to_string()).unwrap_or_default();
+        document.heading(2, first + letters.as_str());
+        nested(answer, 1, &mut document);
     }
     document.heading(2, "Findings at the headline");
     parts::findings(comparison, &mut document);

@@ -5,10 +5,10 @@ use super::{Anchor, Canvas, DASHES, INKS, WIDTH, labels, round};
 use crate::report::figure::{Curves, Series};
 use crate::report::number::Form;
 
-const LEFT: f64 = 62.0;
-const RIGHT: f64 = 178.0;
-const TOP: f64 = 26.0;
-const HEIGHT: f64 = 330.0;
+pub(super) const LEFT: f64 = 62.0;
+pub(super) const RIGHT: f64 = 178.0;
+pub(super) const TOP: f64 = 26.0;
+pub(super) const HEIGHT: f64 = 330.0;
 
 /// Draws the lines; returns the height used.
 pub(super) fn draw(curves: &Curves, canvas: &mut Canvas) -> f64 {
@@ -53,17 +53,17 @@ fn marks(curves: &Curves, x: &XAxis<'_>, canvas: &mut Canvas) {
     }
 }
 
-struct XAxis<'a> {
-    axis: Axis<'a>,
+pub(super) struct XAxis<'a> {
+    pub(super) axis: Axis<'a>,
 }
 
 impl XAxis<'_> {
-    fn at(&self, value: f64) -> Option<f64> {
+    pub(super) fn at(&self, value: f64) -> Option<f64> {
         self.axis.place(value).map(|share| LEFT + (WIDTH - LEFT - RIGHT) * share)
     }
 }
 
-fn frame(x: &XAxis<'_>, y: &Axis<'_>, canvas: &mut Canvas) {
+pub(super) fn frame(x: &XAxis<'_>, y: &Axis<'_>, canvas: &mut Canvas) {
     let bottom = TOP + HEIGHT;
     let right = WIDTH - RIGHT;
     for tick in &x.axis.ticks {

@@ -3,6 +3,7 @@
 
 pub(super) mod axis;
 mod curves;
+mod errors;
 mod heat;
 mod labels;
 mod stack;
@@ -23,6 +24,7 @@ pub fn svg(figure: &Figure, id: &str) -> String {
         Plot::Curves(curves) => curves::draw(curves, &mut canvas),
         Plot::Stack(stack) => stack::draw(stack, &mut canvas),
         Plot::Heat(heat) => heat::draw(heat, &mut canvas),
+        Plot::Errors(errors) => errors::draw(errors, &mut canvas),
     };
     format!(
         "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 {WIDTH} {}\" role=\"img\" aria-labelledby=\"{id}-t {id}-d\">\n\
