@@ -23,6 +23,8 @@ use crate::sweep::{self, Watch};
 pub struct Request {
     /// The stage whose requirements decide the exit code; any stage when absent.
     pub stage: Option<String>,
+    /// Draws efficiency against load.
+    pub plot: bool,
 }
 
 /// Compares the stages of a budget.
@@ -51,7 +53,7 @@ impl Question<'_> {
 
 impl Answer for Question<'_> {
     fn document(&self) -> crate::report::Document {
-        self.with(crate::report::comparison::document)
+        self.with(|comparison| crate::report::comparison::document(comparison, self.request.plot))
     }
 
     fn json(&self, out: &mut dyn Write) -> io::Result<()> {

@@ -7,11 +7,11 @@ use crate::ledger::{ALL_ACCOUNTS, ALL_FAMILIES, ALL_SLOTS, Account, Family, Mech
 use crate::model::Solved;
 use crate::ratings;
 use crate::record::{Detail, Record};
-use crate::report::{Cell, Column, Document, Table, balance, caption, needs, words};
+use crate::report::{Block, Cell, Column, Document, Table, balance, caption, figures, needs, words};
 use crate::units::Dimension as D;
 
-/// The whole answer: rail, verdict, balance, stages side by side, curves, crossovers, requirements.
-pub fn document(comparison: &Comparison<'_>) -> Document {
+/// The whole answer: rail, verdict, balance, stages side by side, curves (drawn when told), crossovers, requirements.
+pub fn document(comparison: &Comparison<'_>, plot: bool) -> Document {
     let budget = comparison.budget;
     let mut document = Document::new(budget.name.clone());
     document.fact("rail", Cell::text(rail(comparison)));
@@ -41,6 +41,9 @@ pub fn document(comparison: &Comparison<'_>) -> Document {
     document.heading(2, "Temperatures");
     document.table(temperatures(comparison));
     document.heading(2, "Efficiency and loss over the load");
+    if plot {
+        document.blocks.push(Block::Figure(figures::efficiency_at_headline(comparison)));
+    }
     document.table(curves(comparison));
     document.heading(2, "Crossovers");
     crossovers(comparison, &mut document);
