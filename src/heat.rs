@@ -220,6 +220,7 @@ fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: &Heated) -> Sol
         output_voltage: prepared.output_voltage,
         waveform: Some(waveform),
         temperatures: by_slot(prepared, temperatures),
+        held: held(prepared),
         ledger: ledger(heated, &unheated),
     }
 }
@@ -231,6 +232,16 @@ fn by_slot(prepared: &Prepared<'_>, temperatures: &Nodes) -> Temperatures {
         if let Some(slot) = slot {
             slots[slot.index()] = Some(*temperature);
         }
+    }
+    slots
+}
+
+/// Slots without a thermal resistance.
+fn held(prepared: &Prepared<'_>) -> [bool; SLOTS] {
+    let mut slots = [false; SLOTS];
+    let synchronous = prepared.stage.is_synchronous();
+    for (node, to_ambient) in prepared.stage.heat.to_ambient.iter().enumerate() {
+        slots[slot_of(node, synchronous).index()] = to_ambient.is_none();
     }
     slots
 }
@@ -393,7 +404,9 @@ pub fn settle_linear(
     }
     let mut temperatures = [None; SLOTS];
     temperatures[Slot::Regulator.index()] = Some(temperature);
-    Ok(Solved { point, output_voltage, waveform: None, temperatures, ledger })
+    let mut held = [false; SLOTS];
+    held[Slot::Regulator.index()] = regulator.r_th.is_none();
+    Ok(Solved { point, output_voltage, waveform: None, temperatures, held, ledger })
 }
 
 #[cfg(test)]

@@ -39,7 +39,16 @@ pub(crate) fn give(
         #[cfg(feature = "xlsx")]
         Format::Xlsx => Ok(()),
     })?;
-    Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+    Ok(exit(answer))
+}
+
+/// The exit code of an answer; a missed requirement is said, not only coded.
+fn exit(answer: &dyn Answer) -> Exit {
+    if answer.met() {
+        return Exit::Done;
+    }
+    terminal::say("a requirement is missed, hence exit code 1; `lossbook compare` lists them one by one");
+    Exit::Missed
 }
 
 /// Writes a spreadsheet to a file.
@@ -58,7 +67,7 @@ fn spreadsheet(answer: &dyn Answer, file: Option<&Path>) -> Result<Exit, Failure
         Some(Err(fault)) => Err(Failure::asked("the spreadsheet cannot be made", fault)),
         Some(Ok(bytes)) => {
             to(file, |out| out.write_all(&bytes))?;
-            Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+            Ok(exit(answer))
         }
     }
 }
