@@ -42,6 +42,10 @@ pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
             }
+            // the controller only follows, but it too must stay below what is believed (E51)
+            if image[CONTROLLER].is_nan() || image[CONTROLLER] >= HOTTEST {
+                break;
+            }
             prepared.check_times(&waveform)?;
             search.t[CONTROLLER] = image[CONTROLLER];
             return Ok(solved(prepared, &search.t, &heated));
