@@ -31,7 +31,7 @@ fn fine_loads(comparison: &Comparison<'_>) -> Vec<f64> {
     let Some(axis) = comparison.budget.grid.axis(AxisName::Load) else { return Vec::new() };
     let positive = || axis.values().filter(|load| *load > 0.0);
     let (low, high) = (positive().fold(f64::INFINITY, f64::min), positive().fold(0.0, f64::max));
-    if !(high > low) {
+    if high <= low {
         return positive().take(1).collect();
     }
     Axis::Range { from: low, to: high, points: POINTS, log: true }.values().collect()
@@ -123,7 +123,7 @@ fn in_words(series: &[Series]) -> String {
     let one = |line: &Series| {
         let known = || line.points.iter().filter_map(|(load, value)| Some((*load, (*value)?)));
         let best = known().max_by(|a, b| a.1.total_cmp(&b.1));
-        let (Some(best), Some(last)) = (best, known().last()) else {
+        let (Some(best), Some(last)) = (best, known().next_back()) else {
             return format!("{}: cannot run", line.label);
         };
         format!(
