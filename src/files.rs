@@ -116,7 +116,7 @@ pub fn read_text(path: &Path) -> Result<TextFile, FileFault> {
     Ok(TextFile { text: decode(bytes)?, sha256 })
 }
 
-/// True places of the files read in this run: none of them is ever written over.
+/// True places of the files read in this run: no answer is ever written over one of them.
 static READ: Mutex<BTreeSet<PathBuf>> = Mutex::new(BTreeSet::new());
 
 fn remember_read(path: &Path) {
@@ -125,9 +125,16 @@ fn remember_read(path: &Path) {
     }
 }
 
-/// True for a file that was read in this run.
-fn was_read(path: &Path) -> bool {
-    READ.lock().unwrap_or_else(PoisonError::into_inner).contains(path)
+/// Refuses a file that was read in this run as the place of an answer, behind links too.
+///
+/// # Errors
+/// [`FileFault::IsInput`].
+pub fn refuse_input(path: &Path) -> Result<(), FileFault> {
+    let read = READ.lock().unwrap_or_else(PoisonError::into_inner);
+    match fs::canonicalize(path) {
+        Ok(place) if read.contains(&place) => Err(FileFault::IsInput),
+        _ => Ok(()),
+    }
 }
 
 /// Text of a file's bytes: UTF-8, byte order mark dropped, every line end a `\n`.

@@ -5,7 +5,7 @@ use std::path::Path;
 use std::sync::Arc;
 
 use lossbook::answer::Answer;
-use lossbook::files::{Draft, FileFault};
+use lossbook::files::{self, Draft, FileFault};
 use lossbook::render::{Html, Markdown, Render, Text};
 use lossbook::sweep::Watch;
 
@@ -101,6 +101,7 @@ pub(crate) fn to(
         return write(&mut out).and_then(|()| out.flush()).map_err(Failure::of_stdout);
     };
     let failed = |fault: FileFault| Failure::Output { file: Some(path.to_path_buf()), fault };
+    files::refuse_input(path).map_err(failed)?;
     let mut draft = Draft::begin(path).map_err(failed)?;
     interrupt::watch_draft(draft.temporary());
     match write(&mut draft) {

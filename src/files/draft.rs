@@ -31,9 +31,6 @@ impl Draft {
     pub fn begin(path: &Path) -> Result<Draft, FileFault> {
         // behind a link it is the link's goal that is replaced
         let goal = fs::canonicalize(path).unwrap_or_else(|_| path.to_path_buf());
-        if super::was_read(&goal) {
-            return Err(FileFault::IsInput);
-        }
         match fs::metadata(&goal) {
             Ok(about) if about.is_dir() => return Err(FileFault::IsFolder),
             Ok(about) if about.permissions().readonly() => return Err(FileFault::NoPermission),
