@@ -6,7 +6,6 @@ use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
 use crate::loss::leakage::Leakage;
 use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
-use crate::near::Memory;
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::diode::Diode;
 use crate::parts::linear_regulator::LinearRegulator;
@@ -32,11 +31,10 @@ const SUSPECT: f64 = 0.4;
 #[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut search = Search::from_ambient(prepared.point.ambient);
-    let mut near = Memory::default();
     for _ in 0..QUICK_PASSES {
         let hot = prepared.hot(&search.t);
         let waveform = prepared.waveform(&search.t, &hot)?;
-        let heated = prepared.heated_by(waveform, &search.t, &hot, &mut near);
+        let heated = prepared.heated_by(waveform, &search.t, &hot);
         let image = image(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
@@ -203,7 +201,7 @@ pub fn at_temperatures(prepared: &Prepared<'_>, temperatures: &Nodes) -> Result<
     let hot = prepared.hot(temperatures);
     let waveform = prepared.waveform(temperatures, &hot)?;
     prepared.check_times(&waveform)?;
-    let heated = prepared.heated_by(waveform, temperatures, &hot, &mut Memory::default());
+    let heated = prepared.heated_by(waveform, temperatures, &hot);
     Ok(solved(prepared, temperatures, &heated))
 }
 
@@ -278,10 +276,10 @@ fn unheated_watts(prepared: &Prepared<'_>, waveform: &Waveform, slot: Slot) -> f
 
 /// The image of temperatures, outside the quick search.
 #[inline(never)]
-fn image_at(prepared: &Prepared<'_>, t: &Nodes, near: &mut Memory) -> Result<Nodes, Infeasible> {
+fn image_at(prepared: &Prepared<'_>, t: &Nodes) -> Result<Nodes, Infeasible> {
     let hot = prepared.hot(t);
     let waveform = prepared.waveform(t, &hot)?;
-    Ok(image(prepared, &prepared.heated_by(waveform, t, &hot, near)))
+    Ok(image(prepared, &prepared.heated_by(waveform, t, &hot)))
 }
 
 fn largest(values: &Nodes) -> f64 {
@@ -293,10 +291,9 @@ fn largest(values: &Nodes) -> f64 {
 fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut t = [prepared.point.ambient; NODES];
     let mut weight: f64 = 1.0;
-    let mut near = Memory::default();
     let mut last_sign = [0.0; NODES];
     for _ in 0..CAREFUL_PASSES {
-        let image = image_at(prepared, &t, &mut near)?;
+        let image = image_at(prepared, &t)?;
         let mut difference = [0.0; NODES];
         for node in 0..NODES {
             difference[node] = image[node] - t[node];
@@ -339,16 +336,15 @@ const GAIN_STEP: f64 = 1e-3;
 pub fn loop_gain(prepared: &Prepared<'_>, t: &Nodes) -> Result<f64, Infeasible> {
     // no loss depends on the temperature of the controller: its column is zero
     let mut jacobian = [[0.0; MUTUAL]; MUTUAL];
-    let mut near = Memory::default();
     for column in 0..MUTUAL {
         if prepared.stage.heat.to_ambient[column].is_none() {
             continue;
         }
         let mut moved = *t;
         moved[column] = t[column] + GAIN_STEP;
-        let above = image_at(prepared, &moved, &mut near)?;
+        let above = image_at(prepared, &moved)?;
         moved[column] = t[column] - GAIN_STEP;
-        let below = image_at(prepared, &moved, &mut near)?;
+        let below = image_at(prepared, &moved)?;
         for row in 0..MUTUAL {
             jacobian[row][column] = (above[row] - below[row]) / (2.0 * GAIN_STEP);
         }

@@ -32,7 +32,7 @@ use crate::loss::{
     snubber::{self, Snubber},
     winding::{self, Winding},
 };
-use crate::near::{Memory, NearLogarithm};
+use crate::near::at_least;
 use crate::parts::controller::Supply;
 use crate::parts::copper::hot_ratio;
 use crate::parts::linear_regulator::LinearRegulator;
@@ -277,22 +277,21 @@ impl<'a> Prepared<'a> {
     }
 
     /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
-    pub fn heated(&self, t: &Nodes, near: &mut Memory) -> Result<Heated, Infeasible> {
+    pub fn heated(&self, t: &Nodes) -> Result<Heated, Infeasible> {
         let hot = self.hot(t);
-        Ok(self.heated_by(self.waveform(t, &hot)?, t, &hot, near))
+        Ok(self.heated_by(self.waveform(t, &hot)?, t, &hot))
     }
 
     /// What heats the parts at temperatures with the waveform that belongs to them.
     #[inline(always)]
-    pub fn heated_by(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios, near: &mut Memory) -> Heated {
+    pub fn heated_by(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios) -> Heated {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let (controller, high) = (&stage.controller, &stage.high_side);
         let frequency = waveform.frequency;
 
         // high side
-        let i_on = waveform.valley.max(0.0);
-        let durations =
-            edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak], near);
+        let i_on = at_least(0.0, waveform.valley);
+        let durations = edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak]);
         let conditions = EdgeConditions {
             v_in,
             i_on,
@@ -319,7 +318,7 @@ impl<'a> Prepared<'a> {
             Rectifier::Diode(diode) => diode.recovery.as_ref(),
         };
         let switched_off = if waveform.is_continuous() { waveform.valley } else { 0.0 };
-        let rectifier = self.heated_rectifier(&waveform, t, hot, near);
+        let rectifier = self.heated_rectifier(&waveform, t, hot);
         let low_gate = match &rectifier {
             HeatedRectifier::Synchronous { gate, .. } => *gate,
             HeatedRectifier::Diode { .. } => GatePower::default(),
@@ -345,7 +344,7 @@ impl<'a> Prepared<'a> {
             ac_winding: self
                 .ac_excess
                 .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * hot.winding)),
-            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n, &mut near.core)),
+            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n)),
             ringing,
             drive: gate_drive::drive_power(&high_gate, &low_gate, self.v_supply, frequency),
             bias: bias::bias(&waveform, v_in, controller.i_q, controller.i_q_sleep),
@@ -353,32 +352,21 @@ impl<'a> Prepared<'a> {
     }
 
     #[inline(always)]
-    fn heated_rectifier(
-        &self,
-        waveform: &Waveform,
-        t: &Nodes,
-        hot: &HotRatios,
-        near: &mut Memory,
-    ) -> HeatedRectifier {
+    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes, hot: &HotRatios) -> HeatedRectifier {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let controller = &stage.controller;
         match &stage.rectifier {
             Rectifier::Diode(diode) => HeatedRectifier::Diode {
                 conduction: conduction::freewheel_diode(waveform, diode, t[RECTIFIER]),
-                leakage: leakage::leakage(waveform, diode, self.reverse, t[RECTIFIER], &mut near.leakage),
+                leakage: leakage::leakage(waveform, diode, self.reverse, t[RECTIFIER]),
             },
             Rectifier::Synchronous { low_side, schottky } => {
                 let (t_1, t_2, frequency) = (controller.t_1, controller.t_2, waveform.frequency);
                 let ends = DeadTimeEnds::of(waveform, t_1, t_2);
                 let resistance = self.drive.r_low * hot.low_side;
-                let reverse = (-waveform.valley).max(0.0);
+                let reverse = at_least(0.0, -waveform.valley);
                 let (overlap, high_dead_time) = if reverse > 0.0 {
-                    let t_fi = edges::current_fall(
-                        low_side,
-                        self.drive.low_gate.r_off,
-                        reverse,
-                        &mut NearLogarithm::default(),
-                    );
+                    let t_fi = edges::current_fall(low_side, self.drive.low_gate.r_off, reverse);
                     let v_sd = stage.high_side.body_diode(reverse);
                     (
                         overlap::low_side(v_in, reverse, t_fi, frequency),
@@ -400,9 +388,9 @@ impl<'a> Prepared<'a> {
                     output_charge,
                     dead_time: dead_time::rectifier(waveform, ends, [t_1, t_2], self.node_charge, drop),
                     gate: gate_drive::gate_power(self.drive.q_low, &self.drive.low_gate, frequency),
-                    schottky: schottky.as_ref().map(|diode| {
-                        leakage::leakage(waveform, diode, self.reverse, t[SCHOTTKY], &mut near.leakage)
-                    }),
+                    schottky: schottky
+                        .as_ref()
+                        .map(|diode| leakage::leakage(waveform, diode, self.reverse, t[SCHOTTKY])),
                     high_dead_time,
                 }
             }

@@ -1,6 +1,7 @@
 //! Diode: the curves of the model, for n devices in parallel.
 
 use crate::fit;
+use crate::near::at_least;
 use crate::parts::curve::Curve;
 use crate::parts::junction::JunctionCharge;
 use crate::parts::mosfet::RecoveryLaw;
@@ -94,7 +95,7 @@ impl ForwardLaw {
         let place = self.cold.place(i);
         let cold = self.cold.on(place);
         let drift = self.drift.as_ref().map_or(0.0, |drift| drift.on(place));
-        (cold + drift * (t_j - self.t_cold)).max(0.05)
+        at_least(0.05, cold + drift * (t_j - self.t_cold))
     }
 
     /// dV_f/dT of one device at a current, V/K.
