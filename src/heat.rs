@@ -15,6 +15,8 @@ use crate::waveform::Waveform;
 pub const SETTLED: f64 = 1e-6;
 /// Nodes whose temperatures move losses: the first ones. That of the controller, the last one, follows.
 const MUTUAL: usize = CONTROLLER;
+/// Passes of the quick search that are not asked whether they have settled: from the first guess it takes that many.
+const APPROACHES: usize = 2;
 /// Passes after which the quick search gives way to the careful one.
 const QUICK_PASSES: usize = 12;
 /// Passes after which the careful search gives up.
@@ -30,17 +32,28 @@ const SUSPECT: f64 = 0.4;
 /// passes from ambient upwards decide.
 #[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
-    let mut search = Search::from_ambient(prepared.point.ambient);
-    for _ in 0..QUICK_PASSES {
-        let hot = prepared.hot(&search.t);
-        let waveform = prepared.waveform(&search.t, &hot)?;
-        let heated = prepared.heated_by(waveform, &search.t, &hot);
+    let mut search = Search::from(first_guess(prepared));
+    // the first passes only approach: nothing but the watts of the nodes is kept of them
+    for _ in 0..APPROACHES {
+        let Some(heated) = heated_at(prepared, &search.t) else {
+            return careful(prepared);
+        };
+        let image = image(prepared, &heated);
+        let growth = Growth::of(prepared, &heated, &search.t);
+        if !search.step(&image, &growth, &prepared.stage.heat.resistance) {
+            return careful(prepared);
+        }
+    }
+    for _ in APPROACHES..QUICK_PASSES {
+        let Some(heated) = heated_at(prepared, &search.t) else {
+            break;
+        };
         let image = image(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
             }
-            prepared.check_times(&waveform)?;
+            prepared.check_times(&heated.waveform)?;
             search.t[CONTROLLER] = image[CONTROLLER];
             return Ok(solved(prepared, &search.t, &heated));
         }
@@ -50,6 +63,35 @@ pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
         }
     }
     careful(prepared)
+}
+
+/// What heats the parts at temperatures that the quick search tries; `None` sends it to the careful one.
+#[inline(always)]
+fn heated_at(prepared: &Prepared<'_>, t: &Nodes) -> Option<Heated> {
+    let hot = prepared.hot(t);
+    let waveform = prepared.waveform(t, &hot).ok()?;
+    Some(prepared.heated_by(waveform, t, &hot))
+}
+
+/// Ambient and what cold resistances and the cold diode warm the parts with the load current and the lossless duty.
+#[inline(always)]
+fn first_guess(prepared: &Prepared<'_>) -> Nodes {
+    let (stage, point) = (prepared.stage, &prepared.point);
+    let duty = prepared.v_out / point.input_voltage;
+    let square = point.load * point.load;
+    let mut watts = [0.0; MUTUAL];
+    watts[HIGH] = duty * square * prepared.drive.r_high;
+    watts[RECTIFIER] = (1.0 - duty)
+        * match &stage.rectifier {
+            Rectifier::Synchronous { .. } => square * prepared.drive.r_low,
+            Rectifier::Diode(diode) => point.load * diode.forward_voltage(point.load, point.ambient),
+        };
+    watts[INDUCTOR] = square * stage.inductor.dcr;
+    let mut t = [point.ambient; NODES];
+    for node in 0..MUTUAL {
+        t[node] += stage.heat.resistance[node] * watts[node];
+    }
+    t
 }
 
 /// State of the quick search for the settled temperatures.
@@ -72,16 +114,9 @@ struct Search {
 
 impl Search {
     #[inline(always)]
-    fn from_ambient(ambient: f64) -> Self {
+    fn from(t: Nodes) -> Self {
         let none = [0.0; MUTUAL];
-        Search {
-            t: [ambient; NODES],
-            t_before: none,
-            image_before: none,
-            slopes: none,
-            common: none,
-            is_fresh: true,
-        }
+        Search { t, t_before: none, image_before: none, slopes: none, common: none, is_fresh: true }
     }
 
     #[inline(always)]

@@ -72,6 +72,8 @@ pub struct Prepared<'a> {
     pub idle_swing: IdleSwing,
     /// 1/(f L), A/V.
     pub ripple_per_volt: f64,
+    /// Drop of the low side's body diode at the load current, V; 0 without a low side.
+    pub body_diode: f64,
     /// V_s: what the gate charge is drawn from (E21), V.
     pub v_supply: f64,
     /// R_ac(f) - R_dc at 25 °C, not below 0, Ω; `None` without data.
@@ -183,6 +185,10 @@ impl<'a> Prepared<'a> {
             node_energy: node.capacitive_energy(v_in, 0.0),
             q_gd: stage.high_side.q_gd.charge(v_in),
             idle_swing: IdleSwing::of(inductance, node_charge, v_in, v_out),
+            body_diode: match &stage.rectifier {
+                Rectifier::Synchronous { low_side, .. } => low_side.body_diode(point.load),
+                Rectifier::Diode(_) => 0.0,
+            },
             ripple_per_volt: 1.0 / (point.switching_frequency * inductance),
             v_supply: match controller.supply {
                 Supply::External(efficiency) => controller.v_drive / efficiency,
@@ -218,10 +224,12 @@ impl<'a> Prepared<'a> {
         let board = &stage.board;
         let r_path = board.low_side_path * self.board_ratio;
         let off = match &stage.rectifier {
-            Rectifier::Synchronous { .. } => OffPath::Synchronous {
+            Rectifier::Synchronous { schottky, .. } => OffPath::Synchronous {
                 r_channel: self.drive.r_low * hot.low_side,
                 r_path,
-                v_dead: self.dead_time_drop(point.load, t),
+                v_dead: schottky
+                    .as_ref()
+                    .map_or(self.body_diode, |diode| diode.forward_voltage(point.load, t[SCHOTTKY])),
                 dead_share: (stage.controller.t_1 + stage.controller.t_2) * point.switching_frequency,
             },
             Rectifier::Diode(diode) => {
