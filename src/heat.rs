@@ -32,6 +32,15 @@ const SUSPECT: f64 = 0.4;
 /// passes from ambient upwards decide.
 #[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
+    match prepared.stage.rectifier {
+        Rectifier::Synchronous { .. } => quick::<true>(prepared),
+        Rectifier::Diode(_) => quick::<false>(prepared),
+    }
+}
+
+/// The quick search; compiled for each kind of rectifier, so that its passes need not ask which it is.
+#[inline(always)]
+fn quick<const SYNCHRONOUS: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut search = Search::from(first_guess(prepared));
     // the first passes only approach: nothing but the watts of the nodes is kept of them
     for _ in 0..APPROACHES {

@@ -35,6 +35,7 @@ use crate::loss::{
 use crate::near::at_least;
 use crate::parts::controller::Supply;
 use crate::parts::copper::hot_ratio;
+use crate::parts::core::CoreLaw;
 use crate::parts::linear_regulator::LinearRegulator;
 use crate::waveform::{CurrentPath, LightLoadRule, OffPath, Waveform};
 
@@ -74,6 +75,8 @@ pub struct Prepared<'a> {
     pub ripple_per_volt: f64,
     /// Drop of the low side's body diode at the load current, V; 0 without a low side.
     pub body_diode: f64,
+    /// f^α of the core loss; 0 without such a law.
+    pub core_at_clock: f64,
     /// V_s: what the gate charge is drawn from (E21), V.
     pub v_supply: f64,
     /// R_ac(f) - R_dc at 25 °C, not below 0, Ω; `None` without data.
@@ -188,6 +191,10 @@ impl<'a> Prepared<'a> {
             body_diode: match &stage.rectifier {
                 Rectifier::Synchronous { low_side, .. } => low_side.body_diode(point.load),
                 Rectifier::Diode(_) => 0.0,
+            },
+            core_at_clock: match &stage.inductor.core {
+                Some(CoreLaw::Power(law)) => law.of_frequency.at(point.switching_frequency),
+                _ => 0.0,
             },
             ripple_per_volt: 1.0 / (point.switching_frequency * inductance),
             v_supply: match controller.supply {
@@ -352,7 +359,10 @@ impl<'a> Prepared<'a> {
             ac_winding: self
                 .ac_excess
                 .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * hot.winding)),
-            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n)),
+            core: inductor
+                .core
+                .as_ref()
+                .map(|law| core::core(&waveform, law, inductor.n, self.core_at_clock)),
             ringing,
             drive: gate_drive::drive_power(&high_gate, &low_gate, self.v_supply, frequency),
             bias: bias::bias(&waveform, v_in, controller.i_q, controller.i_q_sleep),

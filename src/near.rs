@@ -96,8 +96,8 @@ pub fn ln(x: f64) -> f64 {
         return x.ln();
     }
     let octaves = (octave as i64 - UNIT_OCTAVE as i64) as f64;
-    let tail = d * (0.2 - d * (1.0 / 6.0 - d * (1.0 / 7.0)));
-    octaves * LN_2 + (LOGARITHM[place] + d * (1.0 - d * (0.5 - d * (1.0 / 3.0 - d * (0.25 - tail)))))
+    let tail = d * (-0.25 + d * (0.2 + d * (-1.0 / 6.0 + d * (1.0 / 7.0))));
+    octaves * LN_2 + (LOGARITHM[place] + d * (1.0 + d * (-0.5 + d * (1.0 / 3.0 + tail))))
 }
 
 /// Largest size of an argument of [`exp`] that the table serves.
