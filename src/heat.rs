@@ -32,22 +32,19 @@ const SUSPECT: f64 = 0.4;
 /// passes from ambient upwards decide.
 #[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
-    match prepared.stage.rectifier {
-        Rectifier::Synchronous { .. } => quick::<true>(prepared),
-        Rectifier::Diode(_) => quick::<false>(prepared),
-    }
+    if prepared.stage.heat.coupling.is_empty() { quick::<false>(prepared) } else { quick::<true>(prepared) }
 }
 
-/// The quick search; compiled for each kind of rectifier, so that its passes need not ask which it is.
+/// The quick search; compiled apart for parts that warm one another, so that the others need not carry what that takes.
 #[inline(always)]
-fn quick<const SYNCHRONOUS: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
+fn quick<const COUPLED: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut search = Search::from(first_guess(prepared));
     // the first passes only approach: nothing but the watts of the nodes is kept of them
     for _ in 0..APPROACHES {
         let Some(heated) = heated_at(prepared, &search.t) else {
             return careful(prepared);
         };
-        let image = image(prepared, &heated);
+        let image = image::<COUPLED>(prepared, &heated);
         let growth = Growth::of(prepared, &heated, &search.t);
         if !search.step(&image, &growth, &prepared.stage.heat.resistance) {
             return careful(prepared);
@@ -57,7 +54,7 @@ fn quick<const SYNCHRONOUS: bool>(prepared: &Prepared<'_>) -> Result<Solved, Inf
         let Some(heated) = heated_at(prepared, &search.t) else {
             break;
         };
-        let image = image(prepared, &heated);
+        let image = image::<COUPLED>(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
@@ -280,16 +277,16 @@ pub fn nodes_of(prepared: &Prepared<'_>, solved: &Solved) -> Nodes {
     std::array::from_fn(|node| at(node).unwrap_or(prepared.point.ambient))
 }
 
-/// T_a + R_th P/n + sum of K P of other slots, for every node (E50).
+/// T_a + R_th P/n + sum of K P of other slots when any are coupled, for every node (E50).
 #[inline(always)]
-fn image(prepared: &Prepared<'_>, heated: &Heated) -> Nodes {
+fn image<const COUPLED: bool>(prepared: &Prepared<'_>, heated: &Heated) -> Nodes {
     let heat = &prepared.stage.heat;
     let watts = heated.node_watts();
     let mut image = [prepared.point.ambient; NODES];
     for node in 0..NODES {
         image[node] += heat.resistance[node] * watts[node];
     }
-    if !heat.coupling.is_empty() {
+    if COUPLED {
         return coupled(prepared, heated.waveform, watts, image);
     }
     image
@@ -323,7 +320,7 @@ fn unheated_watts(prepared: &Prepared<'_>, waveform: &Waveform, slot: Slot) -> f
 fn image_at(prepared: &Prepared<'_>, t: &Nodes) -> Result<Nodes, Infeasible> {
     let hot = prepared.hot(t);
     let waveform = prepared.waveform(t, &hot)?;
-    Ok(image(prepared, &prepared.heated_by(waveform, t, &hot)))
+    Ok(image::<true>(prepared, &prepared.heated_by(waveform, t, &hot)))
 }
 
 fn largest(values: &Nodes) -> f64 {
