@@ -266,18 +266,6 @@ impl<'a> Prepared<'a> {
         }
     }
 
-    /// Drop of whatever carries the dead-time current, V: the Schottky's when one is fitted (E19).
-    #[inline(always)]
-    fn dead_time_drop(&self, current: f64, t: &Nodes) -> f64 {
-        match &self.stage.rectifier {
-            Rectifier::Synchronous { schottky: Some(diode), .. } => {
-                diode.forward_voltage(current, t[SCHOTTKY])
-            }
-            Rectifier::Synchronous { low_side, .. } => low_side.body_diode(current),
-            Rectifier::Diode(_) => 0.0,
-        }
-    }
-
     /// Currents and duties at temperatures; fails where no waveform or no gate drive exists.
     #[inline(always)]
     pub fn waveform(&self, t: &Nodes, hot: &HotRatios) -> Result<Waveform, Infeasible> {
@@ -399,7 +387,11 @@ impl<'a> Prepared<'a> {
                 } else {
                     output_charge::low_side(&self.node, v_in, moved, frequency)
                 };
-                let drop = |current| self.dead_time_drop(current, t);
+                // whatever carries the dead-time current: the Schottky when one is fitted (E19)
+                let drop = |current| match schottky {
+                    Some(diode) => diode.forward_voltage(current, t[SCHOTTKY]),
+                    None => low_side.body_diode(current),
+                };
                 HeatedRectifier::Synchronous {
                     conduction: conduction::low_side(waveform, ends, t_1, t_2, resistance),
                     overlap,
