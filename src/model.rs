@@ -59,6 +59,8 @@ pub struct Prepared<'a> {
     pub inductance: f64,
     /// R(T)/R(25 °C) of the board's copper.
     pub board_ratio: f64,
+    /// Board resistances in series with the high side, the rectifier and the inductor at the board's temperature, Ω.
+    pub paths: [f64; 3],
     /// Reverse voltages of a diode: input and output; without logarithms when no diode has leakage data.
     pub reverse: [ReverseVoltage; 2],
     /// Capacitance of the switch node.
@@ -158,8 +160,9 @@ impl<'a> Prepared<'a> {
         let v_in = point.input_voltage;
         let controller = &stage.controller;
         let drive = stage.drive(v_in, output_voltage);
-        let board_ratio = hot_ratio(stage.board.temperature.unwrap_or(point.ambient));
-        let v_out = output_voltage + point.load * stage.board.load_path * board_ratio;
+        let board = &stage.board;
+        let board_ratio = hot_ratio(board.temperature.unwrap_or(point.ambient));
+        let v_out = output_voltage + point.load * board.load_path * board_ratio;
         let leaks = match &stage.rectifier {
             Rectifier::Synchronous { schottky, .. } => schottky.as_ref().is_some_and(|d| d.leakage.is_some()),
             Rectifier::Diode(diode) => diode.leakage.is_some(),
@@ -182,6 +185,8 @@ impl<'a> Prepared<'a> {
             drive,
             inductance,
             board_ratio,
+            paths: [board.high_side_path, board.low_side_path, board.output_path + board.sense]
+                .map(|r| r * board_ratio),
             reverse: if leaks { [v_in, v_out].map(ReverseVoltage::of) } else { Default::default() },
             node,
             node_charge,
@@ -228,8 +233,7 @@ impl<'a> Prepared<'a> {
     #[inline(always)]
     fn path(&self, t: &Nodes, hot: &HotRatios) -> CurrentPath {
         let (stage, point) = (self.stage, &self.point);
-        let board = &stage.board;
-        let r_path = board.low_side_path * self.board_ratio;
+        let [high_path, r_path, series_path] = self.paths;
         let off = match &stage.rectifier {
             Rectifier::Synchronous { schottky, .. } => OffPath::Synchronous {
                 r_channel: self.drive.r_low * hot.low_side,
@@ -250,8 +254,8 @@ impl<'a> Prepared<'a> {
             frequency: point.switching_frequency,
             inductance: self.inductance,
             ripple_per_volt: self.ripple_per_volt,
-            r_high: self.drive.r_high * hot.high_side + board.high_side_path * self.board_ratio,
-            r_series: stage.inductor.dcr * hot.winding + (board.output_path + board.sense) * self.board_ratio,
+            r_high: self.drive.r_high * hot.high_side + high_path,
+            r_series: stage.inductor.dcr * hot.winding + series_path,
             off,
         }
     }
