@@ -5,11 +5,11 @@ use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
 use crate::loss::leakage::Leakage;
-use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
+use crate::model::{Heated, HeatedRectifier, HotRatios, Prepared, Solved, Temperatures, ledger, linear};
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::diode::Diode;
 use crate::parts::linear_regulator::LinearRegulator;
-use crate::waveform::Waveform;
+use crate::waveform::{Mode, Waveform};
 
 /// Largest movement of any temperature at which the loop ends, K.
 pub const SETTLED: f64 = 1e-6;
@@ -41,12 +41,18 @@ fn quick<const COUPLED: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasi
     let mut search = Search::from(first_guess(prepared));
     // the first passes only approach: nothing but the watts of the nodes is kept of them
     for _ in 0..APPROACHES {
-        let Some(heated) = heated_at(prepared, &search.t) else {
+        let hot = prepared.hot(&search.t);
+        let Ok(waveform) = prepared.waveform(&search.t, &hot) else {
             return careful(prepared);
         };
-        let image = image::<COUPLED>(prepared, &heated);
-        let growth = Growth::of(prepared, &heated, &search.t);
-        if !search.step(&image, &growth, &prepared.stage.heat.resistance) {
+        // two calls that are compiled apart: one knows the mode and need not ask for it in every mechanism
+        let sound = if waveform.is_continuous() {
+            let waveform = Waveform { mode: Mode::Continuous, ..waveform };
+            search.approach::<COUPLED>(prepared, waveform, &hot)
+        } else {
+            search.approach::<COUPLED>(prepared, waveform, &hot)
+        };
+        if !sound {
             return careful(prepared);
         }
     }
@@ -63,8 +69,7 @@ fn quick<const COUPLED: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasi
             search.t[CONTROLLER] = image[CONTROLLER];
             return Ok(solved(prepared, &search.t, &heated));
         }
-        let growth = Growth::of(prepared, &heated, &search.t);
-        if !search.step(&image, &growth, &prepared.stage.heat.resistance) {
+        if !search.step(prepared, &heated, &image) {
             break;
         }
     }
@@ -137,15 +142,29 @@ impl Search {
         self.slopes.iter().map(|slope| slope.abs()).sum::<f64>() < SUSPECT
     }
 
+    /// A pass with the waveform at the temperatures reached; false when the search should give up.
+    #[inline(always)]
+    fn approach<const COUPLED: bool>(
+        &mut self,
+        prepared: &Prepared<'_>,
+        waveform: Waveform,
+        hot: &HotRatios,
+    ) -> bool {
+        let heated = prepared.heated_by(waveform, &self.t, hot);
+        let image = image::<COUPLED>(prepared, &heated);
+        self.step(prepared, &heated, &image)
+    }
+
     /// Moves every node to where the images meet the temperatures; false when the search should give up.
     #[inline(always)]
-    fn step(&mut self, image: &Nodes, growth: &Growth, resistance: &Nodes) -> bool {
+    fn step(&mut self, prepared: &Prepared<'_>, heated: &Heated, image: &Nodes) -> bool {
+        let (growth, resistance) = (Growth::of(prepared, heated, &self.t), &prepared.stage.heat.resistance);
         let mut slopes = [0.0; MUTUAL];
         for node in 0..MUTUAL {
             slopes[node] = resistance[node] * (growth.conduction[node] + growth.leakage[node]);
         }
         if !self.is_fresh {
-            self.read_common(image, growth, &slopes);
+            self.read_common(image, &growth, &slopes);
         }
         // (1 - slope) d - common Σ growth d = image - t for the movements d of all nodes, the sum over what moves the duty
         let (mut own, mut free, mut feedback) = ([0.0; MUTUAL], 0.0, 0.0);
