@@ -107,13 +107,12 @@ const WHOLE: f64 = 6_755_399_441_055_744.0;
 /// First bits of ln 2/[`PLACES`]: products with whole numbers below 2^20 are exact.
 const STEP_HIGH: f64 = f64::from_bits((LN_2 / PLACES as f64).to_bits() & !((1 << 21) - 1));
 /// What they leave of it; ln 2 less its f64 is 2.319e-17.
-const STEP_LOW: f64 = LN_2 / PLACES as f64 - STEP_HIGH + 2.319_046_813_846_299_6e-17 / PLACES as f64;
+const STEP_LOW: f64 = LN_2 / PLACES as f64 - STEP_HIGH + 2.319_046_813_846_3e-17 / PLACES as f64;
 
 /// e^x to a few parts in 1e16.
 #[inline(always)]
 pub fn exp(x: f64) -> f64 {
-    // no number fails the comparison too
-    if !(x.abs() < EXPONENTIAL_RANGE) {
+    if x.abs() >= EXPONENTIAL_RANGE || x.is_nan() {
         return x.exp();
     }
     let shifted = x * (PLACES as f64 / LN_2) + WHOLE;
@@ -152,7 +151,9 @@ impl Power {
         let mut coefficient = 1.0;
         Power {
             exponent,
-            octaves: std::array::from_fn(|octave| (exponent * (octave as f64 - OCTAVES_BELOW as f64)).exp2()),
+            octaves: std::array::from_fn(|octave| {
+                (octave as f64 - OCTAVES_BELOW as f64).exp2().powf(exponent)
+            }),
             places: std::array::from_fn(|place| middle(place).powf(exponent)),
             binomial: std::array::from_fn(|k| {
                 coefficient *= (exponent - k as f64) / (k + 1) as f64;
