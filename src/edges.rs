@@ -1,7 +1,7 @@
 //! Edges of the switch node (E13-E16c): plateau, edge times, node capacitance and its energy.
 
 use crate::loss::gate_drive;
-use crate::near::{Memory, NearLogarithm};
+use crate::near::{self, at_least};
 use crate::parts::controller::DriverLaw;
 use crate::parts::junction::JunctionCharge;
 use crate::parts::mosfet::Mosfet;
@@ -48,35 +48,21 @@ pub struct EdgeDurations {
 /// Source: gate-charge form of the voltage edges as in the FAN5236 data sheet, p. 16 eq. 19-20; the exact RC form of the current edges and the source
 /// inductance are derived. Valid while V_dr exceeds the plateau.
 #[inline(always)]
-pub fn edge_durations(
-    mosfet: &Mosfet,
-    gate: &GateLoop,
-    q_gd: f64,
-    [i_on, i_off]: [f64; 2],
-    near: &mut Memory,
-) -> EdgeDurations {
+pub fn edge_durations(mosfet: &Mosfet, gate: &GateLoop, q_gd: f64, [i_on, i_off]: [f64; 2]) -> EdgeDurations {
     let given = &mosfet.edge_times;
     let per_overdrive = 1.0 / (gate.v_gate - mosfet.plateau(i_on));
     EdgeDurations {
-        t_ri: given
-            .t_ri
-            .unwrap_or_else(|| current_rise(mosfet, gate, i_on, per_overdrive, &mut near.current_rise)),
+        t_ri: given.t_ri.unwrap_or_else(|| current_rise(mosfet, gate, i_on, per_overdrive)),
         t_fv: given.t_fv.unwrap_or(q_gd * gate.r_on * per_overdrive),
         t_rv: given.t_rv.unwrap_or_else(|| q_gd * gate.r_off / mosfet.plateau(i_off)),
-        t_fi: current_fall(mosfet, gate.r_off, i_off, &mut near.current_fall),
+        t_fi: current_fall(mosfet, gate.r_off, i_off),
     }
 }
 
 #[inline(always)]
-fn current_rise(
-    mosfet: &Mosfet,
-    gate: &GateLoop,
-    current: f64,
-    per_overdrive: f64,
-    near: &mut NearLogarithm,
-) -> f64 {
+fn current_rise(mosfet: &Mosfet, gate: &GateLoop, current: f64, per_overdrive: f64) -> f64 {
     let (v_th, v_pl) = (mosfet.v_th, mosfet.plateau(current));
-    let charging = gate.r_on * mosfet.gate_capacitance * near.at((gate.v_gate - v_th) * per_overdrive);
+    let charging = gate.r_on * mosfet.gate_capacitance * near::ln((gate.v_gate - v_th) * per_overdrive);
     charging + inductive(mosfet, current, gate.v_gate - 0.5 * (v_th + v_pl))
 }
 
@@ -88,12 +74,12 @@ fn inductive(mosfet: &Mosfet, current: f64, v: f64) -> f64 {
 
 /// Time in which the channel current falls from `current` to zero, s (t_fi of E15), unless it was measured.
 #[inline(always)]
-pub fn current_fall(mosfet: &Mosfet, r_off: f64, current: f64, near: &mut NearLogarithm) -> f64 {
+pub fn current_fall(mosfet: &Mosfet, r_off: f64, current: f64) -> f64 {
     if let Some(given) = mosfet.edge_times.t_fi {
         return given;
     }
     let (v_th, v_pl) = (mosfet.v_th, mosfet.plateau(current));
-    let discharging = r_off * mosfet.gate_capacitance * near.at(v_pl * mosfet.per_threshold);
+    let discharging = r_off * mosfet.gate_capacitance * near::ln(v_pl * mosfet.per_threshold);
     discharging + inductive(mosfet, current, 0.5 * (v_th + v_pl))
 }
 
@@ -172,7 +158,7 @@ fn sine_of_swing(a: f64, b: f64, moved: f64) -> f64 {
     }
     // addition theorem: no angle is needed
     let sine = (moved - b) / hypotenuse;
-    let cosine = (1.0 - sine * sine).max(0.0).sqrt();
+    let cosine = at_least(0.0, 1.0 - sine * sine).sqrt();
     (sine * a + cosine * b) / hypotenuse
 }
 

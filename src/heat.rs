@@ -5,17 +5,18 @@ use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
 use crate::loss::leakage::Leakage;
-use crate::model::{Heated, HeatedRectifier, Prepared, Solved, Temperatures, ledger, linear};
-use crate::near::Memory;
+use crate::model::{Heated, HeatedRectifier, HotRatios, Prepared, Solved, Temperatures, ledger, linear};
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::diode::Diode;
 use crate::parts::linear_regulator::LinearRegulator;
-use crate::waveform::Waveform;
+use crate::waveform::{Mode, Waveform};
 
 /// Largest movement of any temperature at which the loop ends, K.
 pub const SETTLED: f64 = 1e-6;
 /// Nodes whose temperatures move losses: the first ones. That of the controller, the last one, follows.
 const MUTUAL: usize = CONTROLLER;
+/// Passes of the quick search that are not asked whether they have settled: from the first guess it takes that many.
+const APPROACHES: usize = 2;
 /// Passes after which the quick search gives way to the careful one.
 const QUICK_PASSES: usize = 12;
 /// Passes after which the careful search gives up.
@@ -31,13 +32,35 @@ const SUSPECT: f64 = 0.4;
 /// passes from ambient upwards decide.
 #[inline(always)]
 pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
-    let mut search = Search::from_ambient(prepared.point.ambient);
-    let mut near = Memory::default();
-    for _ in 0..QUICK_PASSES {
+    if prepared.stage.heat.coupling.is_empty() { quick::<false>(prepared) } else { quick::<true>(prepared) }
+}
+
+/// The quick search; compiled apart for parts that warm one another, so that the others need not carry what that takes.
+#[inline(always)]
+fn quick<const COUPLED: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
+    let mut search = Search::from(first_guess(prepared));
+    // the first passes only approach: nothing but the watts of the nodes is kept of them
+    for _ in 0..APPROACHES {
         let hot = prepared.hot(&search.t);
-        let waveform = prepared.waveform(&search.t, &hot)?;
-        let heated = prepared.heated_by(waveform, &search.t, &hot, &mut near);
-        let image = image(prepared, &heated);
+        let Ok(waveform) = prepared.waveform(&search.t, &hot) else {
+            return careful(prepared);
+        };
+        // two calls that are compiled apart: one knows the mode and need not ask for it in every mechanism
+        let sound = if waveform.is_continuous() {
+            let waveform = Waveform { mode: Mode::Continuous, ..waveform };
+            search.approach::<COUPLED>(prepared, waveform, &hot)
+        } else {
+            search.approach::<COUPLED>(prepared, waveform, &hot)
+        };
+        if !sound {
+            return careful(prepared);
+        }
+    }
+    for _ in APPROACHES..QUICK_PASSES {
+        let Some(heated) = heated_at(prepared, &search.t) else {
+            break;
+        };
+        let image = image::<COUPLED>(prepared, &heated);
         if search.is_settled(&image) {
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
@@ -46,16 +69,44 @@ pub fn settle(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
             if image[CONTROLLER].is_nan() || image[CONTROLLER] >= HOTTEST {
                 break;
             }
-            prepared.check_times(&waveform)?;
+            prepared.check_times(&heated.waveform)?;
             search.t[CONTROLLER] = image[CONTROLLER];
             return Ok(solved(prepared, &search.t, &heated));
         }
-        let growth = Growth::of(prepared, &heated, &search.t);
-        if !search.step(&image, &growth, &prepared.stage.heat.resistance) {
+        if !search.step(prepared, &heated, &image) {
             break;
         }
     }
     careful(prepared)
+}
+
+/// What heats the parts at temperatures that the quick search tries; `None` sends it to the careful one.
+#[inline(always)]
+fn heated_at(prepared: &Prepared<'_>, t: &Nodes) -> Option<Heated> {
+    let hot = prepared.hot(t);
+    let waveform = prepared.waveform(t, &hot).ok()?;
+    Some(prepared.heated_by(waveform, t, &hot))
+}
+
+/// Ambient and what cold resistances and the cold diode warm the parts with the load current and the lossless duty.
+#[inline(always)]
+fn first_guess(prepared: &Prepared<'_>) -> Nodes {
+    let (stage, point) = (prepared.stage, &prepared.point);
+    let duty = prepared.v_out / point.input_voltage;
+    let square = point.load * point.load;
+    let mut watts = [0.0; MUTUAL];
+    watts[HIGH] = duty * square * prepared.drive.r_high;
+    watts[RECTIFIER] = (1.0 - duty)
+        * match &stage.rectifier {
+            Rectifier::Synchronous { .. } => square * prepared.drive.r_low,
+            Rectifier::Diode(diode) => point.load * diode.forward_voltage(point.load, point.ambient),
+        };
+    watts[INDUCTOR] = square * stage.inductor.dcr;
+    let mut t = [point.ambient; NODES];
+    for node in 0..MUTUAL {
+        t[node] += stage.heat.resistance[node] * watts[node];
+    }
+    t
 }
 
 /// State of the quick search for the settled temperatures.
@@ -78,16 +129,9 @@ struct Search {
 
 impl Search {
     #[inline(always)]
-    fn from_ambient(ambient: f64) -> Self {
+    fn from(t: Nodes) -> Self {
         let none = [0.0; MUTUAL];
-        Search {
-            t: [ambient; NODES],
-            t_before: none,
-            image_before: none,
-            slopes: none,
-            common: none,
-            is_fresh: true,
-        }
+        Search { t, t_before: none, image_before: none, slopes: none, common: none, is_fresh: true }
     }
 
     #[inline(always)]
@@ -102,15 +146,29 @@ impl Search {
         self.slopes.iter().map(|slope| slope.abs()).sum::<f64>() < SUSPECT
     }
 
+    /// A pass with the waveform at the temperatures reached; false when the search should give up.
+    #[inline(always)]
+    fn approach<const COUPLED: bool>(
+        &mut self,
+        prepared: &Prepared<'_>,
+        waveform: Waveform,
+        hot: &HotRatios,
+    ) -> bool {
+        let heated = prepared.heated_by(waveform, &self.t, hot);
+        let image = image::<COUPLED>(prepared, &heated);
+        self.step(prepared, &heated, &image)
+    }
+
     /// Moves every node to where the images meet the temperatures; false when the search should give up.
     #[inline(always)]
-    fn step(&mut self, image: &Nodes, growth: &Growth, resistance: &Nodes) -> bool {
+    fn step(&mut self, prepared: &Prepared<'_>, heated: &Heated, image: &Nodes) -> bool {
+        let (growth, resistance) = (Growth::of(prepared, heated, &self.t), &prepared.stage.heat.resistance);
         let mut slopes = [0.0; MUTUAL];
         for node in 0..MUTUAL {
             slopes[node] = resistance[node] * (growth.conduction[node] + growth.leakage[node]);
         }
         if !self.is_fresh {
-            self.read_common(image, growth, &slopes);
+            self.read_common(image, &growth, &slopes);
         }
         // (1 - slope) d - common Σ growth d = image - t for the movements d of all nodes, the sum over what moves the duty
         let (mut own, mut free, mut feedback) = ([0.0; MUTUAL], 0.0, 0.0);
@@ -207,7 +265,7 @@ pub fn at_temperatures(prepared: &Prepared<'_>, temperatures: &Nodes) -> Result<
     let hot = prepared.hot(temperatures);
     let waveform = prepared.waveform(temperatures, &hot)?;
     prepared.check_times(&waveform)?;
-    let heated = prepared.heated_by(waveform, temperatures, &hot, &mut Memory::default());
+    let heated = prepared.heated_by(waveform, temperatures, &hot);
     Ok(solved(prepared, temperatures, &heated))
 }
 
@@ -253,16 +311,16 @@ pub fn nodes_of(prepared: &Prepared<'_>, solved: &Solved) -> Nodes {
     std::array::from_fn(|node| at(node).unwrap_or(prepared.point.ambient))
 }
 
-/// T_a + R_th P/n + sum of K P of other slots, for every node (E50).
+/// T_a + R_th P/n + sum of K P of other slots when any are coupled, for every node (E50).
 #[inline(always)]
-fn image(prepared: &Prepared<'_>, heated: &Heated) -> Nodes {
+fn image<const COUPLED: bool>(prepared: &Prepared<'_>, heated: &Heated) -> Nodes {
     let heat = &prepared.stage.heat;
     let watts = heated.node_watts();
     let mut image = [prepared.point.ambient; NODES];
     for node in 0..NODES {
         image[node] += heat.resistance[node] * watts[node];
     }
-    if !heat.coupling.is_empty() {
+    if COUPLED {
         return coupled(prepared, heated.waveform, watts, image);
     }
     image
@@ -294,10 +352,10 @@ fn unheated_watts(prepared: &Prepared<'_>, waveform: &Waveform, slot: Slot) -> f
 
 /// The image of temperatures, outside the quick search.
 #[inline(never)]
-fn image_at(prepared: &Prepared<'_>, t: &Nodes, near: &mut Memory) -> Result<Nodes, Infeasible> {
+fn image_at(prepared: &Prepared<'_>, t: &Nodes) -> Result<Nodes, Infeasible> {
     let hot = prepared.hot(t);
     let waveform = prepared.waveform(t, &hot)?;
-    Ok(image(prepared, &prepared.heated_by(waveform, t, &hot, near)))
+    Ok(image::<true>(prepared, &prepared.heated_by(waveform, t, &hot)))
 }
 
 fn largest(values: &Nodes) -> f64 {
@@ -309,10 +367,9 @@ fn largest(values: &Nodes) -> f64 {
 fn careful(prepared: &Prepared<'_>) -> Result<Solved, Infeasible> {
     let mut t = [prepared.point.ambient; NODES];
     let mut weight: f64 = 1.0;
-    let mut near = Memory::default();
     let mut last_sign = [0.0; NODES];
     for _ in 0..CAREFUL_PASSES {
-        let image = image_at(prepared, &t, &mut near)?;
+        let image = image_at(prepared, &t)?;
         let mut difference = [0.0; NODES];
         for node in 0..NODES {
             difference[node] = image[node] - t[node];
@@ -355,16 +412,15 @@ const GAIN_STEP: f64 = 1e-3;
 pub fn loop_gain(prepared: &Prepared<'_>, t: &Nodes) -> Result<f64, Infeasible> {
     // no loss depends on the temperature of the controller: its column is zero
     let mut jacobian = [[0.0; MUTUAL]; MUTUAL];
-    let mut near = Memory::default();
     for column in 0..MUTUAL {
         if prepared.stage.heat.to_ambient[column].is_none() {
             continue;
         }
         let mut moved = *t;
         moved[column] = t[column] + GAIN_STEP;
-        let above = image_at(prepared, &moved, &mut near)?;
+        let above = image_at(prepared, &moved)?;
         moved[column] = t[column] - GAIN_STEP;
-        let below = image_at(prepared, &moved, &mut near)?;
+        let below = image_at(prepared, &moved)?;
         for row in 0..MUTUAL {
             jacobian[row][column] = (above[row] - below[row]) / (2.0 * GAIN_STEP);
         }

@@ -32,9 +32,10 @@ use crate::loss::{
     snubber::{self, Snubber},
     winding::{self, Winding},
 };
-use crate::near::{Memory, NearLogarithm};
+use crate::near::at_least;
 use crate::parts::controller::Supply;
 use crate::parts::copper::hot_ratio;
+use crate::parts::core::CoreLaw;
 use crate::parts::linear_regulator::LinearRegulator;
 use crate::waveform::{CurrentPath, LightLoadRule, OffPath, Waveform};
 
@@ -58,6 +59,8 @@ pub struct Prepared<'a> {
     pub inductance: f64,
     /// R(T)/R(25 °C) of the board's copper.
     pub board_ratio: f64,
+    /// Board resistances in series with the high side, the rectifier and the inductor at the board's temperature, Ω.
+    pub paths: [f64; 3],
     /// Reverse voltages of a diode: input and output; without logarithms when no diode has leakage data.
     pub reverse: [ReverseVoltage; 2],
     /// Capacitance of the switch node.
@@ -72,6 +75,10 @@ pub struct Prepared<'a> {
     pub idle_swing: IdleSwing,
     /// 1/(f L), A/V.
     pub ripple_per_volt: f64,
+    /// Drop of the low side's body diode at the load current, V; 0 without a low side.
+    pub body_diode: f64,
+    /// f^α of the core loss; 0 without such a law.
+    pub core_at_clock: f64,
     /// V_s: what the gate charge is drawn from (E21), V.
     pub v_supply: f64,
     /// R_ac(f) - R_dc at 25 °C, not below 0, Ω; `None` without data.
@@ -153,8 +160,9 @@ impl<'a> Prepared<'a> {
         let v_in = point.input_voltage;
         let controller = &stage.controller;
         let drive = stage.drive(v_in, output_voltage);
-        let board_ratio = hot_ratio(stage.board.temperature.unwrap_or(point.ambient));
-        let v_out = output_voltage + point.load * stage.board.load_path * board_ratio;
+        let board = &stage.board;
+        let board_ratio = hot_ratio(board.temperature.unwrap_or(point.ambient));
+        let v_out = output_voltage + point.load * board.load_path * board_ratio;
         let leaks = match &stage.rectifier {
             Rectifier::Synchronous { schottky, .. } => schottky.as_ref().is_some_and(|d| d.leakage.is_some()),
             Rectifier::Diode(diode) => diode.leakage.is_some(),
@@ -177,12 +185,22 @@ impl<'a> Prepared<'a> {
             drive,
             inductance,
             board_ratio,
+            paths: [board.high_side_path, board.low_side_path, board.output_path + board.sense]
+                .map(|r| r * board_ratio),
             reverse: if leaks { [v_in, v_out].map(ReverseVoltage::of) } else { Default::default() },
             node,
             node_charge,
             node_energy: node.capacitive_energy(v_in, 0.0),
             q_gd: stage.high_side.q_gd.charge(v_in),
             idle_swing: IdleSwing::of(inductance, node_charge, v_in, v_out),
+            body_diode: match &stage.rectifier {
+                Rectifier::Synchronous { low_side, .. } => low_side.body_diode(point.load),
+                Rectifier::Diode(_) => 0.0,
+            },
+            core_at_clock: match &stage.inductor.core {
+                Some(CoreLaw::Power(law)) => law.of_frequency.at(point.switching_frequency),
+                _ => 0.0,
+            },
             ripple_per_volt: 1.0 / (point.switching_frequency * inductance),
             v_supply: match controller.supply {
                 Supply::External(efficiency) => controller.v_drive / efficiency,
@@ -215,13 +233,14 @@ impl<'a> Prepared<'a> {
     #[inline(always)]
     fn path(&self, t: &Nodes, hot: &HotRatios) -> CurrentPath {
         let (stage, point) = (self.stage, &self.point);
-        let board = &stage.board;
-        let r_path = board.low_side_path * self.board_ratio;
+        let [high_path, r_path, series_path] = self.paths;
         let off = match &stage.rectifier {
-            Rectifier::Synchronous { .. } => OffPath::Synchronous {
+            Rectifier::Synchronous { schottky, .. } => OffPath::Synchronous {
                 r_channel: self.drive.r_low * hot.low_side,
                 r_path,
-                v_dead: self.dead_time_drop(point.load, t),
+                v_dead: schottky
+                    .as_ref()
+                    .map_or(self.body_diode, |diode| diode.forward_voltage(point.load, t[SCHOTTKY])),
                 dead_share: (stage.controller.t_1 + stage.controller.t_2) * point.switching_frequency,
             },
             Rectifier::Diode(diode) => {
@@ -235,8 +254,8 @@ impl<'a> Prepared<'a> {
             frequency: point.switching_frequency,
             inductance: self.inductance,
             ripple_per_volt: self.ripple_per_volt,
-            r_high: self.drive.r_high * hot.high_side + board.high_side_path * self.board_ratio,
-            r_series: stage.inductor.dcr * hot.winding + (board.output_path + board.sense) * self.board_ratio,
+            r_high: self.drive.r_high * hot.high_side + high_path,
+            r_series: stage.inductor.dcr * hot.winding + series_path,
             off,
         }
     }
@@ -248,18 +267,6 @@ impl<'a> Prepared<'a> {
             blocks: self.stage.blocks,
             skip_peak: self.stage.skip_peak,
             t_on_min: self.stage.controller.t_on_min,
-        }
-    }
-
-    /// Drop of whatever carries the dead-time current, V: the Schottky's when one is fitted (E19).
-    #[inline(always)]
-    fn dead_time_drop(&self, current: f64, t: &Nodes) -> f64 {
-        match &self.stage.rectifier {
-            Rectifier::Synchronous { schottky: Some(diode), .. } => {
-                diode.forward_voltage(current, t[SCHOTTKY])
-            }
-            Rectifier::Synchronous { low_side, .. } => low_side.body_diode(current),
-            Rectifier::Diode(_) => 0.0,
         }
     }
 
@@ -277,22 +284,21 @@ impl<'a> Prepared<'a> {
     }
 
     /// What heats the parts at temperatures; fails where no waveform or no gate drive exists.
-    pub fn heated(&self, t: &Nodes, near: &mut Memory) -> Result<Heated, Infeasible> {
+    pub fn heated(&self, t: &Nodes) -> Result<Heated, Infeasible> {
         let hot = self.hot(t);
-        Ok(self.heated_by(self.waveform(t, &hot)?, t, &hot, near))
+        Ok(self.heated_by(self.waveform(t, &hot)?, t, &hot))
     }
 
     /// What heats the parts at temperatures with the waveform that belongs to them.
     #[inline(always)]
-    pub fn heated_by(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios, near: &mut Memory) -> Heated {
+    pub fn heated_by(&self, waveform: Waveform, t: &Nodes, hot: &HotRatios) -> Heated {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let (controller, high) = (&stage.controller, &stage.high_side);
         let frequency = waveform.frequency;
 
         // high side
-        let i_on = waveform.valley.max(0.0);
-        let durations =
-            edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak], near);
+        let i_on = at_least(0.0, waveform.valley);
+        let durations = edges::edge_durations(high, &self.drive.high_gate, self.q_gd, [i_on, waveform.peak]);
         let conditions = EdgeConditions {
             v_in,
             i_on,
@@ -319,7 +325,7 @@ impl<'a> Prepared<'a> {
             Rectifier::Diode(diode) => diode.recovery.as_ref(),
         };
         let switched_off = if waveform.is_continuous() { waveform.valley } else { 0.0 };
-        let rectifier = self.heated_rectifier(&waveform, t, hot, near);
+        let rectifier = self.heated_rectifier(&waveform, t, hot);
         let low_gate = match &rectifier {
             HeatedRectifier::Synchronous { gate, .. } => *gate,
             HeatedRectifier::Diode { .. } => GatePower::default(),
@@ -345,7 +351,10 @@ impl<'a> Prepared<'a> {
             ac_winding: self
                 .ac_excess
                 .map(|excess| ac_winding::ac_winding(&waveform, self.point.load, excess * hot.winding)),
-            core: inductor.core.as_ref().map(|law| core::core(&waveform, law, inductor.n, &mut near.core)),
+            core: inductor
+                .core
+                .as_ref()
+                .map(|law| core::core(&waveform, law, inductor.n, self.core_at_clock)),
             ringing,
             drive: gate_drive::drive_power(&high_gate, &low_gate, self.v_supply, frequency),
             bias: bias::bias(&waveform, v_in, controller.i_q, controller.i_q_sleep),
@@ -353,32 +362,21 @@ impl<'a> Prepared<'a> {
     }
 
     #[inline(always)]
-    fn heated_rectifier(
-        &self,
-        waveform: &Waveform,
-        t: &Nodes,
-        hot: &HotRatios,
-        near: &mut Memory,
-    ) -> HeatedRectifier {
+    fn heated_rectifier(&self, waveform: &Waveform, t: &Nodes, hot: &HotRatios) -> HeatedRectifier {
         let (stage, v_in) = (self.stage, self.point.input_voltage);
         let controller = &stage.controller;
         match &stage.rectifier {
             Rectifier::Diode(diode) => HeatedRectifier::Diode {
                 conduction: conduction::freewheel_diode(waveform, diode, t[RECTIFIER]),
-                leakage: leakage::leakage(waveform, diode, self.reverse, t[RECTIFIER], &mut near.leakage),
+                leakage: leakage::leakage(waveform, diode, self.reverse, t[RECTIFIER]),
             },
             Rectifier::Synchronous { low_side, schottky } => {
                 let (t_1, t_2, frequency) = (controller.t_1, controller.t_2, waveform.frequency);
                 let ends = DeadTimeEnds::of(waveform, t_1, t_2);
                 let resistance = self.drive.r_low * hot.low_side;
-                let reverse = (-waveform.valley).max(0.0);
+                let reverse = at_least(0.0, -waveform.valley);
                 let (overlap, high_dead_time) = if reverse > 0.0 {
-                    let t_fi = edges::current_fall(
-                        low_side,
-                        self.drive.low_gate.r_off,
-                        reverse,
-                        &mut NearLogarithm::default(),
-                    );
+                    let t_fi = edges::current_fall(low_side, self.drive.low_gate.r_off, reverse);
                     let v_sd = stage.high_side.body_diode(reverse);
                     (
                         overlap::low_side(v_in, reverse, t_fi, frequency),
@@ -393,16 +391,20 @@ impl<'a> Prepared<'a> {
                 } else {
                     output_charge::low_side(&self.node, v_in, moved, frequency)
                 };
-                let drop = |current| self.dead_time_drop(current, t);
+                // whatever carries the dead-time current: the Schottky when one is fitted (E19)
+                let drop = |current| match schottky {
+                    Some(diode) => diode.forward_voltage(current, t[SCHOTTKY]),
+                    None => low_side.body_diode(current),
+                };
                 HeatedRectifier::Synchronous {
                     conduction: conduction::low_side(waveform, ends, t_1, t_2, resistance),
                     overlap,
                     output_charge,
                     dead_time: dead_time::rectifier(waveform, ends, [t_1, t_2], self.node_charge, drop),
                     gate: gate_drive::gate_power(self.drive.q_low, &self.drive.low_gate, frequency),
-                    schottky: schottky.as_ref().map(|diode| {
-                        leakage::leakage(waveform, diode, self.reverse, t[SCHOTTKY], &mut near.leakage)
-                    }),
+                    schottky: schottky
+                        .as_ref()
+                        .map(|diode| leakage::leakage(waveform, diode, self.reverse, t[SCHOTTKY])),
                     high_dead_time,
                 }
             }

@@ -7,7 +7,6 @@ use crate::fitted::{Kind, Rectifier, Stage, Switched};
 use crate::heat;
 use crate::loss::overlap::{self, EdgeConditions};
 use crate::model::{self, Prepared, Solved};
-use crate::near::Memory;
 
 /// Highest reading of the edge account against a transient solution of the switching cell (E17).
 const EDGES_READ_HIGH: f64 = 1.17;
@@ -37,7 +36,7 @@ pub fn terms(candidate: &Candidate<'_>, solved: &Solved) -> Vec<ModelTerm> {
 /// Overlap and output charge of the high side: down to what a transient solution found at the least, up to the textbook sum.
 fn edges(stage: &Switched, output_voltage: f64, solved: &Solved) -> Option<ModelTerm> {
     let prepared = Prepared::new(stage, output_voltage, solved.point);
-    let heated = prepared.heated(&heat::nodes_of(&prepared, solved), &mut Memory::default()).ok()?;
+    let heated = prepared.heated(&heat::nodes_of(&prepared, solved)).ok()?;
     let waveform = heated.waveform;
     let conditions = EdgeConditions {
         v_in: solved.point.input_voltage,

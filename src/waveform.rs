@@ -1,5 +1,7 @@
 //! Waveforms of a switched stage (E2-E8) from resistances and drops given as numbers.
 
+use crate::near::at_least;
+
 /// How a stage runs at a point.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
 pub enum Mode {
@@ -188,7 +190,7 @@ impl Waveform {
         let (rise, fall) = (l / v_on, l / v_off);
         let pulse = rise + fall;
         let natural_peak = (2.0 * i / (f * pulse)).sqrt();
-        let smallest_peak = rule.skip_peak.max(v_on * rule.t_on_min / l);
+        let smallest_peak = at_least(rule.skip_peak, v_on * rule.t_on_min / l);
         let (mode, peak, frequency) = if natural_peak < smallest_peak {
             (Mode::PulseSkipping, smallest_peak, 2.0 * i / (smallest_peak * smallest_peak * pulse))
         } else {
@@ -218,7 +220,7 @@ impl Waveform {
     /// Share of the period in which the inductor current rests at zero.
     #[inline(always)]
     pub fn idle_share(&self) -> f64 {
-        (1.0 - self.duty - self.off_duty).max(0.0)
+        at_least(0.0, 1.0 - self.duty - self.off_duty)
     }
 
     /// True while the rectifier never blocks.
@@ -243,12 +245,12 @@ impl Waveform {
     #[inline(always)]
     pub fn input_capacitor_square(&self, load: f64) -> f64 {
         let mean = if self.is_continuous() { self.duty * load } else { self.mean_input_current() };
-        (self.duty * self.mean_square - mean * mean).max(0.0)
+        at_least(0.0, self.duty * self.mean_square - mean * mean)
     }
 
     /// Squared RMS current of the output capacitors, A² (E4).
     #[inline(always)]
     pub fn output_capacitor_square(&self, load: f64) -> f64 {
-        (self.inductor_square() - load * load).max(0.0)
+        at_least(0.0, self.inductor_square() - load * load)
     }
 }

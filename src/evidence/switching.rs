@@ -12,7 +12,6 @@ use super::statistics::{mean, worst};
 use crate::edges::{GateLoop, edge_durations};
 use crate::ledger::Account as A;
 use crate::loss::overlap::{EdgeConditions, textbook};
-use crate::near::Memory;
 use crate::parts::mosfet::Mosfet;
 use crate::sheet::Datum;
 use crate::sheet::mosfet::MosfetSheet;
@@ -89,7 +88,7 @@ impl Cell {
         let gate = GateLoop { v_gate: self.v_drive, r_on: self.r_on, r_off: self.r_off, own_share: 0.0 };
         let edges = [self.i_on, self.i_off];
         let q_gd = mosfet.q_gd.charge(self.v_in);
-        let durations = edge_durations(&mosfet, &gate, q_gd, edges, &mut Memory::default());
+        let durations = edge_durations(&mosfet, &gate, q_gd, edges);
         let conditions = EdgeConditions {
             v_in: self.v_in,
             i_on: self.i_on,

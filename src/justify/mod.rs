@@ -33,7 +33,6 @@ use crate::heat::nodes_of;
 use crate::infeasible::Infeasible;
 use crate::ledger::{Account, Mechanism, Slot};
 use crate::model::{self, Prepared, Solved};
-use crate::near::Memory;
 use crate::record::{Detail, Record};
 use crate::stage::{Circuit, StageSheet};
 use crate::units::Dimension as D;
@@ -189,7 +188,7 @@ fn write(candidate: &Candidate<'_>, detail: &Detail) -> Result<Written, Infeasib
         (Kind::Switched(stage), Circuit::Switched(sheet)) => {
             let prepared = Prepared::new(stage, solved.output_voltage, solved.point);
             let nodes = nodes_of(&prepared, solved);
-            let heated = prepared.heated(&nodes, &mut Memory::default())?;
+            let heated = prepared.heated(&nodes)?;
             let unheated = prepared.unheated(&heated.waveform);
             let case =
                 Case { sheet, prepared: &prepared, heated: &heated, unheated: &unheated, nodes: &nodes };

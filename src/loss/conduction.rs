@@ -1,5 +1,6 @@
 //! Conduction: current through channels (E12) and through a freewheel diode (E26).
 
+use crate::near::at_least;
 use crate::parts::diode::Diode;
 use crate::waveform::{Waveform, ramp_mean_square};
 
@@ -38,7 +39,7 @@ pub fn high_side(waveform: &Waveform, resistance: f64) -> Channel {
 #[inline(always)]
 pub fn low_side(waveform: &Waveform, ends: DeadTimeEnds, t_1: f64, t_2: f64, resistance: f64) -> Channel {
     let dead = if waveform.is_continuous() { t_1 + t_2 } else { t_1 };
-    let share = (waveform.off_duty - dead * waveform.frequency).max(0.0);
+    let share = at_least(0.0, waveform.off_duty - dead * waveform.frequency);
     Channel::of(share, ramp_mean_square(ends.i_after, ends.i_before), resistance)
 }
 
@@ -59,7 +60,7 @@ impl DeadTimeEnds {
         if waveform.is_continuous() {
             DeadTimeEnds { i_after: waveform.peak - slope * t_1, i_before: waveform.valley + slope * t_2 }
         } else {
-            DeadTimeEnds { i_after: (waveform.peak - slope * t_1).max(0.0), i_before: 0.0 }
+            DeadTimeEnds { i_after: at_least(0.0, waveform.peak - slope * t_1), i_before: 0.0 }
         }
     }
 }

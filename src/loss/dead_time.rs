@@ -1,6 +1,7 @@
 //! Dead time: the inductor current flows in a diode while both switches are off (E19, E17).
 
 use crate::loss::conduction::DeadTimeEnds;
+use crate::near::at_least;
 use crate::waveform::Waveform;
 
 /// Dead-time loss and what it is made of.
@@ -35,11 +36,11 @@ pub fn rectifier(
     drop: impl Fn(f64) -> f64,
 ) -> DeadTime {
     let transit = if waveform.peak > 0.0 { node_charge / waveform.peak } else { f64::INFINITY };
-    let t_after = (t_1 - transit).max(0.0);
-    let i_after = (0.5 * (waveform.peak + ends.i_after)).max(0.0);
+    let t_after = at_least(0.0, t_1 - transit);
+    let i_after = at_least(0.0, 0.5 * (waveform.peak + ends.i_after));
     let v_after = drop(i_after);
     let (t_before, i_before) = if waveform.is_continuous() {
-        (t_2, (0.5 * (waveform.valley + ends.i_before)).max(0.0))
+        (t_2, at_least(0.0, 0.5 * (waveform.valley + ends.i_before)))
     } else {
         (0.0, 0.0)
     };
@@ -65,6 +66,6 @@ pub struct HighSideDeadTime {
 /// |I_v| V_sd max(t_2 - Q_node/|I_v|, 0) f (E17). Derived.
 #[inline(always)]
 pub fn high_side(current: f64, v_sd: f64, t_2: f64, node_charge: f64, frequency: f64) -> HighSideDeadTime {
-    let time = (t_2 - node_charge / current).max(0.0);
+    let time = at_least(0.0, t_2 - node_charge / current);
     HighSideDeadTime { current, v_sd, time, watts: current * v_sd * time * frequency }
 }

@@ -1,6 +1,7 @@
 //! Gate drive: charging and discharging the gates (E20, E21).
 
 use crate::edges::GateLoop;
+use crate::near::at_least;
 
 /// Gate power of one switch and where it is burnt.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
@@ -51,5 +52,5 @@ pub struct DrivePower {
 #[inline(always)]
 pub fn drive_power(high: &GatePower, low: &GatePower, v_supply: f64, frequency: f64) -> DrivePower {
     let total = frequency * (high.charge + low.charge) * v_supply;
-    DrivePower { v_supply, total, watts: (total - high.watts - low.watts).max(0.0) }
+    DrivePower { v_supply, total, watts: at_least(0.0, total - high.watts - low.watts) }
 }

@@ -1,6 +1,6 @@
 //! Reverse leakage of a diode (E27).
 
-use crate::near::LeakageMemory;
+use crate::near;
 use crate::parts::diode::Diode;
 use crate::waveform::Waveform;
 
@@ -40,12 +40,11 @@ pub fn leakage(
     diode: &Diode,
     [v_in, v_out]: [ReverseVoltage; 2],
     t_j: f64,
-    near: &mut LeakageMemory,
 ) -> Option<Leakage> {
     let law = diode.leakage.as_ref()?;
-    let at_input = near.input.at(law.ln_at(v_in.logarithm, t_j));
+    let at_input = near::exp(law.ln_at(v_in.logarithm, t_j));
     let idle = if waveform.is_continuous() { 0.0 } else { waveform.idle_share() };
-    let at_output = if idle > 0.0 { near.output.at(law.ln_at(v_out.logarithm, t_j)) } else { 0.0 };
+    let at_output = if idle > 0.0 { near::exp(law.ln_at(v_out.logarithm, t_j)) } else { 0.0 };
     let watts = diode.n * (waveform.duty * v_in.volts * at_input + idle * v_out.volts * at_output);
     Some(Leakage { at_input, at_output, watts })
 }

@@ -1,6 +1,7 @@
 //! Output charge: energy of the node capacitance that a switch burns when it turns on (E16, E16c).
 
 use crate::edges::NodeCapacitance;
+use crate::near::at_least;
 use crate::waveform::Waveform;
 
 /// Energy of the node burnt by one switch and what it is made of.
@@ -65,7 +66,7 @@ impl IdleSwing {
 /// High side: E_cap(v_node) f_e (E16), with the energy met at the node's voltage in J.
 #[inline(always)]
 pub fn high_side(energy: f64, v_node: f64, frequency: f64) -> OutputCharge {
-    let energy = energy.max(0.0);
+    let energy = at_least(0.0, energy);
     OutputCharge { v_node, energy, watts: energy * frequency }
 }
 
@@ -74,6 +75,6 @@ pub fn high_side(energy: f64, v_node: f64, frequency: f64) -> OutputCharge {
 /// Source: derived. `moved` is the charge I_p t_1 that the inductor takes from the node in the first dead time.
 pub fn low_side(node: &NodeCapacitance, v_in: f64, moved: f64, frequency: f64) -> OutputCharge {
     let v_node = node.lowered(v_in, moved);
-    let energy = node.early_turn_on_energy(v_in, v_node).max(0.0);
+    let energy = at_least(0.0, node.early_turn_on_energy(v_in, v_node));
     OutputCharge { v_node, energy, watts: energy * frequency }
 }

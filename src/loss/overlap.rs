@@ -1,6 +1,7 @@
 //! Overlap: voltage and current together in a channel during an edge (E15, E17).
 
 use crate::edges::EdgeDurations;
+use crate::near::at_least;
 
 /// Share k of V I t that a voltage edge burns when the capacitance falls with voltage as v^-1/2: 2 E/(Q v) = 2/3 (E14).
 pub const MILLER_WEIGHT: f64 = 2.0 / 3.0;
@@ -50,7 +51,7 @@ pub fn high_side(at: &EdgeConditions, edges: EdgeDurations) -> Overlap {
     let on_edge = 0.5 * at.v_in * at.i_on * (edges.t_ri + MILLER_WEIGHT * edges.t_fv);
     let on_node = at.i_on * at.node_energy / at.surplus_current;
     let off_current = 0.5 * at.v_in * at.i_off * edges.t_fi;
-    let off_voltage = (0.5 * at.v_in * at.i_off * MILLER_WEIGHT * edges.t_rv - at.node_energy).max(0.0);
+    let off_voltage = at_least(0.0, 0.5 * at.v_in * at.i_off * MILLER_WEIGHT * edges.t_rv - at.node_energy);
     let watts = (on_edge + on_node + off_current + off_voltage) * at.frequency;
     Overlap { edges, on_edge, on_node, off_current, off_voltage, watts }
 }

@@ -1,5 +1,6 @@
 //! Reverse recovery of a PN diode that still carries current when the high side turns on (E18).
 
+use crate::near::at_least;
 use crate::parts::mosfet::RecoveryLaw;
 
 /// Recovery loss and what it is made of.
@@ -21,6 +22,6 @@ pub fn recovery(law: &RecoveryLaw, v_in: f64, valley: f64, frequency: f64) -> Re
     }
     let ratio = valley * law.per_current;
     let growth = if law.exponent == 0.5 { ratio.sqrt() } else { ratio.powf(law.exponent) };
-    let charge = (law.charge * growth - law.counted_output_charge).max(0.0);
+    let charge = at_least(0.0, law.charge * growth - law.counted_output_charge);
     Recovery { charge, watts: v_in * charge * frequency }
 }

@@ -1,6 +1,7 @@
 //! Ringing: the idle node of discontinuous mode rings out into the winding (E16b).
 
 use crate::edges::NodeCapacitance;
+use crate::near::at_least;
 
 /// Ringing loss and what it is made of.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
@@ -16,6 +17,6 @@ pub struct Ringing {
 /// E_ring f_e with the node settling at `v_node` (E16b); for linear capacitances ½ (C_h + C_r) v². Derived.
 #[inline(always)]
 pub fn ringing(node: &NodeCapacitance, v_in: f64, v_node: f64, frequency: f64) -> Ringing {
-    let energy = node.ringing_energy(v_in, v_node).max(0.0);
+    let energy = at_least(0.0, node.ringing_energy(v_in, v_node));
     Ringing { v_node, energy, watts: energy * frequency }
 }

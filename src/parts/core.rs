@@ -27,7 +27,7 @@ pub enum CoreLaw {
 }
 
 /// P = K (s λ)^β f^α (D1^(1-α) + D2^(1-α)) with λ the volt-seconds of the rising slope.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq)]
 pub struct PowerLaw {
     /// K
     pub k: f64,

@@ -1,6 +1,7 @@
 //! Diode: the curves of the model, for n devices in parallel.
 
 use crate::fit;
+use crate::near::at_least;
 use crate::parts::curve::Curve;
 use crate::parts::junction::JunctionCharge;
 use crate::parts::mosfet::RecoveryLaw;
@@ -60,8 +61,8 @@ impl Diode {
 pub struct ForwardLaw {
     /// V_f at the first temperature, V.
     cold: Curve,
-    /// dV_f/dT, V/K, through points at the same currents; `None` with one temperature.
-    drift: Option<Curve>,
+    /// dV_f/dT, V/K, through points at the same currents; 0 with one temperature.
+    drift: Curve,
     /// The first temperature, °C.
     t_cold: f64,
 }
@@ -81,10 +82,10 @@ impl ForwardLaw {
                 let currents: Vec<f64> = cold.xs().chain(hot.xs()).collect();
                 let through = |y: &dyn Fn(f64) -> f64| Curve::through(currents.iter().map(|i| (*i, y(*i))));
                 let drift = through(&|i| (hot.at(i) - cold.at(i)) / (t_hot - t_cold));
-                ForwardLaw { cold: through(&|i| cold.at(i)), drift: Some(drift), t_cold: *t_cold }
+                ForwardLaw { cold: through(&|i| cold.at(i)), drift, t_cold: *t_cold }
             }
-            [(t_only, only)] => ForwardLaw { cold: only.clone(), drift: None, t_cold: *t_only },
-            [] => ForwardLaw { cold: Curve::default(), drift: None, t_cold: 25.0 },
+            [(t_only, only)] => ForwardLaw { cold: only.clone(), drift: Curve::default(), t_cold: *t_only },
+            [] => ForwardLaw { cold: Curve::default(), drift: Curve::default(), t_cold: 25.0 },
         }
     }
 
@@ -92,15 +93,13 @@ impl ForwardLaw {
     #[inline(always)]
     pub fn at(&self, i: f64, t_j: f64) -> f64 {
         let place = self.cold.place(i);
-        let cold = self.cold.on(place);
-        let drift = self.drift.as_ref().map_or(0.0, |drift| drift.on(place));
-        (cold + drift * (t_j - self.t_cold)).max(0.05)
+        at_least(0.05, self.cold.on(place) + self.drift.on(place) * (t_j - self.t_cold))
     }
 
     /// dV_f/dT of one device at a current, V/K.
     #[inline]
     pub fn drift(&self, i: f64) -> f64 {
-        self.drift.as_ref().map_or(0.0, |drift| drift.at(i))
+        self.drift.at(i)
     }
 }
 

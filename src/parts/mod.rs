@@ -6,7 +6,6 @@ pub mod copper;
 pub mod core;
 pub mod curve;
 pub mod diode;
-pub mod hot;
 pub mod inductor;
 pub mod junction;
 pub mod linear_regulator;

@@ -1,7 +1,7 @@
 //! MOSFET: the curves of the model, for n devices in parallel.
 
+use crate::near::{Power, at_least};
 use crate::parts::curve::Curve;
-use crate::parts::hot::{COLD_KELVIN, HotLaw};
 use crate::parts::junction::JunctionCharge;
 use crate::sheet::edge_times::EdgeTimes;
 use crate::sheet::mosfet::{MosfetSheet, Recovery};
@@ -18,8 +18,8 @@ pub struct Mosfet {
     pub on_resistance: OnResistance,
     /// Exponent p of R(T) = R_25 (T/298.15 K)^p (E11).
     pub hot_exponent: f64,
-    /// The law with this exponent.
-    hot: HotLaw,
+    /// The power with this exponent.
+    hot: Power,
     /// Threshold voltage, V.
     pub v_th: f64,
     /// 1/V_th, 1/V.
@@ -65,7 +65,7 @@ impl Mosfet {
             share: 1.0 / n,
             on_resistance: OnResistance::fit(sheet),
             hot_exponent: hot_exponent(sheet),
-            hot: HotLaw::of(hot_exponent(sheet)),
+            hot: Power::of(hot_exponent(sheet)),
             v_th,
             per_threshold: 1.0 / v_th,
             transconductance: n * i_test / (v_pl - v_th),
@@ -83,10 +83,10 @@ impl Mosfet {
         }
     }
 
-    /// R(T_j)/R(25 °C) (E11).
+    /// R(T_j)/R(25 °C) = ((T_j + 273.15)/298.15)^p (E11).
     #[inline(always)]
     pub fn hot_ratio(&self, t_j: f64) -> f64 {
-        self.hot.at(t_j)
+        self.hot.at((t_j + ZERO_KELVIN) * (1.0 / COLD_KELVIN))
     }
 
     /// Plateau voltage at a drain current of all devices (E13), V.
@@ -98,10 +98,14 @@ impl Mosfet {
     /// Body diode forward voltage at a current of all devices, V; never below 50 mV.
     #[inline(always)]
     pub fn body_diode(&self, current: f64) -> f64 {
-        self.v_sd.at(current * self.share).max(0.05)
+        at_least(0.05, self.v_sd.at(current * self.share))
     }
 }
 
+/// 0 °C in K.
+const ZERO_KELVIN: f64 = 273.15;
+/// 25 °C in K, the reference of on-resistances.
+const COLD_KELVIN: f64 = 298.15;
 /// Internal gate resistance assumed when the data sheet prints none, Ω.
 pub const ASSUMED_GATE_RESISTANCE: f64 = 1.0;
 /// Hot to cold ratio assumed when the data sheet prints none (common practice), at 125 °C.
@@ -112,7 +116,7 @@ fn hot_exponent(sheet: &MosfetSheet) -> f64 {
         Some(hot) => (hot.t_j.value, hot.ratio.value),
         None => (125.0, ASSUMED_HOT_RATIO),
     };
-    ratio.ln() / ((t_hot + 273.15) / COLD_KELVIN).ln()
+    ratio.ln() / ((t_hot + ZERO_KELVIN) / COLD_KELVIN).ln()
 }
 
 /// On-resistance of one device at 25 °C against gate voltage (E10).
