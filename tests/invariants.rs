@@ -179,7 +179,7 @@ fn loss_is_continuous_across_the_border_of_modes() {
             return Ok(());
         };
         // where the neglected resistances move the duty itself, the closed form is out of its range
-        if (above[2] / below[2] - 1.0).abs() > 0.01 {
+        if (above[2] / below[2] - 1.0).abs() > 0.003 {
             return Ok(());
         }
         for (place, limit) in [(0, 0.02), (1, 0.10)] {
