@@ -109,18 +109,26 @@ impl<'a> Candidate<'a> {
         match (&self.sheet.switching_frequency, self.sheet.is_linear()) {
             (_, true) => point.with(AxisName::SwitchingFrequency, 0.0),
             (Some(own), false) if named.switching_frequency.is_none() => {
-                point.with(AxisName::SwitchingFrequency, own.at(0))
+                // the headline chooses among several
+                let chosen = own.values().find(|value| *value == self.budget.headline.switching_frequency);
+                point.with(AxisName::SwitchingFrequency, chosen.unwrap_or_else(|| own.at(0)))
             }
             _ => point,
         }
     }
 
-    /// The grid with the coordinates named fixed.
+    /// The grid with the coordinates named fixed; empty when the stage never runs at the frequency named.
     pub fn grid_at(&self, named: PartialPoint) -> Grid {
         let fixed = crate::grid::ALL_AXES.into_iter().filter_map(|axis| Some((axis, named.get(axis)?)));
-        fixed
-            .filter(|(axis, _)| *axis != AxisName::SwitchingFrequency || !self.sheet.is_linear())
-            .fold(self.grid.clone(), |grid, (axis, value)| grid.with(axis, Axis::List(vec![value])))
+        fixed.filter(|(axis, _)| *axis != AxisName::SwitchingFrequency || !self.sheet.is_linear()).fold(
+            self.grid.clone(),
+            |grid, (axis, value)| {
+                let own = self.sheet.switching_frequency.as_ref();
+                let foreign = axis == AxisName::SwitchingFrequency
+                    && own.is_some_and(|own| !own.values().any(|frequency| frequency == value));
+                grid.with(axis, Axis::List(if foreign { Vec::new() } else { vec![value] }))
+            },
+        )
     }
 
     /// The fitted stage at a point: of typical values, or of those that raise the loss there.

@@ -1,9 +1,11 @@
 //! The file system: read with a size cap, list a folder, write whole or not at all. Nothing else uses `std::fs`.
 #![expect(clippy::disallowed_methods, reason = "this is the one file that may")]
 
+use std::collections::BTreeSet;
 use std::fs::{self, File};
 use std::io::{self, Read, Write};
 use std::path::{Path, PathBuf};
+use std::sync::{Mutex, PoisonError};
 
 use sha2::{Digest, Sha256};
 use thiserror::Error;
@@ -47,6 +49,9 @@ pub enum FileFault {
         /// Line of the first zero byte.
         line: usize,
     },
+    /// A file that this very answer was computed from.
+    #[error("it is one of the files that this answer was read from")]
+    IsInput,
     /// Anything else.
     #[error("{0}")]
     Other(io::Error),
@@ -75,6 +80,7 @@ impl FileFault {
             FileFault::TooLarge => "split it into several files",
             FileFault::NotUtf8 { .. } | FileFault::Utf16 => "save it as UTF-8 in your editor",
             FileFault::ZeroByte { .. } => "name a text file",
+            FileFault::IsInput => "name another file: inputs are never written over",
             FileFault::Other(_) => "check the disk and the path",
         }
     }
@@ -105,8 +111,30 @@ pub fn read_text(path: &Path) -> Result<TextFile, FileFault> {
     if bytes.len() as u64 > SIZE_CAP {
         return Err(FileFault::TooLarge);
     }
+    remember_read(path);
     let sha256 = sha256_hex(&bytes);
     Ok(TextFile { text: decode(bytes)?, sha256 })
+}
+
+/// True places of the files read in this run: no answer is ever written over one of them.
+static READ: Mutex<BTreeSet<PathBuf>> = Mutex::new(BTreeSet::new());
+
+fn remember_read(path: &Path) {
+    if let Ok(place) = fs::canonicalize(path) {
+        READ.lock().unwrap_or_else(PoisonError::into_inner).insert(place);
+    }
+}
+
+/// Refuses a file that was read in this run as the place of an answer, behind links too.
+///
+/// # Errors
+/// [`FileFault::IsInput`].
+pub fn refuse_input(path: &Path) -> Result<(), FileFault> {
+    let read = READ.lock().unwrap_or_else(PoisonError::into_inner);
+    match fs::canonicalize(path) {
+        Ok(place) if read.contains(&place) => Err(FileFault::IsInput),
+        _ => Ok(()),
+    }
 }
 
 /// Text of a file's bytes: UTF-8, byte order mark dropped, every line end a `\n`.

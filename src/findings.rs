@@ -2,11 +2,11 @@
 
 use std::fmt;
 
-use crate::fitted::{Kind, Rectifier, Stage};
-use crate::gaps::{Effect, Gaps};
+use crate::fitted::{Kind, Rectifier, Stage, Switched};
+use crate::gaps::{Effect, Gaps, RECOVERY_EXPONENT};
 use crate::ledger::{Account, Mechanism, Slot};
 use crate::sheet::BoardSheet;
-use crate::stage::{Circuit, RectifierSheet, StageSheet};
+use crate::stage::{Circuit, LightLoad, RectifierSheet, StageSheet};
 use crate::values;
 
 /// How much a finding matters.
@@ -113,6 +113,7 @@ pub fn not_modelled(stage: &Stage) -> Vec<NotModelled> {
             need(diode.leakage.is_none(), Slot::FreewheelDiode, Mechanism::Leakage, "i_r");
         }
     }
+    need(!knows_node_charge(stage), Slot::Inductor, Mechanism::Ringing, "q_oss");
     need(stage.inductor.ac_per_root_hertz.is_none(), Slot::Inductor, Mechanism::AcWinding, "r_ac");
     need(stage.inductor.core.is_none(), Slot::Inductor, Mechanism::Core, "core");
     need(stage.input_bank.kinds.is_empty(), Slot::InputCapacitors, Mechanism::Esr, "input_capacitors");
@@ -125,6 +126,17 @@ pub fn not_modelled(stage: &Stage) -> Vec<NotModelled> {
         missing.push(NotModelled { slot, mechanism, needs: "q_rr", lacking });
     }
     missing
+}
+
+/// True when the charge of any device on the switch node is known.
+fn knows_node_charge(stage: &Switched) -> bool {
+    let rectifier = match &stage.rectifier {
+        Rectifier::Synchronous { low_side, schottky } => {
+            low_side.q_oss.is_some() || schottky.as_ref().is_some_and(|diode| diode.q_c.is_some())
+        }
+        Rectifier::Diode(diode) => diode.q_c.is_some(),
+    };
+    rectifier || stage.high_side.q_oss.is_some()
 }
 
 /// Accounts that a stage books to: those of its slots less those without any data.
@@ -152,11 +164,16 @@ pub fn accounts(stage: &Stage) -> Vec<Account> {
             }
         },
     };
+    // the devices on the node share output charge: what one lacks, another may still have
+    let in_part = match &stage.kind {
+        Kind::Switched(stage) => knows_node_charge(stage),
+        Kind::Linear(_) => false,
+    };
     let has_data = |account: &Account| {
         let lacking = |m: &NotModelled| {
             m.slot == account.slot()
                 && m.mechanism == account.mechanism()
-                && m.mechanism != Mechanism::OutputCharge
+                && !(in_part && m.mechanism == Mechanism::OutputCharge)
         };
         !missing.iter().any(lacking)
     };
@@ -170,8 +187,20 @@ pub fn accounts(stage: &Stage) -> Vec<Account> {
 /// What the model assumes about the parts of a stage, whatever the point.
 pub fn assumptions(stage: &StageSheet, board: &BoardSheet) -> Vec<Finding> {
     let mut notes = Vec::new();
+    // only one diode of a stage recovers, and none beside a Schottky
+    let recovers_in = match &stage.circuit {
+        Circuit::Switched(switched) => match &switched.rectifier {
+            RectifierSheet::Synchronous { parallel_schottky: None, .. } => Some(Slot::LowSide),
+            RectifierSheet::Synchronous { .. } => None,
+            RectifierSheet::Diode { .. } => Some(Slot::FreewheelDiode),
+        },
+        Circuit::Linear(_) => None,
+    };
     let mut of = |slot: Slot, sheet: &dyn Gaps| {
-        let assumed = sheet.gaps().into_iter().filter(|gap| gap.effect == Effect::Assumed);
+        let assumed = sheet.gaps().into_iter().filter(|gap| {
+            let recovers = recovers_in.is_some_and(|diode| diode == slot);
+            gap.effect == Effect::Assumed && (gap.kind != RECOVERY_EXPONENT || recovers)
+        });
         notes.extend(assumed.map(|gap| {
             let text =
                 if gap.key.is_empty() { gap.text.to_owned() } else { format!("{}: {}", gap.key, gap.text) };
@@ -194,6 +223,20 @@ pub fn assumptions(stage: &StageSheet, board: &BoardSheet) -> Vec<Finding> {
             of(Slot::Inductor, &*stage.inductor.sheet);
             of(Slot::Controller, &*stage.controller.sheet);
         }
+    }
+    if let Circuit::Switched(switched) = &stage.circuit {
+        let sheet = &switched.controller.sheet;
+        if matches!(switched.light_load, LightLoad::PulseSkipping(_)) && sheet.i_q_sleep.is_none() {
+            let text = "no i_q_sleep: i_q is assumed while pulses are skipped";
+            notes.push(Finding::new(Severity::Note, "i_q_sleep_assumed", Slot::Controller, text));
+        }
+    }
+    let paths = [&board.input_path, &board.load_path];
+    if matches!(stage.circuit, Circuit::Linear(_))
+        && paths.iter().any(|path| path.as_ref().is_some_and(|r| r.value > 0.0))
+    {
+        let text = "input_path and load_path of the board are not booked to a linear stage";
+        notes.push(Finding::new(Severity::Note, "board_not_booked", Slot::Regulator, text));
     }
     for value in values::all(stage, board) {
         if value.datum.typical_is_assumed() && value.modelled {

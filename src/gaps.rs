@@ -22,6 +22,9 @@ pub struct Gap {
     pub hint: &'static str,
 }
 
+/// Kind of the gap that matters only for a diode that recovers in its stage.
+pub const RECOVERY_EXPONENT: &str = "recovery_exponent_assumed";
+
 /// What follows from a gap.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Effect {
@@ -75,7 +78,7 @@ impl Found {
             "no exponent of q_rr: 0.5 is assumed",
             "add `exponent:` when you know how q_rr grows with current",
         ];
-        self.assumed(silent, "recovery_exponent_assumed", "q_rr", words);
+        self.assumed(silent, RECOVERY_EXPONENT, "q_rr", words);
     }
 }
 
@@ -93,6 +96,11 @@ impl Gaps for MosfetSheet {
         found.assumed(self.q_gs2_is_estimated(), "q_gs2_estimated", "q_gs", words);
         let words = ["no r_g: 1 Ω is assumed", "add `r_g`, the internal gate resistance"];
         found.assumed(self.r_g.is_none(), "r_g_assumed", "", words);
+        let words = [
+            "no l_source: 0 nH of common-source inductance is assumed",
+            "add `l_source`, 0 nH where it is negligible",
+        ];
+        found.assumed(self.l_source.is_none(), "l_source_assumed", "", words);
         let words = ["neither q_oss nor c_oss: output charge is not modelled", "add `q_oss`"];
         found.not_modelled(self.q_oss.is_none() && self.c_oss.is_none(), "no_q_oss", words);
         let words = ["no q_rr: recovery of the body diode is not modelled", "add `q_rr`"];
@@ -146,17 +154,24 @@ impl Gaps for CapacitorSheet {
     }
 }
 
+/// Words for a driver that is stated by its peak currents.
+const DRIVER: [&str; 2] = [
+    "stated by peak currents: its resistances are estimated as v_drive / i",
+    "give r_source and r_sink when the data sheet has them",
+];
+
 impl Gaps for ControllerSheet {
     fn gaps(&self) -> Vec<Gap> {
         let mut found = Found::default();
         found.source(&self.descriptive);
-        let words = [
-            "stated by peak currents: its resistances are estimated as v_drive / i",
-            "give r_source and r_sink when the data sheet has them",
-        ];
-        found.assumed(self.high_side.is_estimated(), "driver_estimated", "high_side", words);
+        found.assumed(self.high_side.is_estimated(), "driver_estimated", "high_side", DRIVER);
+        let words = ["no v_boot_drop: 0 V is assumed", "add `v_boot_drop`, the drop of the bootstrap path"];
+        found.assumed(self.v_boot_drop.is_none(), "v_boot_drop_assumed", "", words);
+        let words = ["no t_on_min or no t_off_min: no limit is assumed", "add `t_on_min` and `t_off_min`"];
+        let unlimited = self.t_on_min.is_none() || self.t_off_min.is_none();
+        found.assumed(unlimited, "time_limits_assumed", "", words);
         let low_side = self.low_side.as_ref().is_some_and(|driver| driver.is_estimated());
-        found.assumed(low_side, "driver_estimated", "low_side", words);
+        found.assumed(low_side, "driver_estimated", "low_side", DRIVER);
         found.0
     }
 }

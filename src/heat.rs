@@ -65,6 +65,10 @@ fn quick<const COUPLED: bool>(prepared: &Prepared<'_>) -> Result<Solved, Infeasi
             if !search.is_trusted() && loop_gain(prepared, &search.t)? >= 1.0 {
                 break;
             }
+            // the controller only follows, but it too must stay below what is believed (E51)
+            if image[CONTROLLER].is_nan() || image[CONTROLLER] >= HOTTEST {
+                break;
+            }
             prepared.check_times(&heated.waveform)?;
             search.t[CONTROLLER] = image[CONTROLLER];
             return Ok(solved(prepared, &search.t, &heated));
@@ -274,6 +278,7 @@ fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: &Heated) -> Sol
         output_voltage: prepared.output_voltage,
         waveform: Some(waveform),
         temperatures: by_slot(prepared, temperatures),
+        held: held(prepared),
         ledger: ledger(heated, &unheated),
     }
 }
@@ -285,6 +290,16 @@ fn by_slot(prepared: &Prepared<'_>, temperatures: &Nodes) -> Temperatures {
         if let Some(slot) = slot {
             slots[slot.index()] = Some(*temperature);
         }
+    }
+    slots
+}
+
+/// Slots without a thermal resistance.
+fn held(prepared: &Prepared<'_>) -> [bool; SLOTS] {
+    let mut slots = [false; SLOTS];
+    let synchronous = prepared.stage.is_synchronous();
+    for (node, to_ambient) in prepared.stage.heat.to_ambient.iter().enumerate() {
+        slots[slot_of(node, synchronous).index()] = to_ambient.is_none();
     }
     slots
 }
@@ -314,9 +329,10 @@ fn image<const COUPLED: bool>(prepared: &Prepared<'_>, heated: &Heated) -> Nodes
 /// The image with K P of the other slots.
 #[inline(never)]
 fn coupled(prepared: &Prepared<'_>, waveform: Waveform, watts: Nodes, mut image: Nodes) -> Nodes {
-    let heat = &prepared.stage.heat;
-    for (node, heating, k) in &heat.coupling {
-        let source = heat.slots.iter().position(|slot| *slot == Some(*heating));
+    let synchronous = prepared.stage.is_synchronous();
+    for (node, heating, k) in &prepared.stage.heat.coupling {
+        // a controller without a thermal resistance has no temperature, but it warms others
+        let source = (0..NODES).find(|source| slot_of(*source, synchronous) == *heating);
         image[*node] +=
             k * source.map_or_else(|| unheated_watts(prepared, &waveform, *heating), |source| watts[source]);
     }
@@ -444,7 +460,9 @@ pub fn settle_linear(
     }
     let mut temperatures = [None; SLOTS];
     temperatures[Slot::Regulator.index()] = Some(temperature);
-    Ok(Solved { point, output_voltage, waveform: None, temperatures, ledger })
+    let mut held = [false; SLOTS];
+    held[Slot::Regulator.index()] = regulator.r_th.is_none();
+    Ok(Solved { point, output_voltage, waveform: None, temperatures, held, ledger })
 }
 
 #[cfg(test)]

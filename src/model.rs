@@ -577,6 +577,8 @@ pub struct Solved {
     pub waveform: Option<Waveform>,
     /// Temperature of each slot that has one, °C.
     pub temperatures: Temperatures,
+    /// Slots that stay at ambient because their thermal resistance is unknown: their temperature is no result.
+    pub held: [bool; crate::ledger::SLOTS],
     /// Watts of every account.
     pub ledger: Ledger,
 }
@@ -606,10 +608,11 @@ impl Solved {
         (output > 0.0).then(|| output / input)
     }
 
-    /// The hottest slot and its temperature, °C.
+    /// The hottest slot and its temperature, °C, of those whose thermal resistance is known.
     pub fn hottest(&self) -> Option<(crate::ledger::Slot, f64)> {
         let known = crate::ledger::ALL_SLOTS
             .into_iter()
+            .filter(|slot| !self.held[slot.index()])
             .filter_map(|slot| self.temperatures[slot.index()].map(|temperature| (slot, temperature)));
         known.max_by(|a, b| a.1.total_cmp(&b.1))
     }

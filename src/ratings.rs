@@ -10,7 +10,7 @@ use crate::loss::esr::{self, End};
 use crate::model::{Prepared, Solved};
 use crate::parts::capacitor::Bank;
 use crate::printable::printable;
-use crate::report::number::quantity;
+use crate::report::number::{Form, quantity, show};
 use crate::sheet::{CapacitorSheet, Datum, DiodeSheet, InductorSheet, MosfetSheet};
 use crate::stage::{Circuit, Placed, RectifierSheet, StageSheet, SwitchedSheet};
 use crate::units::Dimension as D;
@@ -99,18 +99,21 @@ impl Checker<'_> {
 
     fn junction(&mut self, slot: Slot, solved: &Solved, key: &str, limit: Option<&Datum>) {
         let (Some(t), Some(limit)) = (solved.temperatures[slot.index()], limit) else { return };
+        if solved.held[slot.index()] {
+            return;
+        }
         let margin = limit.value - t;
         if margin < 0.0 {
             let text = format!(
                 "{} is above {key} {}",
-                quantity(t, D::Temperature),
+                show(t, Form::Result(D::Temperature)),
                 quantity(limit.value, D::Temperature)
             );
             self.findings.push(Finding::new(Severity::Critical, "junction_rating", slot, text));
         } else if margin < self.derating.junction_margin {
             let text = format!(
                 "{} leaves {margin:.1} K to {key} {}, less than {:.0} K",
-                quantity(t, D::Temperature),
+                show(t, Form::Result(D::Temperature)),
                 quantity(limit.value, D::Temperature),
                 self.derating.junction_margin
             );
@@ -141,16 +144,17 @@ pub fn check(sheet: &StageSheet, stage: &Stage, budget: &Budget, solved: &Solved
     for slot in crate::ledger::ALL_SLOTS {
         if solved.temperatures[slot.index()].is_some_and(|t| t > BEYOND_BELIEF) {
             let text = "settles above 300 °C: no number of this point is a result".to_owned();
-            checker.findings.push(Finding::new(Severity::Critical, "beyond_belief", slot, text));
+            checker.findings.insert(0, Finding::new(Severity::Critical, "beyond_belief", slot, text));
         }
     }
     checker.findings.sort_by_key(|finding| std::cmp::Reverse(finding.severity));
     checker.findings
 }
 
-/// Smallest distance of any part with a temperature rating to that rating, K, and its slot.
+/// Smallest distance of any part with a temperature rating and a thermal resistance to that rating, K, and its slot.
 pub fn junction_margin(sheet: &StageSheet, solved: &Solved) -> Option<(Slot, f64)> {
-    let margins = temperature_limits(sheet).into_iter().filter_map(|(slot, limit)| {
+    let known = temperature_limits(sheet).into_iter().filter(|(slot, _)| !solved.held[slot.index()]);
+    let margins = known.filter_map(|(slot, limit)| {
         solved.temperatures[slot.index()].map(|temperature| (slot, limit - temperature))
     });
     margins.min_by(|a, b| a.1.total_cmp(&b.1))

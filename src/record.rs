@@ -6,7 +6,7 @@ use serde::ser::{SerializeMap, SerializeSeq, Serializer};
 use crate::budget::Limit;
 use crate::candidate::{self, Candidate};
 use crate::compare::Comparison;
-use crate::findings::{Finding, NotModelled};
+use crate::findings::{Finding, NotModelled, Severity};
 use crate::fitted::Kind;
 use crate::grid::OperatingPoint;
 use crate::infeasible::Infeasible;
@@ -34,6 +34,13 @@ pub struct Detail {
     pub loop_gain: f64,
     /// Findings of this point.
     pub findings: Vec<Finding>,
+}
+
+impl Detail {
+    /// True when a part is used beyond a rating.
+    pub fn exceeds_a_rating(&self) -> bool {
+        self.findings.iter().any(|finding| finding.severity == Severity::Critical)
+    }
 }
 
 impl<'a> Record<'a> {

@@ -13,7 +13,7 @@ use crate::sweep::{self, Watch};
 pub struct Judgement {
     /// The requirement.
     pub requirement: Requirement,
-    /// True when it is met at every point asked for.
+    /// True when it is met at every point asked for, and there is one that can be judged.
     pub met: bool,
     /// The point that decides, with its value; a point that cannot be built decides at once.
     pub decisive: Option<(OperatingPoint, Result<f64, Infeasible>)>,
@@ -61,7 +61,8 @@ fn judge_one(candidate: &Candidate<'_>, requirement: &Requirement, watch: &Watch
         }
         Ok::<(), std::convert::Infallible>(())
     });
-    let met = taken == Ok(true) && decisive.as_ref().is_none_or(|(spare, ..)| *spare >= 0.0);
+    // what cannot be judged is not met
+    let met = taken == Ok(true) && decisive.as_ref().is_some_and(|(spare, ..)| *spare >= 0.0);
     Judgement {
         requirement: *requirement,
         met,

@@ -1,5 +1,6 @@
 //! Review: everything about a budget in one document, for the design review.
 
+use std::cell::OnceCell;
 use std::io::{self, Write};
 
 use crate::answer::Answer;
@@ -25,19 +26,25 @@ pub struct Request {
 
 /// The whole budget for a design review.
 pub fn answer<'a>(budget: &'a Budget, request: &'a Request, watch: &'a Watch) -> impl Answer + 'a {
-    Question { budget, request, watch }
+    Question { budget, request, watch, met: OnceCell::new() }
 }
 
 struct Question<'a> {
     budget: &'a Budget,
     request: &'a Request,
     watch: &'a Watch,
+    met: OnceCell<bool>,
 }
 
 impl Question<'_> {
+    /// Compares, remembers whether the requirements are met, and hands the comparison on.
     fn with<T>(&self, render: impl FnOnce(&Comparison<'_>) -> T) -> T {
         let candidates = Candidate::all(self.budget);
-        render(&Comparison::of(self.budget, &candidates, self.watch))
+        let comparison = Comparison::of(self.budget, &candidates, self.watch);
+        let named = self.request.stage.as_ref();
+        let stage = named.and_then(|name| candidates.iter().position(|candidate| candidate.name() == name));
+        self.met.get_or_init(|| comparison.requirements_met(stage));
+        render(&comparison)
     }
 }
 
@@ -65,10 +72,9 @@ impl Answer for Question<'_> {
     }
 
     fn met(&self) -> bool {
-        self.with(|comparison| {
-            let named = self.request.stage.as_ref();
-            let stage = named.and_then(|name| comparison.candidates.iter().position(|c| c.name() == name));
-            comparison.requirements_met(stage)
-        })
+        if self.met.get().is_none() {
+            self.with(|_| ());
+        }
+        self.met.get().copied().unwrap_or_default()
     }
 }

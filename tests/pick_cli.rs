@@ -106,7 +106,7 @@ fn import_writes_all_or_nothing() {
     assert!(here(&["check", "mine.yaml"]).status.success());
     let row = table.lines().nth(1).expect("a row");
     write("mosfets.csv", &format!("{table}{}\n", row.replace("my-mosfet", "bad").replace(",42,", ",42 V,")));
-    let before = std::fs::read(folder.path().join("mine.yaml")).expect("there");
+    let before = lossbook::files::read_text(&folder.path().join("mine.yaml")).expect("there");
     let output = here(&["import", "mosfets.csv", "-o", "mine.yaml"]);
     assert_eq!(output.status.code(), Some(2));
     assert!(
@@ -114,7 +114,7 @@ fn import_writes_all_or_nothing() {
         "{}",
         text(&output.stderr)
     );
-    assert_eq!(std::fs::read(folder.path().join("mine.yaml")).expect("there"), before);
+    assert_eq!(lossbook::files::read_text(&folder.path().join("mine.yaml")).expect("there"), before);
     assert_eq!(here(&["import", "mosfets.csv", "-o", "mine.yaml", "--skip-bad"]).status.code(), Some(0));
     write("typed.yaml", "mosfets: {}\n");
     let output = here(&["import", "mosfets.csv", "-o", "typed.yaml", "--skip-bad"]);

@@ -19,12 +19,17 @@ use super::{Exit, Failure, desk};
 Examples:
   lossbook compare rail.yaml
   lossbook compare rail.yaml --stage synchronous   exit code 1 when this one misses a requirement
+  lossbook compare rail.yaml --plot
   lossbook compare rail.yaml --format markdown -o rail.md")]
 pub(crate) struct Options {
     #[command(flatten)]
     subject: Subject,
     #[command(flatten)]
     values: Values,
+
+    /// Draw efficiency against load; in text when the terminal has 72 columns or more.
+    #[arg(long)]
+    plot: bool,
 
     #[command(flatten)]
     writing: Writing,
@@ -34,7 +39,7 @@ impl Options {
     pub(crate) fn run(&self, common: &Common) -> Result<Exit, Failure> {
         let mut budget = self.subject.load()?;
         self.values.apply(&mut budget);
-        let request = Request { stage: self.subject.stage.clone() };
+        let request = Request { stage: self.subject.stage.clone(), plot: self.plot };
         let watch = Arc::new(Watch::default());
         desk::give(&compare::answer(&budget, &request, &watch), &self.writing, common, &watch)
     }

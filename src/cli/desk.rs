@@ -5,7 +5,7 @@ use std::path::Path;
 use std::sync::Arc;
 
 use lossbook::answer::Answer;
-use lossbook::files::{Draft, FileFault};
+use lossbook::files::{self, Draft, FileFault};
 use lossbook::render::{Html, Markdown, Render, Text};
 use lossbook::sweep::Watch;
 
@@ -39,7 +39,16 @@ pub(crate) fn give(
         #[cfg(feature = "xlsx")]
         Format::Xlsx => Ok(()),
     })?;
-    Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+    Ok(exit(answer))
+}
+
+/// The exit code of an answer; a missed requirement is said, not only coded.
+fn exit(answer: &dyn Answer) -> Exit {
+    if answer.met() {
+        return Exit::Done;
+    }
+    terminal::say("a requirement is missed, hence exit code 1; `lossbook compare` lists them one by one");
+    Exit::Missed
 }
 
 /// Writes a spreadsheet to a file.
@@ -58,7 +67,7 @@ fn spreadsheet(answer: &dyn Answer, file: Option<&Path>) -> Result<Exit, Failure
         Some(Err(fault)) => Err(Failure::asked("the spreadsheet cannot be made", fault)),
         Some(Ok(bytes)) => {
             to(file, |out| out.write_all(&bytes))?;
-            Ok(if answer.met() { Exit::Done } else { Exit::Missed })
+            Ok(exit(answer))
         }
     }
 }
@@ -92,6 +101,7 @@ pub(crate) fn to(
         return write(&mut out).and_then(|()| out.flush()).map_err(Failure::of_stdout);
     };
     let failed = |fault: FileFault| Failure::Output { file: Some(path.to_path_buf()), fault };
+    files::refuse_input(path).map_err(failed)?;
     let mut draft = Draft::begin(path).map_err(failed)?;
     interrupt::watch_draft(draft.temporary());
     match write(&mut draft) {

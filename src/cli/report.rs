@@ -9,7 +9,7 @@ use lossbook::budget::Budget;
 use lossbook::report::Document;
 use lossbook::review::{self, Request};
 use lossbook::sweep::Watch;
-use lossbook::{energy, headroom, sensitivity, spread};
+use lossbook::{energy, headroom, pick, sensitivity, spread};
 
 use super::load::{Subject, Values};
 use super::options::{Common, Format, Writing};
@@ -112,7 +112,8 @@ impl Options {
         let request = Request {
             stage: self.subject.stage.clone(),
             date: self.date.clone(),
-            shortlist: None,
+            shortlist: pick::Question::search(&budget, pick::Request::default(), &watch)
+                .map(|question| question.document()),
             further: self.further(&budget, &watch)?,
         };
         let format = match self.format {

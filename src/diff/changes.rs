@@ -290,22 +290,30 @@ fn board(comparer: &mut Comparer<'_>) {
             all.into_iter().filter(|value| value.slot == Slot::Board).collect()
         };
         let (before, after) = (of(a), of(b));
-        let list = |these: &[values::Value], others: &[values::Value]| -> String {
-            let differs = |value: &&values::Value| {
-                others
-                    .iter()
-                    .find(|other| other.path == value.path)
-                    .is_none_or(|other| other.datum.value != value.datum.value)
-            };
-            let words = these.iter().filter(differs).map(|value| {
+        let differs = |value: &values::Value, others: &[values::Value]| {
+            let other = others.iter().find(|other| other.path == value.path);
+            other.is_none_or(|other| other.datum.value != value.datum.value)
+        };
+        let mut paths: Vec<&str> =
+            before.iter().filter(|value| differs(value, &after)).map(|value| value.path.as_str()).collect();
+        paths.extend(
+            after.iter().filter(|v| !before.iter().any(|b| b.path == v.path)).map(|v| v.path.as_str()),
+        );
+        let list = |these: &[values::Value]| -> String {
+            let shown = |value: &values::Value| {
+                let number = set(value.datum.value, value.dimension);
                 let key = value.path.split_once('.').map_or(value.path.as_str(), |(_, key)| key);
-                format!("{key} {}", set(value.datum.value, value.dimension))
-            });
-            let words: Vec<String> = words.collect();
+                if paths.len() == 1 { number } else { format!("{key} {number}") }
+            };
+            let words: Vec<String> =
+                these.iter().filter(|value| paths.contains(&value.path.as_str())).map(shown).collect();
             if words.is_empty() { "not stated".into() } else { words.join(", ") }
         };
-        let words = [list(&before, &after), list(&after, &before)];
-        comparer.add("board", words, |moved, other| moved.board = other.board.clone());
+        let words = [list(&before), list(&after)];
+        let what = if let [only] = paths.as_slice() { *only } else { "board" };
+        if !paths.is_empty() {
+            comparer.add(what, words, |moved, other| moved.board = other.board.clone());
+        }
     }
     if a.coupling != b.coupling {
         let words = [a, b].map(|setup| match setup.coupling.len() {

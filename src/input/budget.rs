@@ -182,6 +182,10 @@ impl<'a, 'n> BudgetReader<'a, 'n> {
             let named =
                 self.fields.peek("headline").is_none_or(|node| node.get("switching_frequency").is_some());
             checks::count(&stages, grid, self.notes);
+            let chosen = headline.as_ref().map_or(0.0, |headline| headline.switching_frequency);
+            if chosen > 0.0 {
+                checks::headline_frequency(&stages, grid, chosen, self.notes);
+            }
             checks::frequency(&stages, grid, named, self.notes)
         });
         let requirements =

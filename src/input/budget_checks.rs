@@ -10,6 +10,7 @@ use crate::budget::Coupling;
 use crate::grid::{AxisName, Grid};
 use crate::ledger::Slot;
 use crate::stage::StageSheet;
+use crate::units::Dimension;
 
 /// The headline's frequency when it names none: every switched stage needs one, and with several to choose from the
 /// headline must choose. 0 when no stage takes it from the grid.
@@ -41,6 +42,38 @@ pub(crate) fn frequency(stages: &[StageSheet], grid: &Grid, named: bool, notes: 
     match own {
         Some(values) if takes_grid => values.at(0),
         _ => 0.0,
+    }
+}
+
+/// A headline's frequency must be one that each stage with a choice runs at, and at least one stage must run at it.
+pub(crate) fn headline_frequency(stages: &[StageSheet], grid: &Grid, headline: f64, notes: &mut Notes) {
+    let own = grid.axis(AxisName::SwitchingFrequency);
+    let place = Trail::TOP.key("headline");
+    let place = place.key(AxisName::SwitchingFrequency.name());
+    let choices = |stage: &StageSheet| {
+        let values = stage.switching_frequency.as_ref().or(own);
+        values.map(|values| values.values().take(32).collect::<Vec<_>>()).unwrap_or_default()
+    };
+    let switched: Vec<&StageSheet> = stages.iter().filter(|stage| !stage.is_linear()).collect();
+    let runs = |stage: &&&StageSheet| choices(stage).contains(&headline);
+    for stage in
+        switched.iter().filter(|stage| stage.switching_frequency.is_some() && choices(stage).len() > 1)
+    {
+        if !runs(&stage) {
+            let values: Vec<String> =
+                choices(stage).iter().map(|f| crate::report::words::set(*f, Dimension::Frequency)).collect();
+            let blame = Blame::new(
+                format!("stage `{}` does not run at this frequency", stage.name),
+                format!("name one of its own: {}", values.join(", ")),
+            );
+            notes.key_error(&place, blame);
+        }
+    }
+    let all_own = switched.iter().all(|stage| stage.switching_frequency.is_some());
+    if all_own && !switched.is_empty() && !switched.iter().any(|stage| runs(&stage)) && notes.errors() == 0 {
+        let blame =
+            Blame::new("no stage runs at this frequency", "take it out, or name one that a stage has");
+        notes.key_error(&place, blame);
     }
 }
 

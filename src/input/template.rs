@@ -124,7 +124,9 @@ mod tests {
         let (budget, warnings) = load_budget(&folder.path().join("budget.yaml"))
             .unwrap_or_else(|errors| panic!("{}", errors.render(false)));
         assert_eq!(budget.stages.len(), 3);
-        assert!(warnings.is_empty(), "{warnings:#?}");
+        // a starter keeps to one temperature of v_f, and is told so
+        let doubts = warnings.iter().filter(|warning| !warning.path.ends_with("v_f"));
+        assert_eq!(doubts.count(), 0, "{warnings:#?}");
     }
 
     #[test]

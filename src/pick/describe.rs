@@ -4,12 +4,14 @@ use crate::candidate::Candidate;
 use crate::findings::Severity;
 use crate::grid::OperatingPoint;
 use crate::ledger::ALL_MECHANISMS;
+use crate::limits::Limits;
 use crate::report::{needs, words};
 use crate::requirements;
 use crate::sweep::{self, Watch};
 
 use super::entry::{Counts, Disqualified, Entry, Gap, Outcome, ordered};
 use super::judge;
+use super::points::holds;
 use super::search::{FaultCount, Found, Plan};
 use super::space::Space;
 use super::tops::Standing;
@@ -137,6 +139,13 @@ fn detail(space: &Space<'_>, fault: &FaultCount, point: OperatingPoint) -> Optio
     let candidate = Candidate::new(space.budget, &sheet);
     match candidate.evaluate(point) {
         Err(reason) => Some(reason.to_string()),
+        Ok(solved) if fault.fault.kind == "requirement_missed" => {
+            let margin = Limits::of(&sheet).margin(&solved);
+            let required = &space.points_of(&space.digits(fault.first)).required;
+            let mut here = required.iter().filter(|(place, _)| *place == fault.fault.point);
+            let missed = here.find(|(_, requirement)| !holds(&requirement.limit, &solved, margin));
+            missed.map(|(_, requirement)| needs::sentence(&requirement.limit, &requirement.at))
+        }
         Ok(solved) => {
             let findings = candidate.findings(&solved);
             let critical = findings.into_iter().filter(|finding| finding.severity == Severity::Critical);

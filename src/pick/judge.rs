@@ -73,8 +73,8 @@ pub fn judge(
                 return Judgement::Abandoned;
             }
         }
-        for (_, limit) in points.required.iter().filter(|(required, _)| *required == place) {
-            if !holds(limit, &here, limits.margin(&here)) {
+        for (_, requirement) in points.required.iter().filter(|(required, _)| *required == place) {
+            if !holds(&requirement.limit, &here, limits.margin(&here)) {
                 return fault(None, "requirement_missed");
             }
         }

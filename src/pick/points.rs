@@ -2,7 +2,7 @@
 
 use std::collections::HashMap;
 
-use crate::budget::Limit;
+use crate::budget::{Limit, Requirement};
 use crate::candidate::Candidate;
 use crate::grid::{ALL_AXES, OperatingPoint};
 use crate::model::Solved;
@@ -17,7 +17,7 @@ pub struct Points {
     /// Weight of each of the leading points in the value.
     pub weights: Vec<f64>,
     /// Requirements that disqualify: place of the point and what must hold there.
-    pub required: Vec<(usize, Limit)>,
+    pub required: Vec<(usize, Requirement)>,
     /// Place of each point by the bits of its coordinates.
     places: HashMap<[u64; 4], usize>,
 }
@@ -58,7 +58,7 @@ impl Points {
             for requirement in &candidate.budget.requirements {
                 for point in candidate.grid_at(requirement.at).points() {
                     let place = points.add(point);
-                    points.required.push((place, requirement.limit));
+                    points.required.push((place, *requirement));
                 }
             }
         }

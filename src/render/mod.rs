@@ -1,5 +1,6 @@
 //! Documents into formats: one trait, one small file a format.
 
+mod braille;
 mod html;
 mod markdown;
 mod panels;

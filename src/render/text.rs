@@ -8,10 +8,13 @@ use comfy_table::{
 };
 use unicode_width::UnicodeWidthStr;
 
-use super::Render;
 use super::panels::{self, GAP, Span};
+use super::{Render, braille};
 use crate::printable::printable;
-use crate::report::{Alignment, Block, Cell, Document, Equation, Layout, Printed, RowKind, Severity, Table};
+use crate::report::figure::Plot;
+use crate::report::{
+    Alignment, Block, Cell, Document, Equation, Figure, Layout, Printed, RowKind, Severity, Table,
+};
 
 /// Text of a width, with colour when told.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -67,7 +70,23 @@ impl Text {
             }
             Block::Table(table) => self.table(text, table),
             Block::Equation(step) => self.equation(text, step),
-            Block::Figure(figure) => self.wrap(text, "figure: ", &printable(&figure.summary())),
+            Block::Figure(figure) => self.figure(text, figure),
+        }
+    }
+
+    /// Lines drawn with dots where they fit, else the figure in words.
+    fn figure(&self, text: &mut String, figure: &Figure) {
+        let drawn = match &figure.plot {
+            Plot::Curves(curves) => braille::lines(curves, self.width),
+            _ => None,
+        };
+        let Some(lines) = drawn else {
+            return self.wrap(text, "figure: ", &printable(&figure.summary()));
+        };
+        self.wrap(text, "", &printable(&figure.title));
+        for line in lines {
+            text.push_str(line.trim_end_matches(['\u{2800}', ' ']));
+            text.push('\n');
         }
     }
 

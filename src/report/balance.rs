@@ -1,8 +1,9 @@
 //! The balance of booked watts: input power equals output power plus every part's loss.
 
 use crate::compare::Comparison;
+use crate::findings::Severity;
 use crate::ledger::ALL_SLOTS;
-use crate::report::{Cell, Column, Table};
+use crate::report::{Cell, Column, Table, words};
 
 /// One column a stage: output power, loss by slot, and their sum, the input power.
 pub(super) fn table(comparison: &Comparison<'_>) -> Table {
@@ -28,7 +29,16 @@ pub(super) fn table(comparison: &Comparison<'_>) -> Table {
             }));
         }
     }
-    table.subtotal(row("= loss", &|place| Some(solved(place)?.loss())));
+    let mut losses = row("= loss", &|place| Some(solved(place)?.loss()));
+    for (cell, candidate) in losses.iter_mut().skip(1).zip(comparison.candidates) {
+        let missing = candidate.not_modelled.len();
+        if missing > 0 && *cell != Cell::Blank {
+            let remark =
+                format!("{}: {}", candidate.name(), words::count(missing, "mechanism") + " not modelled");
+            *cell = cell.clone().flagged(Severity::Note, remark);
+        }
+    }
+    table.subtotal(losses);
     table.row(row("delivered to the load", &|place| Some(solved(place)?.output_power())));
     table.total(row("= drawn from the input", &|place| Some(solved(place)?.input_power())));
     table

@@ -59,6 +59,6 @@ mod tests {
         assert_eq!(one_sided(1.0, 2.0), "█████");
         let plain = |value, half| error_bar(value, half, 2.0).replace(SPACE, " ");
         assert_eq!(plain(0.0, 0.6), "     ──●──     ");
-        assert_eq!(plain(1.0, 0.3), "       │  ─●─  ");
+        assert_eq!(plain(1.0, 0.3), "       │ ──●─  ");
     }
 }

@@ -7,11 +7,11 @@ use crate::ledger::{ALL_ACCOUNTS, ALL_FAMILIES, ALL_SLOTS, Account, Family, Mech
 use crate::model::Solved;
 use crate::ratings;
 use crate::record::{Detail, Record};
-use crate::report::{Cell, Column, Document, Table, balance, caption, needs, words};
+use crate::report::{Block, Cell, Column, Document, Table, balance, caption, figures, needs, words};
 use crate::units::Dimension as D;
 
-/// The whole answer: rail, verdict, balance, stages side by side, curves, crossovers, requirements.
-pub fn document(comparison: &Comparison<'_>) -> Document {
+/// The whole answer: rail, verdict, balance, stages side by side, curves (drawn when told), crossovers, requirements.
+pub fn document(comparison: &Comparison<'_>, plot: bool) -> Document {
     let budget = comparison.budget;
     let mut document = Document::new(budget.name.clone());
     document.fact("rail", Cell::text(rail(comparison)));
@@ -41,6 +41,9 @@ pub fn document(comparison: &Comparison<'_>) -> Document {
     document.heading(2, "Temperatures");
     document.table(temperatures(comparison));
     document.heading(2, "Efficiency and loss over the load");
+    if plot {
+        document.blocks.push(Block::Figure(figures::efficiency_at_headline(comparison)));
+    }
     document.table(curves(comparison));
     document.heading(2, "Crossovers");
     crossovers(comparison, &mut document);
@@ -193,17 +196,22 @@ pub(super) fn by_mechanism(comparison: &Comparison<'_>) -> Table {
         for mechanism in &mechanisms {
             table.row(row(comparison, &mechanism.words(), |record, detail| {
                 let candidate = record.candidate;
-                let lacking = candidate.not_modelled.iter().find(|missing| missing.mechanism == *mechanism);
-                match (books(candidate, |account| account.mechanism() == *mechanism), lacking) {
-                    (true, None) => {
-                        watts_and_share(detail.solved.ledger.mechanism(*mechanism), &detail.solved)
+                let lacking: Vec<String> = candidate
+                    .not_modelled
+                    .iter()
+                    .filter(|missing| missing.mechanism == *mechanism)
+                    .map(ToString::to_string)
+                    .collect();
+                let booked = books(candidate, |account| account.mechanism() == *mechanism);
+                let watts = || watts_and_share(detail.solved.ledger.mechanism(*mechanism), &detail.solved);
+                match (booked, lacking.is_empty()) {
+                    (true, true) => watts(),
+                    (true, false) => {
+                        let remark = format!("in part not modelled: {}", lacking.join("; "));
+                        watts().flagged(Severity::Note, remark)
                     }
-                    (true, Some(missing)) => {
-                        watts_and_share(detail.solved.ledger.mechanism(*mechanism), &detail.solved)
-                            .flagged(Severity::Note, format!("in part not modelled: {missing}"))
-                    }
-                    (false, Some(missing)) => Cell::missing(format!("not modelled: {missing}")),
-                    (false, None) => Cell::Blank,
+                    (false, false) => Cell::missing(format!("not modelled: {}", lacking.join("; "))),
+                    (false, true) => Cell::Blank,
                 }
             }));
         }
@@ -326,7 +334,8 @@ pub(super) fn temperatures(comparison: &Comparison<'_>) -> Table {
         for slot in ALL_SLOTS {
             let Some(temperature) = detail.solved.temperatures[slot.index()] else { continue };
             let limit = limits.iter().find(|(limited, _)| *limited == slot).map(|(_, limit)| *limit);
-            let margin = limit.map(|limit| limit - temperature);
+            let held = detail.solved.held[slot.index()];
+            let margin = limit.filter(|_| !held).map(|limit| limit - temperature);
             let cell = |value: Option<f64>, dimension| {
                 value.map_or(Cell::missing("no rating given"), |value| Cell::quantity(value, dimension))
             };
@@ -334,9 +343,17 @@ pub(super) fn temperatures(comparison: &Comparison<'_>) -> Table {
                 Cell::text(record.candidate.name()),
                 Cell::text(slot.words()),
                 Cell::text(record.candidate.part_names[slot.index()].clone().unwrap_or_default()),
-                Cell::temperature(temperature),
+                if held {
+                    Cell::temperature(temperature).flagged(Severity::Note, "held at ambient: needs r_th_ja")
+                } else {
+                    Cell::temperature(temperature)
+                },
                 cell(limit, D::Temperature),
-                flagged_margin(cell(margin, D::TemperatureDifference), margin, comparison),
+                if held || temperature > ratings::BEYOND_BELIEF {
+                    Cell::missing("")
+                } else {
+                    flagged_margin(cell(margin, D::TemperatureDifference), margin, comparison)
+                },
             ]);
         }
     }
@@ -356,19 +373,25 @@ fn flagged_margin(cell: Cell, margin: Option<f64>, comparison: &Comparison<'_>) 
 fn curves(comparison: &Comparison<'_>) -> Table {
     let mut columns = vec![Column::quantity("load")];
     for candidate in comparison.candidates {
-        columns.push(Column::quantity("efficiency").under(candidate.name()));
-        columns.push(Column::quantity("loss").under(candidate.name()));
+        let name = match candidate.not_modelled.len() {
+            0 => candidate.name().to_owned(),
+            missing => format!("{} ({missing} not modelled)", candidate.name()),
+        };
+        columns.push(Column::quantity("efficiency").under(&name));
+        columns.push(Column::quantity("loss").under(&name));
     }
     let headline = &comparison.budget.headline;
     let fixed = format!(
-        "V_IN {}, T_A {}",
+        "V_IN {}, T_A {}{}",
         words::set(headline.input_voltage, D::Voltage),
-        words::set(headline.ambient, D::Temperature)
+        words::set(headline.ambient, D::Temperature),
+        frequencies(comparison)
     );
     let mut table = Table::new(fixed, columns);
     for (index, load) in comparison.loads.iter().enumerate() {
         let mut cells = vec![Cell::setting(*load, D::Current)];
-        let losses = comparison.curves.iter().filter_map(|curve| curve.get(index)?.outcome.as_ref().ok());
+        let details = comparison.curves.iter().filter_map(|curve| curve.get(index)?.outcome.as_ref().ok());
+        let losses = details.filter(|detail| !detail.exceeds_a_rating());
         let least = losses.map(|detail| detail.solved.loss()).fold(f64::INFINITY, f64::min);
         for curve in &comparison.curves {
             match curve.get(index).map(|record| &record.outcome) {
@@ -385,7 +408,9 @@ fn curves(comparison: &Comparison<'_>) -> Table {
                         detail.solved.efficiency().map_or(Cell::missing("no load"), Cell::efficiency);
                     cells.push(flag(efficiency));
                     let loss = Cell::watts(detail.solved.loss());
-                    let best = detail.solved.loss() <= least && comparison.candidates.len() > 1;
+                    let best = critical.is_none()
+                        && detail.solved.loss() <= least
+                        && comparison.candidates.len() > 1;
                     cells.push(if best { Cell::text(format!("{} <", loss.shown())) } else { loss });
                 }
                 Some(Err(reason)) => {
@@ -398,6 +423,23 @@ fn curves(comparison: &Comparison<'_>) -> Table {
         table.row(cells);
     }
     table
+}
+
+/// ", f_SW 300 kHz", or each stage's own when they differ; nothing without switched stages.
+fn frequencies(comparison: &Comparison<'_>) -> String {
+    let switched = comparison.candidates.iter().filter(|candidate| !candidate.sheet.is_linear());
+    let own: Vec<(&str, f64)> =
+        switched.map(|candidate| (candidate.name(), candidate.headline().switching_frequency)).collect();
+    match own.as_slice() {
+        [] => String::new(),
+        [(_, first), rest @ ..] if rest.iter().all(|(_, frequency)| frequency == first) => {
+            format!(", f_SW {}", words::set(*first, D::Frequency))
+        }
+        _ => {
+            let each = own.iter().map(|(name, f)| format!("{name} {}", words::set(*f, D::Frequency)));
+            format!(", f_SW {}", each.collect::<Vec<_>>().join(", "))
+        }
+    }
 }
 
 fn kind_words(finding: &Finding) -> String {
@@ -415,7 +457,11 @@ pub(super) fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
         Column::text("less loss below"),
         Column::text("less loss above"),
     ];
-    let fixed = format!("T_A {}", words::set(comparison.budget.headline.ambient, D::Temperature));
+    let fixed = format!(
+        "T_A {}{}",
+        words::set(comparison.budget.headline.ambient, D::Temperature),
+        frequencies(comparison)
+    );
     let mut table = Table::new(fixed, columns).with_keys(2);
     let mut sorted: Vec<_> = comparison.crossovers.iter().collect();
     sorted.sort_by(|a, b| a.input_voltage.total_cmp(&b.input_voltage).then(a.load.total_cmp(&b.load)));

@@ -106,6 +106,8 @@ fn one(pair: &Pair<'_>, document: &mut Document) {
         return;
     };
     document.heading(3, format!("{}: at the headline", name(pair)));
+    document.fact("first", Cell::text(words::point(&pair.before.point)));
+    document.fact("second", Cell::text(words::point(&pair.after.point)));
     document.table(headline(pair, solved));
     document.heading(3, format!("{}: entry by entry", name(pair)));
     document.table(entries(pair, solved));
@@ -146,12 +148,6 @@ fn headline(pair: &Pair<'_>, [before, after]: [&Solved; 2]) -> Table {
         Column::quantity("change"),
     ];
     let mut table = Table::new("", columns);
-    table.row(vec![
-        Cell::text("at"),
-        Cell::text(words::point(&pair.before.point)),
-        Cell::text(words::point(&pair.after.point)),
-        Cell::Blank,
-    ]);
     if let (Some(a), Some(b)) = (before.efficiency(), after.efficiency()) {
         let change = Cell::text(format!("{} points", points(b - a)));
         table.row(vec![Cell::text("efficiency"), Cell::efficiency(a), Cell::efficiency(b), change]);

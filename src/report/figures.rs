@@ -31,7 +31,7 @@ fn fine_loads(comparison: &Comparison<'_>) -> Vec<f64> {
     let Some(axis) = comparison.budget.grid.axis(AxisName::Load) else { return Vec::new() };
     let positive = || axis.values().filter(|load| *load > 0.0);
     let (low, high) = (positive().fold(f64::INFINITY, f64::min), positive().fold(0.0, f64::max));
-    if !(high > low) {
+    if high <= low {
         return positive().take(1).collect();
     }
     Axis::Range { from: low, to: high, points: POINTS, log: true }.values().collect()
@@ -51,26 +51,51 @@ fn solve(candidate: &Candidate<'_>, point: OperatingPoint) -> Option<Solved> {
     candidate.evaluate(point).ok()
 }
 
+/// One line a stage and input voltage.
+fn lines(comparison: &Comparison<'_>, volts: impl Fn(&Candidate<'_>) -> Vec<f64> + Sync) -> Vec<Series> {
+    let loads = fine_loads(comparison);
+    let numbered: Vec<_> = comparison.candidates.iter().enumerate().collect();
+    let lines: Vec<Vec<Series>> = sweep::map(&numbered, |(group, candidate)| {
+        let all = volts(candidate).into_iter().enumerate();
+        all.map(|(stroke, v_in)| {
+            let base = candidate.headline().with(AxisName::InputVoltage, v_in);
+            let point = |load: &f64| {
+                let solved = solve(candidate, base.with(AxisName::Load, *load));
+                (*load, solved.and_then(|solved| solved.efficiency()))
+            };
+            let label = format!("{}, {}", candidate.name(), words::set(v_in, D::Voltage));
+            Series { label, stroke, group: *group, points: loads.iter().map(point).collect() }
+        })
+        .collect()
+    });
+    lines.into_iter().flatten().collect()
+}
+
+/// Efficiency against load at the headline's input voltage, one line a stage: what fits a terminal.
+pub(super) fn efficiency_at_headline(comparison: &Comparison<'_>) -> Figure {
+    let v_in = comparison.budget.headline.input_voltage;
+    let mut series = lines(comparison, |_| vec![v_in]);
+    for (line, candidate) in series.iter_mut().zip(comparison.candidates) {
+        line.stroke = line.group;
+        line.label = candidate.name().to_owned();
+    }
+    let fixed = format!("V_IN {}, {}", words::set(v_in, D::Voltage), at(comparison));
+    Figure {
+        title: "Efficiency against load".into(),
+        caption: caption::budget(comparison.budget, &fixed),
+        description: in_words(&series),
+        plot: Plot::Curves(Curves {
+            x: Scale { title: "load, I_OUT".into(), form: Form::Setting(D::Current), log: true },
+            y: Scale { title: "efficiency".into(), form: Form::Efficiency, log: false },
+            series,
+            marks: crossovers(comparison),
+        }),
+    }
+}
+
 /// Efficiency against load, one line a stage and input voltage: on a logarithmic and on a linear axis.
 pub(super) fn efficiency(comparison: &Comparison<'_>) -> Vec<Figure> {
-    let loads = fine_loads(comparison);
-    let lines: Vec<Vec<Series>> = sweep::map(comparison.candidates, |candidate| {
-        let group = comparison.candidates.iter().position(|c| c.name() == candidate.name()).unwrap_or(0);
-        voltages(candidate)
-            .into_iter()
-            .enumerate()
-            .map(|(stroke, v_in)| {
-                let base = candidate.headline().with(AxisName::InputVoltage, v_in);
-                let point = |load: &f64| {
-                    let solved = solve(candidate, base.with(AxisName::Load, *load));
-                    (*load, solved.and_then(|solved| solved.efficiency()))
-                };
-                let label = format!("{}, {}", candidate.name(), words::set(v_in, D::Voltage));
-                Series { label, stroke, group, points: loads.iter().map(point).collect() }
-            })
-            .collect()
-    });
-    let series: Vec<Series> = lines.into_iter().flatten().collect();
+    let series = lines(comparison, voltages);
     let marks = crossovers(comparison);
     let fixed =
         format!("{}; dashes tell input voltages apart; upright lines mark crossovers", at(comparison));
@@ -98,7 +123,7 @@ fn in_words(series: &[Series]) -> String {
     let one = |line: &Series| {
         let known = || line.points.iter().filter_map(|(load, value)| Some((*load, (*value)?)));
         let best = known().max_by(|a, b| a.1.total_cmp(&b.1));
-        let (Some(best), Some(last)) = (best, known().last()) else {
+        let (Some(best), Some(last)) = (best, known().next_back()) else {
             return format!("{}: cannot run", line.label);
         };
         format!(

@@ -53,7 +53,14 @@ pub fn sentence(limit: &Limit, at: &PartialPoint) -> String {
 fn verdict(judgement: &Judgement) -> Cell {
     let verdict = if judgement.met { "met" } else { "missed" };
     let (value, at) = match &judgement.decisive {
-        None => return Cell::text(format!("{verdict}: nothing to judge")),
+        None => {
+            let why = match judgement.requirement.limit {
+                Limit::EfficiencyMin(_) => "no point with a load",
+                Limit::JunctionMarginMin(_) => "no part with a temperature rating and a thermal resistance",
+                Limit::LossMax(_) => "no such point",
+            };
+            return Cell::text(format!("cannot be judged: {why}")).flagged(Severity::Warning, "");
+        }
         Some((point, value)) => (value, words::point(point)),
     };
     let text = match value {

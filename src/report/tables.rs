@@ -109,14 +109,19 @@ fn range(values: &[f64], dimension: D) -> String {
 
 /// Loads down, input voltages across: efficiency and loss.
 fn across_voltages(candidate: &Candidate<'_>, request: &Request, at: PartialPoint) -> Table {
-    let voltages = chosen(&values(candidate, AxisName::InputVoltage));
+    let all = values(candidate, AxisName::InputVoltage);
+    let voltages = chosen(&all);
     let mut columns = vec![Column::quantity("load")];
     for v_in in &voltages {
         let over = format!("V_IN {}", words::set(*v_in, D::Voltage));
         columns.push(Column::quantity("efficiency").under(&over));
         columns.push(Column::quantity("loss").under(&over));
     }
-    let mut table = Table::new(caption::stage(candidate, &fixed(candidate, at)), columns);
+    let mut what = fixed(candidate, at);
+    if voltages.len() < all.len() {
+        what.push_str(&format!(" ({} of {} input voltages; CSV has all)", voltages.len(), all.len()));
+    }
+    let mut table = Table::new(caption::stage(candidate, &what), columns);
     for load in rows(candidate, request) {
         let mut cells = vec![load_cell(candidate, request, load)];
         for v_in in &voltages {
@@ -236,32 +241,42 @@ fn split_columns(candidate: &Candidate<'_>, split: Option<Split>) -> (Vec<String
     (titles, watts)
 }
 
+/// Mean active efficiency by input voltage and ambient at one frequency; 0 where the stage has none.
+fn mean_active(candidate: &Candidate<'_>, what: &str, rated: f64, frequency: f64) -> Table {
+    let columns =
+        vec![Column::quantity("V_IN"), Column::quantity("T_A"), Column::quantity("mean active efficiency")];
+    let own = (frequency > 0.0).then_some(frequency);
+    let what = match own {
+        Some(frequency) => format!("{what}, f_SW {}", words::set(frequency, D::Frequency)),
+        None => what.to_owned(),
+    };
+    let mut table = Table::new(caption::stage(candidate, &what), columns).with_keys(2);
+    for ambient in values(candidate, AxisName::Ambient) {
+        for v_in in chosen(&values(candidate, AxisName::InputVoltage)) {
+            let named = PartialPoint {
+                input_voltage: Some(v_in),
+                ambient: Some(ambient),
+                switching_frequency: own,
+                ..PartialPoint::default()
+            };
+            let mean = average::mean_active(candidate, candidate.at(named), rated);
+            table.row(vec![
+                Cell::setting(v_in, D::Voltage),
+                Cell::setting(ambient, D::Temperature),
+                mean.map_or_else(|reason| Cell::missing(reason.to_string()), Cell::efficiency),
+            ]);
+        }
+    }
+    table
+}
+
 /// Mean active efficiency by input voltage, and the energy-weighted efficiency of the profile under its own name.
 fn averages(candidate: &Candidate<'_>, document: &mut Document) {
     if let Some(rated) = candidate.budget.rated_load {
-        let columns = vec![
-            Column::quantity("V_IN"),
-            Column::quantity("T_A"),
-            Column::quantity("mean active efficiency"),
-        ];
         let what = format!("mean of 25, 50, 75 and 100 % of {}", words::set(rated, D::Current));
-        let mut table = Table::new(caption::stage(candidate, &what), columns).with_keys(2);
-        for ambient in values(candidate, AxisName::Ambient) {
-            for v_in in chosen(&values(candidate, AxisName::InputVoltage)) {
-                let named = PartialPoint {
-                    input_voltage: Some(v_in),
-                    ambient: Some(ambient),
-                    ..PartialPoint::default()
-                };
-                let mean = average::mean_active(candidate, candidate.at(named), rated);
-                table.row(vec![
-                    Cell::setting(v_in, D::Voltage),
-                    Cell::setting(ambient, D::Temperature),
-                    mean.map_or_else(|reason| Cell::missing(reason.to_string()), Cell::efficiency),
-                ]);
-            }
+        for frequency in values(candidate, AxisName::SwitchingFrequency) {
+            document.table(mean_active(candidate, &what, rated, frequency));
         }
-        document.table(table);
     }
     match average::over_profile(candidate, PartialPoint::default()) {
         None => {}
@@ -270,6 +285,8 @@ fn averages(candidate: &Candidate<'_>, document: &mut Document) {
         }
         Some(Ok(power)) => {
             let efficiency = power.efficiency().map_or(Cell::missing("no load"), Cell::efficiency);
+            let at = words::point(&candidate.headline());
+            document.fact("profile, unnamed coordinates", Cell::text(at));
             document.fact("energy-weighted efficiency over the profile", efficiency);
             document.fact("mean loss over the profile", Cell::watts(power.loss));
         }

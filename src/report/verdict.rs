@@ -1,6 +1,7 @@
 //! The verdict of a comparison in one line.
 
 use crate::compare::{Comparison, Verdict};
+use crate::findings::Severity;
 use crate::report::number::{Form, show};
 use crate::report::words;
 use crate::requirements;
@@ -12,7 +13,10 @@ pub fn sentence(comparison: &Comparison<'_>) -> String {
     let mut line = match &comparison.verdict {
         Verdict::NoneRuns => return "no stage can run at the headline".into(),
         Verdict::OnlyOne { stage } => format!("{} is the only stage that runs at the headline", name(*stage)),
-        Verdict::Leads { stage, next, lead, reason: (mechanism, more), spread } => {
+        Verdict::OnlySound { stage } => {
+            format!("{} is the only stage within its ratings at the headline", name(*stage))
+        }
+        Verdict::Leads { stage, next, lead, reason: (mechanism, more), spread, .. } => {
             let (lead_words, spread_words) = (watts(*lead), watts(*spread));
             if comparison.verdict.is_too_close() {
                 format!(
@@ -22,17 +26,19 @@ pub fn sentence(comparison: &Comparison<'_>) -> String {
                 )
             } else {
                 format!(
-                    "{} loses {lead_words} less than {} at the headline, most of it by {} ({} more in {})",
+                    "{} loses {lead_words} less than {} at the headline, mainly by {} ({} more in {}{})",
                     name(*stage),
                     name(*next),
                     mechanism.words(),
                     watts(*more),
-                    name(*next)
+                    name(*next),
+                    if more > lead { ", partly offset elsewhere" } else { "" }
                 )
             }
         }
     };
     if let Some(stage) = comparison.verdict.stage() {
+        line.push_str(&exceeded(comparison, stage));
         line.push_str(&enough_below(comparison));
         if !comparison.budget.requirements.is_empty() {
             let judgements = comparison.judgements.get(stage).map_or(&[][..], |judgements| judgements);
@@ -50,7 +56,8 @@ pub fn sentence(comparison: &Comparison<'_>) -> String {
                     .map(|(candidate, _)| candidate.name())
                     .collect();
                 if !meeting.is_empty() {
-                    line.push_str(&format!(", {} none", words::list(&meeting)));
+                    let verb = if meeting.len() == 1 { "misses" } else { "miss" };
+                    line.push_str(&format!(", {} {verb} none", words::list(&meeting)));
                 }
             }
         }
@@ -60,6 +67,21 @@ pub fn sentence(comparison: &Comparison<'_>) -> String {
         }
     }
     line
+}
+
+/// "; but it exceeds ratings: high side v_ds_max": what speaks against a leader.
+fn exceeded(comparison: &Comparison<'_>, stage: usize) -> String {
+    let detail = comparison.headline.get(stage).and_then(|record| record.outcome.as_ref().ok());
+    let critical = detail.into_iter().flat_map(|detail| &detail.findings);
+    let named: Vec<String> = critical
+        .filter(|finding| finding.severity == Severity::Critical)
+        .map(|finding| format!("{} ({})", finding.slot.words(), finding.kind.replace('_', " ")))
+        .collect();
+    if named.is_empty() {
+        String::new()
+    } else {
+        format!("; but it exceeds ratings: {}", words::list(&named))
+    }
 }
 
 fn watts(value: f64) -> String {

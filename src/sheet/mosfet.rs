@@ -122,7 +122,8 @@ const L_SOURCE: Key = Key::new("l_source", D::Inductance, "common-source inducta
     .zero()
     .sane(0.0, 2e-8)
     .absent("0 nH assumed when absent")
-    .example("0.2 nH");
+    .example("0.2 nH")
+    .starter();
 const V_SD: Key = Key::new("v_sd", D::Voltage, "body diode forward voltage, one or more points")
     .example("[{i: 1 A, v: 0.70 V}, {i: 20 A, v: 0.84 V}]");
 const Q_RR: Key = Key::new("q_rr", D::Charge, "reverse recovery charge of the body diode")
@@ -210,6 +211,15 @@ impl Form for MosfetSheet {
         }
         if self.q_oss.is_some() && self.c_oss.is_some() {
             faults.error("c_oss", "q_oss and c_oss are both given", "keep q_oss, the better of the two");
+        }
+        let lowest =
+            self.q_g.iter().filter_map(|point| point.condition("v_gs")).fold(f64::INFINITY, f64::min);
+        if lowest < plateau + 0.3 {
+            faults.warn(
+                "q_g",
+                "is stated so close to the plateau that its slope beyond is uncertain",
+                "add a point of q_g at the drive voltage",
+            );
         }
         for (index, point) in self.q_g.iter().enumerate() {
             if point.value < self.q_gs.value + self.q_gd.value {

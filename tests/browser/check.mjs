@@ -188,9 +188,15 @@ try {
     console.log(`${name}: opened at 1200 and 400 px, printed on A4 and Letter`);
   }
 } finally {
-  await send("Browser.close").catch(() => {});
+  const gone = new Promise((done) => chromium.once("exit", done));
+  await send("Browser.close").catch(() => chromium.kill());
+  await Promise.race([gone, new Promise((done) => setTimeout(done, 5000))]);
   chromium.kill();
-  rmSync(profile, { recursive: true, force: true, maxRetries: 5 });
+  try {
+    rmSync(profile, { recursive: true, force: true, maxRetries: 5, retryDelay: 200 });
+  } catch (error) {
+    console.error(`the profile in ${profile} stays: ${error.code}`);
+  }
 }
 for (const fault of faults) console.error(fault);
 process.exit(faults.length ? 1 : 0);

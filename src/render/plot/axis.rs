@@ -5,17 +5,17 @@ use crate::report::number::{Form, show};
 use crate::units::Dimension;
 
 /// An axis with its range and its round numbers.
-pub(super) struct Axis<'a> {
+pub(in crate::render) struct Axis<'a> {
     scale: &'a Scale,
     low: f64,
     high: f64,
     /// Round numbers in the range.
-    pub(super) ticks: Vec<f64>,
+    pub(in crate::render) ticks: Vec<f64>,
 }
 
 impl<'a> Axis<'a> {
     /// The axis that holds all values; `floor` and `ceiling` are limits that round numbers do not pass.
-    pub(super) fn around(
+    pub(in crate::render) fn around(
         scale: &'a Scale,
         values: impl Iterator<Item = f64>,
         [floor, ceiling]: [f64; 2],
@@ -44,7 +44,7 @@ impl<'a> Axis<'a> {
     }
 
     /// Place of a value, 0 at the low end and 1 at the high end; `None` off a logarithmic axis.
-    pub(super) fn place(&self, value: f64) -> Option<f64> {
+    pub(in crate::render) fn place(&self, value: f64) -> Option<f64> {
         if self.scale.log {
             return (value > 0.0).then(|| (value / self.low).ln() / (self.high / self.low).ln());
         }
@@ -52,12 +52,12 @@ impl<'a> Axis<'a> {
     }
 
     /// True for values within the range.
-    pub(super) fn holds(&self, value: f64) -> bool {
+    pub(in crate::render) fn holds(&self, value: f64) -> bool {
         value >= self.low * (1.0 - 1e-9) && value <= self.high * (1.0 + 1e-9)
     }
 
     /// A round number with its unit.
-    pub(super) fn label(&self, tick: f64) -> String {
+    pub(in crate::render) fn label(&self, tick: f64) -> String {
         match self.scale.form {
             Form::Efficiency | Form::Share => show(tick, Form::Setting(Dimension::Ratio)),
             Form::Result(dimension) => show(tick, Form::Setting(dimension)),
@@ -66,7 +66,7 @@ impl<'a> Axis<'a> {
     }
 
     /// What the axis measures.
-    pub(super) fn title(&self) -> &'a str {
+    pub(in crate::render) fn title(&self) -> &'a str {
         &self.scale.title
     }
 }

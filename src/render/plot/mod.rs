@@ -1,7 +1,7 @@
 //! Drawings as inline SVG: smooth lines, stacked bars, numbers on shades. Legible without colour: dashes and hatches
 //! carry what colours carry.
 
-mod axis;
+pub(super) mod axis;
 mod curves;
 mod errors;
 mod heat;

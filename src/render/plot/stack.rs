@@ -29,7 +29,7 @@ const FILLS: [(&str, &[Hatch]); 18] = [
     ("#b8cfc4", &[Hatch::Level]),
     ("#7d5a4f", &[]),
     ("#e3dbee", &[Hatch::Falling]),
-    ("#c9ced3", &[Hatch::Level, Hatch::Upright]),
+    ("#c9ced3", &[]),
     ("#fbe3c0", &[Hatch::Upright]),
 ];
 
