@@ -21,6 +21,10 @@ pub(crate) fn give(
     watch: &Arc<Watch>,
 ) -> Result<Exit, Failure> {
     let file = writing.output.as_deref().filter(|path| *path != Path::new("-"));
+    if let Some(path) = file {
+        files::refuse_input(path)
+            .map_err(|fault| Failure::Output { file: Some(path.to_path_buf()), fault })?;
+    }
     #[cfg(feature = "xlsx")]
     if writing.format == Format::Xlsx {
         return spreadsheet(answer, file);
@@ -101,7 +105,6 @@ pub(crate) fn to(
         return write(&mut out).and_then(|()| out.flush()).map_err(Failure::of_stdout);
     };
     let failed = |fault: FileFault| Failure::Output { file: Some(path.to_path_buf()), fault };
-    files::refuse_input(path).map_err(failed)?;
     let mut draft = Draft::begin(path).map_err(failed)?;
     interrupt::watch_draft(draft.temporary());
     match write(&mut draft) {
