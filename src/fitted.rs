@@ -2,7 +2,7 @@
 
 use crate::budget::{Budget, Coupling};
 use crate::edges::GateLoop;
-use crate::ledger::Slot;
+use crate::ledger::{SLOTS, Slot};
 use crate::parts::capacitor::Bank;
 use crate::parts::controller::{Controller, Supply};
 use crate::parts::diode::Diode;
@@ -155,6 +155,8 @@ pub struct HeatFlow {
     pub resistance: Nodes,
     /// Slots of the nodes that have a temperature.
     pub slots: [Option<Slot>; NODES],
+    /// Slots of the nodes without a thermal resistance.
+    pub held: [bool; SLOTS],
     /// K of each pair: heated node, heating slot, K/W.
     pub coupling: Vec<(usize, Slot, f64)>,
 }
@@ -317,5 +319,9 @@ fn heat_flow(
         };
         exists.then(|| slot_of(node, synchronous))
     });
-    HeatFlow { to_ambient, resistance: to_ambient.map(|r| r.unwrap_or(0.0)), slots, coupling }
+    let mut held = [false; SLOTS];
+    for (node, to_ambient) in to_ambient.iter().enumerate() {
+        held[slot_of(node, synchronous).index()] = to_ambient.is_none();
+    }
+    HeatFlow { to_ambient, held, resistance: to_ambient.map(|r| r.unwrap_or(0.0)), slots, coupling }
 }

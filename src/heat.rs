@@ -278,7 +278,7 @@ fn solved(prepared: &Prepared<'_>, temperatures: &Nodes, heated: &Heated) -> Sol
         output_voltage: prepared.output_voltage,
         waveform: Some(waveform),
         temperatures: by_slot(prepared, temperatures),
-        held: held(prepared),
+        held: prepared.stage.heat.held,
         ledger: ledger(heated, &unheated),
     }
 }
@@ -290,16 +290,6 @@ fn by_slot(prepared: &Prepared<'_>, temperatures: &Nodes) -> Temperatures {
         if let Some(slot) = slot {
             slots[slot.index()] = Some(*temperature);
         }
-    }
-    slots
-}
-
-/// Slots without a thermal resistance.
-fn held(prepared: &Prepared<'_>) -> [bool; SLOTS] {
-    let mut slots = [false; SLOTS];
-    let synchronous = prepared.stage.is_synchronous();
-    for (node, to_ambient) in prepared.stage.heat.to_ambient.iter().enumerate() {
-        slots[slot_of(node, synchronous).index()] = to_ambient.is_none();
     }
     slots
 }

@@ -21,7 +21,7 @@ use crate::sheet::inductor::{Core, InductorSheet};
 #[derive(Clone, Debug, PartialEq)]
 pub enum CoreLaw {
     /// One exponent each for frequency and flux (E32, E33).
-    Power(PowerLaw),
+    Power(Box<PowerLaw>),
     /// Local exponents from a table of the material (E34).
     Material(MaterialLaw),
 }
@@ -63,7 +63,7 @@ impl CoreLaw {
         let [a, alpha, beta] = fit::plane(&sheet.core_loss_logs())?;
         let at_half = LN_2 * alpha; // ln of 2 (1/2)^(1-α)
         let per_volt_second = 1.0 / sheet.inductance.value;
-        Some(CoreLaw::Power(PowerLaw::of((a - at_half).exp(), alpha, beta, per_volt_second)))
+        Some(CoreLaw::Power(Box::new(PowerLaw::of((a - at_half).exp(), alpha, beta, per_volt_second))))
     }
 
     fn of_core(core: &Core) -> Option<Self> {
@@ -71,7 +71,7 @@ impl CoreLaw {
         if let (Some(k), Some(alpha), Some(beta)) = (&core.k, &core.alpha, &core.beta) {
             let (alpha, beta) = (alpha.value, beta.value);
             let k = volume * igse_coefficient(k.value, alpha, beta);
-            return Some(CoreLaw::Power(PowerLaw::of(k, alpha, beta, per_volt_second)));
+            return Some(CoreLaw::Power(Box::new(PowerLaw::of(k, alpha, beta, per_volt_second))));
         }
         MaterialLaw::fit(&core.material_logs(), volume, per_volt_second).map(CoreLaw::Material)
     }
