@@ -161,6 +161,17 @@ pub struct HeatFlow {
     pub coupling: Vec<(usize, Slot, f64)>,
 }
 
+impl HeatFlow {
+    /// Gives a node another thermal resistance of all its devices together, K/W.
+    pub fn set(&mut self, node: usize, whole: f64) {
+        self.to_ambient[node] = Some(whole);
+        self.resistance[node] = whole;
+        if let Some(slot) = self.slots[node] {
+            self.held[slot.index()] = false;
+        }
+    }
+}
+
 /// Slot of a heat node.
 pub fn slot_of(node: usize, synchronous: bool) -> Slot {
     match node {

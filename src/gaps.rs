@@ -167,9 +167,10 @@ impl Gaps for ControllerSheet {
         found.assumed(self.high_side.is_estimated(), "driver_estimated", "high_side", DRIVER);
         let words = ["no v_boot_drop: 0 V is assumed", "add `v_boot_drop`, the drop of the bootstrap path"];
         found.assumed(self.v_boot_drop.is_none(), "v_boot_drop_assumed", "", words);
-        let words = ["no t_on_min or no t_off_min: no limit is assumed", "add `t_on_min` and `t_off_min`"];
-        let unlimited = self.t_on_min.is_none() || self.t_off_min.is_none();
-        found.assumed(unlimited, "time_limits_assumed", "", words);
+        let words = ["no t_on_min: no limit is assumed", "add `t_on_min`, the shortest on-time"];
+        found.assumed(self.t_on_min.is_none(), "t_on_min_assumed", "", words);
+        let words = ["no t_off_min: no limit is assumed", "add `t_off_min`, the shortest off-time"];
+        found.assumed(self.t_off_min.is_none(), "t_off_min_assumed", "", words);
         let low_side = self.low_side.as_ref().is_some_and(|driver| driver.is_estimated());
         found.assumed(low_side, "driver_estimated", "low_side", DRIVER);
         found.0

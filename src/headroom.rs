@@ -249,7 +249,7 @@ fn resisting(stage: &Stage, slot: Slot, whole: f64) -> Stage {
         Kind::Linear(regulator) => regulator.r_th = Some(whole * regulator.n),
         Kind::Switched(switched) => {
             if let Some(node) = node(switched, slot) {
-                switched.heat.to_ambient[node] = Some(whole);
+                switched.heat.set(node, whole);
             }
         }
     }

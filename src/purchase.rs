@@ -44,7 +44,7 @@ pub fn all(rig: &Rig, slopes: &[Slope], solved: &Solved, gain: f64) -> Vec<Purch
     let levers = rig.levers();
     let mut all: Vec<Purchase> = slopes
         .iter()
-        .filter(|slope| slope.per == "%")
+        .filter(|slope| slope.per == "%" && can_be_bought(&slope.path))
         .filter_map(|slope| {
             let lever = levers.iter().find(|lever| lever.path == slope.path)?;
             Some(one(rig, lever, slope.percent < 0.0, (solved.point, efficiency), gain))
@@ -53,6 +53,13 @@ pub fn all(rig: &Rig, slopes: &[Slope], solved: &Solved, gain: f64) -> Vec<Purch
     let change = |purchase: &Purchase| purchase.factor.map_or(f64::INFINITY, |factor| factor.ln().abs());
     all.sort_by(|a, b| change(a).total_cmp(&change(b)).then(b.best.total_cmp(&a.best)));
     all
+}
+
+/// False for what no better part would change: the places of a curve's points, and thermal resistances, where a hotter
+/// part would be the purchase.
+fn can_be_bought(path: &str) -> bool {
+    let key = path.rsplit('.').next().unwrap_or(path);
+    !matches!(key, "i" | "t_j" | "frequency" | "v_r" | "ripple" | "amplitude") && !key.starts_with("r_th")
 }
 
 /// Walks a value in the direction that gains and bisects where the gain is reached.

@@ -166,3 +166,20 @@ fn data_sheet_values_are_set_by_key_path_everywhere() -> Outcome {
     assert!((rise(&changed)? / before - 0.5).abs() < 1e-9);
     Ok(())
 }
+
+#[test]
+fn the_thermal_resistance_found_takes_the_part_to_its_limit() -> Outcome {
+    // the answer put back into the model: the definition of the root
+    let mut budget = budget("grain-dryer-camera.yaml")?;
+    let part = room(&budget, "synchronous", PartialPoint::default())?.remove(0);
+    let (limit, r_th) = (number(&part["limit"])?, number(&part["r_th"]["value"])?);
+    let stage = budget.stages.iter_mut().find(|stage| stage.name == "synchronous").ok_or("the stage")?;
+    assert!(values::set(stage, &mut budget.board, "high_side.r_th_ja", r_th));
+    let sheet = budget.stages.iter().find(|stage| stage.name == "synchronous").ok_or("the stage")?;
+    let candidate = Candidate::new(&budget, sheet);
+    let solved = candidate.evaluate(candidate.headline())?;
+    let reached = solved.temperatures[Slot::HighSide.index()].ok_or("a temperature")?;
+    // the search stops within a microkelvin of the limit, of 65 K of rise
+    assert!((reached / limit - 1.0).abs() < 1e-6, "{reached} of {limit}");
+    Ok(())
+}

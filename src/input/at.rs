@@ -17,15 +17,31 @@ fn expected(axis: AxisName) -> Expected<'static> {
     Expected { dimension, example }
 }
 
+/// Coordinates of a text: a new one begins at every word with an `=`, so that a unit may stand apart from its number.
+fn words(text: &str) -> Vec<String> {
+    let mut words: Vec<String> = Vec::new();
+    for word in text.split([' ', ',', ';']).filter(|word| !word.is_empty()) {
+        match words.last_mut() {
+            Some(last) if !word.contains('=') => {
+                last.push(' ');
+                last.push_str(word);
+            }
+            _ => words.push(word.to_owned()),
+        }
+    }
+    words
+}
+
 /// Reads coordinates separated by spaces or commas.
 ///
 /// # Errors
 /// What is wrong with a coordinate and what would be right.
 pub fn parse(text: &str) -> Result<PartialPoint, Blame> {
     let mut point = PartialPoint::default();
-    for word in text.split([' ', ',', ';']).filter(|word| !word.is_empty()) {
+    for word in words(text) {
         let form = || format!("write it like {}", EXAMPLE);
-        let Some((name, value)) = word.split_once('=') else {
+        let Some((name, value)) = word.split_once('=').map(|(name, value)| (name.trim(), value.trim()))
+        else {
             return Err(Blame::new(format!("`{word}` has no `=`"), form()));
         };
         let Some(axis) = AxisName::from_name(name) else {

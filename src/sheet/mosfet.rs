@@ -170,7 +170,7 @@ impl Form for MosfetSheet {
         if threshold >= plateau {
             faults.error(
                 "v_gs_plateau",
-                format!("the plateau ({plateau} V) is not above the threshold ({threshold} V)"),
+                format!("the plateau ({}) is not above the threshold ({})", volts(plateau), volts(threshold)),
                 "check v_gs_th and v_gs_plateau; the plateau of the gate charge curve lies above the threshold",
             );
         }
@@ -179,7 +179,11 @@ impl Form for MosfetSheet {
             if v_gs <= threshold {
                 faults.error(
                     format!("r_ds_on[{index}]"),
-                    format!("stated at v_gs = {v_gs} V, which is not above the threshold ({threshold} V)"),
+                    format!(
+                        "stated at v_gs = {}, which is not above the threshold ({})",
+                        volts(v_gs),
+                        volts(threshold)
+                    ),
                     "state the on-resistance at a drive voltage above v_gs_th",
                 );
             }
@@ -246,6 +250,10 @@ impl Form for MosfetSheet {
             hot.cross_check(faults);
         }
     }
+}
+
+fn volts(value: f64) -> String {
+    crate::report::number::setting(value, D::Voltage)
 }
 
 impl MosfetSheet {
