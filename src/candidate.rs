@@ -3,7 +3,7 @@
 use std::sync::Arc;
 
 use crate::budget::Budget;
-use crate::findings::{self, Finding, NotModelled};
+use crate::findings::{self, Finding, NotModelled, Severity};
 use crate::fitted::{Kind, Stage};
 use crate::grid::{Axis, AxisName, Grid, OperatingPoint, PartialPoint};
 use crate::heat;
@@ -179,6 +179,36 @@ impl<'a> Candidate<'a> {
     /// The same for a point whose fitted stage is at hand.
     pub fn findings_of(&self, stage: &Stage, solved: &Solved) -> Vec<Finding> {
         ratings::check(self.sheet, stage, self.budget, solved)
+    }
+
+    /// Warnings and worse at the ends of the grid, one a slot and kind with the point where it was first seen: the largest
+    /// input voltage, load and ambient come first, then those of `at`, then the smallest.
+    pub fn findings_at_ends(&self, at: OperatingPoint) -> Vec<(OperatingPoint, Finding)> {
+        let ends = |axis: AxisName| {
+            let of_axis = |axis: &Axis| [axis.at(0), axis.at(axis.len().saturating_sub(1))];
+            let values = || self.grid.axis(axis).into_iter().flat_map(of_axis);
+            let own = at.get(axis);
+            [values().fold(own, f64::max), own, values().fold(own, f64::min)]
+        };
+        let mut found: Vec<(OperatingPoint, Finding)> = Vec::new();
+        for v_in in ends(AxisName::InputVoltage) {
+            for load in ends(AxisName::Load) {
+                for ambient in ends(AxisName::Ambient) {
+                    let point = OperatingPoint { input_voltage: v_in, load, ambient, ..at };
+                    let Ok(solved) = self.evaluate(point) else { continue };
+                    for finding in self.findings(&solved) {
+                        let known = |(_, old): &(OperatingPoint, Finding)| {
+                            old.slot == finding.slot && old.kind == finding.kind
+                        };
+                        if finding.severity > Severity::Note && !found.iter().any(known) {
+                            found.push((point, finding));
+                        }
+                    }
+                }
+            }
+        }
+        found.sort_by_key(|(_, finding)| std::cmp::Reverse(finding.severity));
+        found
     }
 
     /// Price of all parts, or `None` when one has none.

@@ -65,7 +65,7 @@ fn threads_and_formats_do_not_change_the_ranking() {
 /// Ticks of processor time that a process has used, as the kernel counts them.
 #[cfg(target_os = "linux")]
 fn ticks(process: u32) -> u64 {
-    let stat = lossbook::files::read_text(std::path::Path::new(&format!("/proc/{process}/stat")));
+    let stat = lossbook::files::read_text(Path::new(&format!("/proc/{process}/stat")));
     let after_name = stat.ok().and_then(|file| Some(file.text.rsplit_once(')')?.1.to_owned()));
     let field = after_name.and_then(|fields| fields.split_whitespace().nth(11)?.parse().ok());
     field.unwrap_or(0)

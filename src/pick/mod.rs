@@ -31,6 +31,7 @@
 //! ```
 
 pub mod bands;
+pub(crate) mod cautions;
 pub mod describe;
 pub mod entry;
 pub mod insight;

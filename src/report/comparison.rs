@@ -49,7 +49,7 @@ pub fn document(comparison: &Comparison<'_>, plot: bool) -> Document {
     crossovers(comparison, &mut document);
     document.heading(2, "Requirements");
     needs::requirements(comparison, &mut document);
-    document.heading(2, "Findings");
+    document.heading(2, "Findings at the headline and at the ends of the grid");
     findings(comparison, &mut document);
     document
 }
@@ -483,6 +483,17 @@ pub(super) fn findings(comparison: &Comparison<'_>, document: &mut Document) {
     for record in &comparison.headline {
         let name = record.candidate.name();
         let found = record.outcome.as_ref().map_or(&[][..], |detail| &detail.findings);
+        let elsewhere = record.candidate.findings_at_ends(record.point).into_iter().filter(|(_, finding)| {
+            !found.iter().any(|here| here.slot == finding.slot && here.kind == finding.kind)
+        });
+        for (point, finding) in elsewhere {
+            table.row(vec![
+                Cell::text(name),
+                Cell::text(finding.severity.name()),
+                Cell::text(finding.slot.words()),
+                Cell::text(format!("{} (at {})", finding.text, words::point(&point))),
+            ]);
+        }
         for finding in found.iter().chain(&record.candidate.assumptions) {
             table.row(vec![
                 Cell::text(name),

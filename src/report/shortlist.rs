@@ -1,8 +1,8 @@
 //! The ranking of a shortlist as a document.
 
 use crate::budget::Budget;
-
 use crate::ledger::Slot;
+use crate::pick::cautions;
 use crate::pick::entry::{Disqualified, Entry, Outcome};
 use crate::pick::{By, NAMED, Picked, merit};
 use crate::report::number::{Form, show};
@@ -37,6 +37,10 @@ pub fn document(picked: &Picked, budget: Option<&Budget>) -> Document {
         document.notice(Severity::Warning, text);
     }
     document.verdict(format!("Verdict: {}.", verdict(picked)));
+    for (point, finding) in budget.map(|budget| cautions::of(budget, outcome)).unwrap_or_default() {
+        let (slot, at) = (finding.slot.words(), words::point(&point));
+        document.notice(finding.severity, format!("The first place: {slot}: {} (at {at}).", finding.text));
+    }
     if !outcome.ranking.is_empty() {
         document.heading(2, "Ranking");
         document.table(ranking(outcome, &outcome.ranking, budget));
