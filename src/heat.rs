@@ -1,11 +1,13 @@
 //! Heat (E50, E51): loss and temperature settle together.
 
+use crate::booking::ledger;
 use crate::fitted::{CONTROLLER, HIGH, INDUCTOR, NODES, Nodes, RECTIFIER, Rectifier, SCHOTTKY, slot_of};
 use crate::grid::OperatingPoint;
 use crate::infeasible::{HOTTEST, Infeasible};
 use crate::ledger::{SLOTS, Slot};
+use crate::linear;
 use crate::loss::leakage::Leakage;
-use crate::model::{Heated, HeatedRectifier, HotRatios, Prepared, Solved, Temperatures, ledger, linear};
+use crate::model::{Heated, HeatedRectifier, HotRatios, Prepared, Solved, Temperatures};
 use crate::parts::copper::PER_KELVIN;
 use crate::parts::diode::Diode;
 use crate::parts::linear_regulator::LinearRegulator;
@@ -442,7 +444,7 @@ pub fn settle_linear(
     output_voltage: f64,
     point: OperatingPoint,
 ) -> Result<Solved, Infeasible> {
-    let ledger = linear(regulator, output_voltage, &point)?.ledger();
+    let ledger = linear::contributions(regulator, output_voltage, &point)?.ledger();
     let rise = regulator.r_th.map_or(0.0, |r_th| r_th / regulator.n * ledger.loss());
     let temperature = point.ambient + rise;
     if temperature >= HOTTEST {

@@ -11,7 +11,6 @@ use crate::fitted::{
 };
 use crate::grid::OperatingPoint;
 use crate::infeasible::Infeasible;
-use crate::ledger::{Account, Ledger};
 use crate::loss::{
     ac_winding::{self, AcWinding},
     bias::{self, Bias},
@@ -21,11 +20,9 @@ use crate::loss::{
     dead_time::{self, DeadTime, HighSideDeadTime},
     esr::{self, End, Esr},
     gate_drive::{self, DrivePower, GatePower},
-    ground_current::{self, GroundCurrent},
     leakage::{self, Leakage, ReverseVoltage},
     output_charge::{self, IdleSwing, OutputCharge},
     overlap::{self, EdgeConditions, LowSideOverlap, Overlap},
-    pass::{self, Pass},
     recovery::{self, Recovery},
     ringing::{self, Ringing},
     sense::{self, Sense},
@@ -36,7 +33,7 @@ use crate::near::at_least;
 use crate::parts::controller::Supply;
 use crate::parts::copper::hot_ratio;
 use crate::parts::core::CoreLaw;
-use crate::parts::linear_regulator::LinearRegulator;
+pub use crate::solved::{Solved, Temperatures};
 use crate::waveform::{CurrentPath, LightLoadRule, OffPath, Waveform};
 
 /// Smallest distance of the drive voltage to the plateau at the peak current, V (E13).
@@ -143,14 +140,6 @@ pub struct Unheated {
     pub copper: Copper,
     pub sense: Sense,
     pub snubber: Snubber,
-}
-
-/// Contributions of a linear stage.
-#[derive(Clone, Copy, Debug)]
-#[allow(missing_docs)] // named as the accounts of the ledger
-pub struct LinearContributions {
-    pub pass: Pass,
-    pub ground_current: GroundCurrent,
 }
 
 impl<'a> Prepared<'a> {
@@ -484,137 +473,6 @@ impl Heated {
             + self.ringing.watts;
         watts[CONTROLLER] = self.drive.watts + self.bias.watts;
         watts
-    }
-}
-
-/// Books every contribution of a switched stage to its account.
-#[inline(always)]
-pub fn ledger(heated: &Heated, unheated: &Unheated) -> Ledger {
-    use Account as A;
-    let mut ledger = Ledger::default();
-    ledger.book(A::HighSideConduction, heated.high_conduction.watts);
-    ledger.book(A::HighSideOverlap, heated.overlap.watts);
-    ledger.book(A::HighSideOutputCharge, heated.output_charge.watts);
-    ledger.book(A::HighSideRecovery, heated.recovery.map_or(0.0, |recovery| recovery.watts));
-    ledger.book(A::HighSideGateDrive, heated.high_gate.watts);
-    match &heated.rectifier {
-        HeatedRectifier::Synchronous {
-            conduction,
-            overlap,
-            output_charge,
-            dead_time,
-            gate,
-            schottky,
-            high_dead_time,
-        } => {
-            ledger.book(A::HighSideDeadTime, high_dead_time.watts);
-            ledger.book(A::LowSideConduction, conduction.watts);
-            ledger.book(A::LowSideOverlap, overlap.watts);
-            ledger.book(A::LowSideOutputCharge, output_charge.watts);
-            ledger.book(A::LowSideGateDrive, gate.watts);
-            match schottky {
-                Some(leakage) => {
-                    ledger.book(A::ParallelSchottkyDeadTime, dead_time.watts);
-                    ledger.book(A::ParallelSchottkyLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
-                }
-                None => ledger.book(A::LowSideDeadTime, dead_time.watts),
-            }
-        }
-        HeatedRectifier::Diode { conduction, leakage } => {
-            ledger.book(A::FreewheelDiodeConduction, conduction.watts);
-            ledger.book(A::FreewheelDiodeLeakage, leakage.map_or(0.0, |leakage| leakage.watts));
-        }
-    }
-    ledger.book(A::InductorWinding, heated.winding.watts);
-    ledger.book(A::InductorAcWinding, heated.ac_winding.map_or(0.0, |ac| ac.watts));
-    ledger.book(A::InductorCore, heated.core.map_or(0.0, |core| core.watts));
-    ledger.book(A::InductorRinging, heated.ringing.watts);
-    ledger.book(A::ControllerGateDrive, heated.drive.watts);
-    ledger.book(A::ControllerBias, heated.bias.watts);
-    ledger.book(A::InputCapacitorsEsr, unheated.input_esr.watts);
-    ledger.book(A::OutputCapacitorsEsr, unheated.output_esr.watts);
-    ledger.book(A::BoardCopper, unheated.copper.watts);
-    ledger.book(A::BoardSense, unheated.sense.watts);
-    ledger.book(A::BoardSnubber, unheated.snubber.watts);
-    ledger
-}
-
-/// Contributions of a linear regulator (E43), or why it cannot run here.
-pub fn linear(
-    regulator: &LinearRegulator,
-    output_voltage: f64,
-    point: &OperatingPoint,
-) -> Result<LinearContributions, Infeasible> {
-    let (v_in, load) = (point.input_voltage, point.load);
-    let (headroom, needed) = (v_in - output_voltage, regulator.dropout(load));
-    if headroom < needed || headroom < 0.0 {
-        return Err(Infeasible::DropOut { headroom, needed });
-    }
-    Ok(LinearContributions {
-        pass: pass::pass(v_in, output_voltage, load),
-        ground_current: ground_current::ground_current(v_in, regulator.ground_current(load)),
-    })
-}
-
-impl LinearContributions {
-    /// Books both contributions.
-    pub fn ledger(&self) -> Ledger {
-        let mut ledger = Ledger::default();
-        ledger.book(Account::RegulatorPass, self.pass.watts);
-        ledger.book(Account::RegulatorGroundCurrent, self.ground_current.watts);
-        ledger
-    }
-}
-
-/// A solved point: waveform, temperatures and ledger.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Solved {
-    /// Where.
-    pub point: OperatingPoint,
-    /// V_OUT, V.
-    pub output_voltage: f64,
-    /// Currents and duties; a linear stage has none.
-    pub waveform: Option<Waveform>,
-    /// Temperature of each slot that has one, °C.
-    pub temperatures: Temperatures,
-    /// Slots that stay at ambient because their thermal resistance is unknown: their temperature is no result.
-    pub held: [bool; crate::ledger::SLOTS],
-    /// Watts of every account.
-    pub ledger: Ledger,
-}
-
-/// Temperatures by slot, °C; `None` for slots without a temperature of their own.
-pub type Temperatures = [Option<f64>; crate::ledger::SLOTS];
-
-impl Solved {
-    /// V_OUT I_OUT, W.
-    pub fn output_power(&self) -> f64 {
-        self.output_voltage * self.point.load
-    }
-
-    /// Loss: the sum of the ledger, W.
-    pub fn loss(&self) -> f64 {
-        self.ledger.loss()
-    }
-
-    /// Output power plus loss, W (E60).
-    pub fn input_power(&self) -> f64 {
-        self.output_power() + self.loss()
-    }
-
-    /// Output over input power; undefined without load.
-    pub fn efficiency(&self) -> Option<f64> {
-        let (output, input) = (self.output_power(), self.input_power());
-        (output > 0.0).then(|| output / input)
-    }
-
-    /// The hottest slot and its temperature, °C, of those whose thermal resistance is known.
-    pub fn hottest(&self) -> Option<(crate::ledger::Slot, f64)> {
-        let known = crate::ledger::ALL_SLOTS
-            .into_iter()
-            .filter(|slot| !self.held[slot.index()])
-            .filter_map(|slot| self.temperatures[slot.index()].map(|temperature| (slot, temperature)));
-        known.max_by(|a, b| a.1.total_cmp(&b.1))
     }
 }
 

@@ -3,7 +3,8 @@
 use super::book::{Book, Chapter, PURE};
 use super::laws;
 use crate::ledger::{Account, Slot};
-use crate::model::{LinearContributions, Solved};
+use crate::linear::LinearContributions;
+use crate::model::Solved;
 use crate::parts::linear_regulator::LinearRegulator;
 use crate::units::Dimension as D;
 

@@ -182,7 +182,8 @@ fn write(candidate: &Candidate<'_>, detail: &Detail) -> Result<Written, Infeasib
     coordinates(solved, &mut book);
     match (&fitted.kind, &sheet.circuit) {
         (Kind::Linear(regulator), _) => {
-            let contributions = model::linear(regulator, solved.output_voltage, &solved.point)?;
+            let contributions =
+                crate::linear::contributions(regulator, solved.output_voltage, &solved.point)?;
             linear::derive(regulator, &contributions, solved, &mut book);
         }
         (Kind::Switched(stage), Circuit::Switched(sheet)) => {

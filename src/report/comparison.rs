@@ -7,7 +7,7 @@ use crate::ledger::{ALL_ACCOUNTS, ALL_FAMILIES, ALL_SLOTS, Account, Family, Mech
 use crate::model::Solved;
 use crate::ratings;
 use crate::record::{Detail, Record};
-use crate::report::{Block, Cell, Column, Document, Table, balance, caption, figures, needs, words};
+use crate::report::{Block, Cell, Column, Document, Table, balance, caption, checks, figures, needs, words};
 use crate::units::Dimension as D;
 
 /// The whole answer: rail, verdict, balance, stages side by side, curves (drawn when told), crossovers, requirements.
@@ -39,7 +39,7 @@ pub fn document(comparison: &Comparison<'_>, plot: bool) -> Document {
         }
     }
     document.heading(2, "Temperatures");
-    document.table(temperatures(comparison));
+    document.table(checks::temperatures(comparison));
     document.heading(2, "Efficiency and loss over the load");
     if plot {
         document.blocks.push(Block::Figure(figures::efficiency_at_headline(comparison)));
@@ -50,7 +50,7 @@ pub fn document(comparison: &Comparison<'_>, plot: bool) -> Document {
     document.heading(2, "Requirements");
     needs::requirements(comparison, &mut document);
     document.heading(2, "Findings at the headline and at the ends of the grid");
-    findings(comparison, &mut document);
+    checks::findings(comparison, &mut document);
     document
 }
 
@@ -318,58 +318,6 @@ pub(super) fn ledger(record: &Record<'_>, detail: &Detail, cold: Option<&Solved>
     table
 }
 
-pub(super) fn temperatures(comparison: &Comparison<'_>) -> Table {
-    let columns = vec![
-        Column::text("stage"),
-        Column::text("slot"),
-        Column::text("part"),
-        Column::quantity("temperature"),
-        Column::quantity("rating"),
-        Column::quantity("margin"),
-    ];
-    let mut table = Table::new("", columns).with_keys(2);
-    for record in &comparison.headline {
-        let Ok(detail) = &record.outcome else { continue };
-        let limits = ratings::temperature_limits(record.candidate.sheet);
-        for slot in ALL_SLOTS {
-            let Some(temperature) = detail.solved.temperatures[slot.index()] else { continue };
-            let limit = limits.iter().find(|(limited, _)| *limited == slot).map(|(_, limit)| *limit);
-            let held = detail.solved.held[slot.index()];
-            let margin = limit.filter(|_| !held).map(|limit| limit - temperature);
-            let cell = |value: Option<f64>, dimension| {
-                value.map_or(Cell::missing("no rating given"), |value| Cell::quantity(value, dimension))
-            };
-            table.row(vec![
-                Cell::text(record.candidate.name()),
-                Cell::text(slot.words()),
-                Cell::text(record.candidate.part_names[slot.index()].clone().unwrap_or_default()),
-                if held {
-                    Cell::temperature(temperature).flagged(Severity::Note, "held at ambient: needs r_th_ja")
-                } else {
-                    Cell::temperature(temperature)
-                },
-                cell(limit, D::Temperature),
-                if held || temperature > ratings::BEYOND_BELIEF {
-                    Cell::missing("")
-                } else {
-                    flagged_margin(cell(margin, D::TemperatureDifference), margin, comparison)
-                },
-            ]);
-        }
-    }
-    table
-}
-
-fn flagged_margin(cell: Cell, margin: Option<f64>, comparison: &Comparison<'_>) -> Cell {
-    match margin {
-        Some(margin) if margin < 0.0 => cell.flagged(Severity::Critical, ""),
-        Some(margin) if margin < comparison.budget.derating.junction_margin => {
-            cell.flagged(Severity::Warning, "")
-        }
-        _ => cell,
-    }
-}
-
 fn curves(comparison: &Comparison<'_>) -> Table {
     let mut columns = vec![Column::quantity("load")];
     for candidate in comparison.candidates {
@@ -474,46 +422,4 @@ pub(super) fn crossovers(comparison: &Comparison<'_>, document: &mut Document) {
         ]);
     }
     document.table(table);
-}
-
-pub(super) fn findings(comparison: &Comparison<'_>, document: &mut Document) {
-    let columns =
-        vec![Column::text("stage"), Column::text("severity"), Column::text("slot"), Column::text("finding")];
-    let mut table = Table::new("", columns).with_keys(2);
-    for record in &comparison.headline {
-        let name = record.candidate.name();
-        let found = record.outcome.as_ref().map_or(&[][..], |detail| &detail.findings);
-        let elsewhere = record.candidate.findings_at_ends(record.point).into_iter().filter(|(_, finding)| {
-            !found.iter().any(|here| here.slot == finding.slot && here.kind == finding.kind)
-        });
-        for (point, finding) in elsewhere {
-            table.row(vec![
-                Cell::text(name),
-                Cell::text(finding.severity.name()),
-                Cell::text(finding.slot.words()),
-                Cell::text(format!("{} (at {})", finding.text, words::point(&point))),
-            ]);
-        }
-        for finding in found.iter().chain(&record.candidate.assumptions) {
-            table.row(vec![
-                Cell::text(name),
-                Cell::text(finding.severity.name()),
-                Cell::text(finding.slot.words()),
-                Cell::text(&finding.text),
-            ]);
-        }
-        for missing in &record.candidate.not_modelled {
-            table.row(vec![
-                Cell::text(name),
-                Cell::text("missing"),
-                Cell::text(missing.slot.words()),
-                Cell::text(format!("{} not modelled: needs {}", missing.mechanism.words(), missing.needs)),
-            ]);
-        }
-    }
-    if table.rows.is_empty() {
-        document.paragraph("None.");
-    } else {
-        document.table(table);
-    }
 }

@@ -22,6 +22,7 @@ mod balance;
 pub mod bars;
 pub mod caption;
 mod cell;
+mod checks;
 pub mod comparison;
 pub mod derivation;
 pub mod difference;

@@ -62,7 +62,7 @@ pub fn document(material: &Material<'_>) -> Document {
         nested(answer, 1, &mut document);
     }
     document.heading(2, "Findings at the headline");
-    parts::findings(comparison, &mut document);
+    super::checks::findings(comparison, &mut document);
     gaps(comparison, &mut document);
     appendix(comparison, &mut document);
     inputs(comparison, &mut document);
@@ -115,7 +115,7 @@ fn drawn(comparison: &Comparison<'_>, document: &mut Document) {
     }
     document.table(parts::by_part(comparison));
     document.heading(2, "Temperatures");
-    document.table(parts::temperatures(comparison));
+    document.table(super::checks::temperatures(comparison));
     document.heading(3, "Margins over the grid");
     for (figure, table) in figures::margins(comparison) {
         document.blocks.push(Block::Figure(figure));
