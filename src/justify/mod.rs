@@ -32,7 +32,7 @@ use crate::grid::{OperatingPoint, PartialPoint};
 use crate::heat::nodes_of;
 use crate::infeasible::Infeasible;
 use crate::ledger::{Account, Mechanism, Slot};
-use crate::model::{self, Prepared, Solved};
+use crate::model::{Prepared, Solved};
 use crate::record::{Detail, Record};
 use crate::stage::{Circuit, StageSheet};
 use crate::units::Dimension as D;
