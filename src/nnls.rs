@@ -29,7 +29,7 @@ const PRICE: f64 = 2.0;
 ///
 /// With three columns every set of terms can be tried: each is solved by plain least squares on rows weighted by
 /// 1/sigma, sets with a negative coefficient are left out, and of the rest the one with the lowest sum of squares plus
-/// [`PRICE`] a term wins. Uncertainties are those of the normal equations (JCGM 100:2008, H.3), widened by the square
+/// `PRICE` a term wins. Uncertainties are those of the normal equations (JCGM 100:2008, H.3), widened by the square
 /// root of the reduced sum of squares when that exceeds 1 (Birge 1932). `None` with too few or too similar rows.
 pub fn fit(rows: &[[f64; 3]], values: &[f64], sigmas: &[f64]) -> Option<Fit> {
     if rows.len() < 4 {

@@ -166,7 +166,7 @@ impl Header {
         Header { fields: places.into(), width: record.len(), sound }
     }
 
-    /// Place of a column among [`COLUMNS`] and its unit, from "input_voltage [V]".
+    /// Place of a column among [`COLUMNS`] and its unit, from `input_voltage [V]`.
     fn title(text: &str) -> Result<(usize, String), (String, String)> {
         let (name, rest) = text.split_once('[').unwrap_or((text, ""));
         let name = name.trim();
