@@ -172,9 +172,11 @@ fn table_element(table: &Table) -> String {
     let body: String = layout.rows.iter().map(|row| body_row(table, row)).collect();
     let notes: String = layout.notes.iter().map(|note| format!("<li>{}</li>\n", escape(note))).collect();
     let notes = if notes.is_empty() { notes } else { format!("<ul class=\"notes\">\n{notes}</ul>\n") };
+    let words = escape(&table.caption);
+    let caption = if words.is_empty() { String::new() } else { format!("<caption>{words}</caption>\n") };
+    let label = if words.is_empty() { "table".into() } else { words };
     format!(
-        "<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{0}\">\n<table>\n<caption>{0}</caption>\n<thead>\n{head}</thead>\n<tbody>\n{body}</tbody>\n</table>\n</div>\n{notes}",
-        escape(&table.caption)
+        "<div class=\"wide\" tabindex=\"0\" role=\"group\" aria-label=\"{label}\">\n<table>\n{caption}<thead>\n{head}</thead>\n<tbody>\n{body}</tbody>\n</table>\n</div>\n{notes}"
     )
 }
 

@@ -61,7 +61,7 @@ pub fn document(material: &Material<'_>) -> Document {
         document.heading(2, first + letters.as_str());
         nested(answer, 1, &mut document);
     }
-    document.heading(2, "Findings at the headline");
+    document.heading(2, "Findings");
     super::checks::findings(comparison, &mut document);
     gaps(comparison, &mut document);
     appendix(comparison, &mut document);
