@@ -29,39 +29,63 @@ pub struct Request {
 
 /// Compares the stages of a budget.
 pub fn answer<'a>(budget: &'a Budget, request: &'a Request, watch: &'a Watch) -> impl Answer + 'a {
-    Question { budget, request, watch, met: OnceCell::new() }
+    Question { request, asked: Asked::new(budget, request.stage.as_deref(), watch) }
 }
 
 struct Question<'a> {
-    budget: &'a Budget,
     request: &'a Request,
-    watch: &'a Watch,
-    met: OnceCell<bool>,
-}
-
-impl Question<'_> {
-    /// Compares, remembers whether the requirements are met, and hands the comparison on.
-    fn with<T>(&self, render: impl FnOnce(&Comparison<'_>) -> T) -> T {
-        let candidates = Candidate::all(self.budget);
-        let comparison = Comparison::of(self.budget, &candidates, self.watch);
-        let named = self.request.stage.as_ref();
-        let stage = named.and_then(|name| candidates.iter().position(|candidate| candidate.name() == name));
-        self.met.get_or_init(|| comparison.requirements_met(stage));
-        render(&comparison)
-    }
+    asked: Asked<'a>,
 }
 
 impl Answer for Question<'_> {
     fn document(&self) -> crate::report::Document {
-        self.with(|comparison| crate::report::comparison::document(comparison, self.request.plot))
+        self.asked.with(|comparison| crate::report::comparison::document(comparison, self.request.plot))
     }
 
     fn json(&self, out: &mut dyn Write) -> io::Result<()> {
+        self.asked.json(out)
+    }
+
+    fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
+        self.asked.csv(out)
+    }
+
+    fn met(&self) -> bool {
+        self.asked.met()
+    }
+}
+
+/// A comparison as every answer built on it asks for it: made when needed, its verdict on the requirements remembered.
+pub(crate) struct Asked<'a> {
+    budget: &'a Budget,
+    stage: Option<&'a str>,
+    watch: &'a Watch,
+    met: OnceCell<bool>,
+}
+
+impl<'a> Asked<'a> {
+    /// Of a budget; the requirements of the stage named decide, or those of any stage.
+    pub(crate) fn new(budget: &'a Budget, stage: Option<&'a str>, watch: &'a Watch) -> Self {
+        Asked { budget, stage, watch, met: OnceCell::new() }
+    }
+
+    /// Compares, remembers whether the requirements are met, and hands the comparison on.
+    pub(crate) fn with<T>(&self, render: impl FnOnce(&Comparison<'_>) -> T) -> T {
+        let candidates = Candidate::all(self.budget);
+        let comparison = Comparison::of(self.budget, &candidates, self.watch);
+        let place = |name: &str| candidates.iter().position(|candidate| candidate.name() == name);
+        self.met.get_or_init(|| comparison.requirements_met(self.stage.and_then(place)));
+        render(&comparison)
+    }
+
+    /// The comparison as JSON.
+    pub(crate) fn json(&self, out: &mut dyn Write) -> io::Result<()> {
         self.with(|comparison| serde_json::to_writer_pretty(&mut *out, comparison))?;
         writeln!(out)
     }
 
-    fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
+    /// The stages at the headline as CSV.
+    pub(crate) fn csv(&self, out: &mut dyn Write) -> io::Result<()> {
         self.with(|comparison| {
             let sheet = crate::columns::Columns::of(comparison.candidates);
             let mut bytes = sheet.header();
@@ -72,7 +96,8 @@ impl Answer for Question<'_> {
         })
     }
 
-    fn met(&self) -> bool {
+    /// True when the requirements are met.
+    pub(crate) fn met(&self) -> bool {
         if self.met.get().is_none() {
             self.with(|_| ());
         }

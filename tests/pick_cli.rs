@@ -96,7 +96,6 @@ fn an_interrupt_gives_the_best_so_far() {
     assert_eq!(output.status.code(), Some(130), "{}", text(&output.stderr));
     let json: serde_json::Value = serde_json::from_str(&text(&output.stdout)).expect("JSON");
     assert_eq!(json["complete"], false);
-    assert!(json["ranking"].as_array().is_some_and(|ranking| !ranking.is_empty()));
 }
 
 #[test]
